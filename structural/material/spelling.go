@@ -1,0 +1,91 @@
+package material
+
+import (
+	"regexp"
+	"slices"
+	"strings"
+)
+
+var (
+	separators = strings.NewReplacer(" ", "", "\t", "", "\u00a0", "", "-", "", "_", "", ".", "", "/", "", ":", "", ",", "", "(", "", ")", "")
+	standards  = regexp.MustCompile(`^(BS|DIN)?EN100252(2004|2019)?|EN100252(2004|2019)?$|^ASTM|^ASME`)
+
+	// A quality after an EN grade changes toughness and delivery condition, not
+	// the strengths of EN 10025-2 table 7; a closing H is the hollow section of
+	// EN 10210-1 and EN 10219-1.
+	enGrade   = regexp.MustCompile(`^(S\d{3})(JR|J0|JO|J2|K2)?H?(\+?(N|AR|M))?$`)
+	astmGrade = regexp.MustCompile(`^S?(A\d+)(?:M|A\d+M)?(?:GRADE|GR)?([A-Z])?$`)
+
+	// Names that were withdrawn from the standards but live on in enquiries; a
+	// suggestion only, because their strengths by thickness differ.
+	withdrawn = map[string]string{
+		"ST37": "S235", "ST372": "S235", "FE360": "S235",
+		"ST44": "S275", "ST442": "S275", "FE430": "S275",
+		"ST52": "S355", "ST523": "S355", "FE510": "S355",
+	}
+)
+
+func compact(name string) string {
+	return standards.ReplaceAllString(separators.Replace(strings.ToUpper(name)), "")
+}
+
+// canonical returns the name under which a grade would be held; it does not
+// promise that it is.
+func canonical(name string) string {
+	c := compact(name)
+	if m := enGrade.FindStringSubmatch(c); m != nil {
+		return m[1]
+	}
+	if m := astmGrade.FindStringSubmatch(c); m != nil {
+		return strings.TrimSpace(m[1] + " " + m[2])
+	}
+	return c
+}
+
+// near returns up to three grades whose spelling is close to name.
+func (d *data) near(name string) []string {
+	c := compact(name)
+	if n, ok := withdrawn[c]; ok {
+		return []string{n}
+	}
+	type candidate struct {
+		name     string
+		distance int
+	}
+	var found []candidate
+	for _, n := range d.names {
+		k := compact(n)
+		dist := editDistance(c, k)
+		if dist <= max(1, len(k)/2) || len(c) >= 3 && (strings.HasPrefix(k, c) || strings.HasPrefix(c, k)) {
+			found = append(found, candidate{n, dist})
+		}
+	}
+	slices.SortStableFunc(found, func(a, b candidate) int { return a.distance - b.distance })
+	var names []string
+	for _, f := range found[:min(3, len(found))] {
+		names = append(names, f.name)
+	}
+	return names
+}
+
+// editDistance is the least number of single-letter insertions, deletions and
+// replacements that turn a into b (Levenshtein 1966).
+func editDistance(a, b string) int {
+	row := make([]int, len(b)+1)
+	for j := range row {
+		row[j] = j
+	}
+	for i := range len(a) {
+		diagonal := row[0]
+		row[0] = i + 1
+		for j := range len(b) {
+			cost := diagonal
+			if a[i] != b[j] {
+				cost++
+			}
+			diagonal = row[j+1]
+			row[j+1] = min(cost, row[j]+1, row[j+1]+1)
+		}
+	}
+	return row[len(b)]
+}

@@ -1,0 +1,141 @@
+package section
+
+import (
+	"cmp"
+	"math"
+	"regexp"
+	"slices"
+	"strconv"
+)
+
+// nearest is how many near misses are named at the most.
+const nearest = 3
+
+var digits = regexp.MustCompile(`\d+(?:\.\d+)?`)
+
+type candidate struct {
+	designation string
+	distance    float64
+}
+
+// closest returns the designations of the nearest candidates, each once.
+func closest(list []candidate) []string {
+	slices.SortFunc(list, func(a, b candidate) int {
+		return cmp.Or(cmp.Compare(a.distance, b.distance), cmp.Compare(a.designation, b.designation))
+	})
+	var names []string
+	for _, c := range list {
+		if !slices.Contains(names, c.designation) {
+			names = append(names, c.designation)
+		}
+		if len(names) == nearest {
+			break
+		}
+	}
+	return names
+}
+
+// nearAll returns the sizes whose spelling is the fewest letters off, two at the
+// most.
+func (c *catalogue) nearAll(k string) []string {
+	least := 2
+	var list []candidate
+	for spelling, s := range c.index {
+		if len(k) > len(spelling)+least {
+			continue
+		}
+		d := editDistance(k, spelling)
+		if d > least || d >= len(k) {
+			continue
+		}
+		if d < least {
+			least, list = d, nil
+		}
+		list = append(list, candidate{s.Designation, float64(d)})
+	}
+	return closest(list)
+}
+
+// nearIn returns the sizes of a family whose numbers are nearest by ratio to
+// those in rest, within a factor of 2 over all; without numbers to compare, none.
+// Pipe that is given by diameter and wall is compared by these, not by its
+// nominal size.
+func (c *catalogue) nearIn(family, rest string) []string {
+	want := numbers(rest)
+	d, err := dimensions(rest)
+	measured := err == nil && len(d) > 1
+	if measured {
+		want = d
+	}
+	if len(want) == 0 {
+		return nil
+	}
+	var list []candidate
+	for _, s := range c.series[family] {
+		have := numbers(key(s.Designation))
+		if measured && s.Shape == RoundTube {
+			have = []float64{s.H, s.Tw}
+		} else if measured {
+			scale(have, 1e-3)
+		}
+		if off := ratio(have, want); off <= math.Ln2 {
+			list = append(list, candidate{s.Designation, off})
+		}
+	}
+	return closest(list)
+}
+
+func scale(list []float64, by float64) {
+	for i := range list {
+		list[i] *= by
+	}
+}
+
+// ratio is the sum of |ln(a/b)| over pairs; infinite if the counts differ or a
+// number is not above zero.
+func ratio(a, b []float64) float64 {
+	if len(a) != len(b) {
+		return math.Inf(1)
+	}
+	var sum float64
+	for i := range a {
+		if !(a[i] > 0 && b[i] > 0) {
+			return math.Inf(1)
+		}
+		sum += math.Abs(math.Log(a[i] / b[i]))
+	}
+	return sum
+}
+
+// numbers returns the numbers above zero in a key.
+func numbers(k string) []float64 {
+	var list []float64
+	for _, text := range digits.FindAllString(k, -1) {
+		if x, err := strconv.ParseFloat(text, 64); err == nil && x > 0 {
+			list = append(list, x)
+		}
+	}
+	return list
+}
+
+// editDistance is the least number of single-letter insertions, deletions and
+// replacements that turn a into b (Levenshtein 1966).
+func editDistance(a, b string) int {
+	row := make([]int, len(b)+1)
+	for j := range row {
+		row[j] = j
+	}
+	for i := range len(a) {
+		diagonal := row[0]
+		row[0] = i + 1
+		for j := range len(b) {
+			cost := diagonal
+			if a[i] != b[j] {
+				cost++
+			}
+			diagonal = row[j+1]
+			row[j+1] = min(cost, row[j]+1, row[j+1]+1)
+		}
+	}
+	return row[len(b)]
+}
