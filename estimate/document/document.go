@@ -1,0 +1,255 @@
+// Package document is the estimate as plain data: the one type that is stored,
+// answered by the API, printed offline and drawn on pages.
+//
+//	engine.Run → Document → Canonical (bytes, SHA-256) → store, answer, file
+//	             Document → chart, workbook, report, page
+//
+// It depends on leaves only. Amounts are decimal strings, other numbers are
+// printed to 12 significant digits, lists are sorted, and nothing in it depends
+// on a clock, a database or the order of the rows.
+package document
+
+import (
+	"spanwright/estimate/assumption"
+	"spanwright/estimate/money"
+)
+
+// EngineVersion changes whenever the same job would give another document.
+// Each change has an entry in the change list of package engine.
+const EngineVersion = 1
+
+// Caution is the sentence shown wherever sizes are shown.
+const Caution = "Concept sizing for budgeting only, not for construction or lifting; local codes govern; a licensed engineer must design and check."
+
+// Document is one estimate: immutable, never edited, only superseded.
+type Document struct {
+	EngineVersion int                `json:"engine_version"`
+	Caution       string             `json:"caution"`
+	Job           Job                `json:"job"`
+	Totals        Totals             `json:"totals"`
+	Range         Range              `json:"range"`
+	Categories    []Category         `json:"categories"`
+	Groups        []Group            `json:"groups"`
+	Items         []Item             `json:"items"`
+	Lines         []Line             `json:"lines"`
+	Members       []Member           `json:"members"`
+	Findings      []Finding          `json:"findings"`
+	Assumptions   []assumption.Entry `json:"assumptions"`
+	Inclusions    []string           `json:"inclusions"`
+	Exclusions    []string           `json:"exclusions"`
+	Notes         []string           `json:"notes"`
+}
+
+// Job is what the reader must know of the frozen inputs.
+type Job struct {
+	Project         string `json:"project"`
+	Scheme          string `json:"scheme"`
+	Source          string `json:"source" doc:"name of the posted schedule"`
+	SourceSHA256    string `json:"source_sha256"`
+	JobSHA256       string `json:"job_sha256" doc:"of the frozen job, without its source and build"`
+	DesignBasis     string `json:"design_basis"`
+	Factor          Number `json:"factor"`
+	EstimateClass   int    `json:"estimate_class" minimum:"1" maximum:"5"`
+	Currency        string `json:"currency"`
+	BaseDate        string `json:"base_date"`
+	Money           string `json:"money" doc:"in which money the totals are stated"`
+	RateBook        string `json:"rate_book"`
+	RateBookNote    string `json:"rate_book_note"`
+	RateBookSHA256  string `json:"rate_book_sha256"`
+	ReferencePrice  string `json:"reference_price"`
+	CatalogueSHA256 string `json:"catalogue_sha256"`
+	GradesSHA256    string `json:"grades_sha256"`
+	Seed            uint64 `json:"seed"`
+	Replicates      int    `json:"replicates"`
+	Trials          int    `json:"trials" doc:"per replicate"`
+}
+
+// Totals are the figures of the first line.
+type Totals struct {
+	Base         money.Decimal `json:"base" doc:"sum of the categories at likely values, without contingency"`
+	Confidence   Number        `json:"confidence" doc:"percentile that the contingency reaches"`
+	AtConfidence money.Decimal `json:"at_confidence" doc:"the cost not exceeded with that probability"`
+	Contingency  money.Decimal `json:"contingency" doc:"at_confidence minus base; may be negative"`
+	Net          money.Decimal `json:"net_t"`
+	Delivered    money.Decimal `json:"delivered_t"`
+	Purchased    money.Decimal `json:"purchased_t"`
+	Members      int           `json:"members"`
+	Pieces       int           `json:"pieces"`
+	Unsafe       int           `json:"unsafe_findings"`
+}
+
+// Range is the distribution of the total.
+type Range struct {
+	Mean        Number       `json:"mean"`
+	MeanSE      Number       `json:"mean_standard_error"`
+	SD          Number       `json:"standard_deviation"`
+	Percentiles []Percentile `json:"percentiles"`
+	BaseAt      Number       `json:"base_percentile" doc:"the probability that the base is not exceeded"`
+	Curve       []Number     `json:"curve" doc:"the cumulative curve: values at 0, 1, …, 100 %"`
+	Method      string       `json:"method"`
+	Warnings    []string     `json:"warnings"`
+}
+
+// Percentile is the cost not exceeded with probability P.
+type Percentile struct {
+	P     Number `json:"p"`
+	Value Number `json:"value"`
+	SE    Number `json:"standard_error"`
+}
+
+// Category is the cost of one category.
+type Category struct {
+	Category string        `json:"category"`
+	Amount   money.Decimal `json:"amount"`
+	Mean     Number        `json:"mean"`
+	P10      Number        `json:"p10"`
+	P90      Number        `json:"p90"`
+}
+
+// Group is the tonnage and cost of one group of members.
+type Group struct {
+	Group     string        `json:"group"`
+	Members   int           `json:"members"`
+	Pieces    int           `json:"pieces"`
+	Length    Number        `json:"length_m"`
+	Surface   Number        `json:"surface_m2"`
+	Net       money.Decimal `json:"net_t"`
+	Delivered money.Decimal `json:"delivered_t"`
+	Purchased money.Decimal `json:"purchased_t"`
+	Amount    money.Decimal `json:"amount"`
+}
+
+// Item is one counted quantity: pieces alike in all that take-off and rates ask.
+type Item struct {
+	ID         string        `json:"id"`
+	Group      string        `json:"group"`
+	Family     string        `json:"family"`
+	Treatment  string        `json:"treatment"`
+	Connection string        `json:"connection_class"`
+	Marks      []string      `json:"marks"`
+	Pieces     int           `json:"pieces"`
+	Length     Number        `json:"length_m"`
+	Surface    Number        `json:"surface_m2"`
+	Net        money.Decimal `json:"net_t"`
+	Delivered  money.Decimal `json:"delivered_t"`
+	Purchased  money.Decimal `json:"purchased_t"`
+}
+
+// Line is one priced quantity: amount = quantity × rate × the multipliers,
+// rounded once, half away from zero, to the minor unit.
+type Line struct {
+	ID          string        `json:"id"`
+	Item        string        `json:"item"`
+	Group       string        `json:"group"`
+	Category    string        `json:"category"`
+	Driver      string        `json:"driver"`
+	Quantity    money.Decimal `json:"quantity"`
+	Unit        string        `json:"unit"`
+	Rate        money.Decimal `json:"rate"`
+	RateFormula string        `json:"rate_formula"`
+	Multipliers []Multiplier  `json:"multipliers"`
+	Amount      money.Decimal `json:"amount"`
+	Assumptions []string      `json:"assumptions"`
+}
+
+// Multiplier is one factor on a line and the scope that won.
+type Multiplier struct {
+	Name       string        `json:"name"`
+	Scope      string        `json:"scope"`
+	Subject    string        `json:"subject,omitempty"`
+	Value      money.Decimal `json:"value"`
+	Assumption string        `json:"assumption"`
+}
+
+// Member is one row with its sizing.
+type Member struct {
+	Mark            string     `json:"mark"`
+	Group           string     `json:"group"`
+	Kind            string     `json:"kind"`
+	Description     string     `json:"description,omitempty"`
+	Item            string     `json:"item"`
+	Quantity        int        `json:"quantity"`
+	Length          Number     `json:"length_m"`
+	Treatment       string     `json:"treatment"`
+	Arrangement     string     `json:"arrangement,omitempty"`
+	Section         string     `json:"section,omitempty"`
+	Grade           string     `json:"grade,omitempty"`
+	LineMass        Number     `json:"mass_kg_m,omitempty"`
+	Net             Number     `json:"net_kg"`
+	Passes          bool       `json:"passes"`
+	Governing       string     `json:"governing_check,omitempty"`
+	Utilisation     Number     `json:"utilisation,omitempty"`
+	TotalLoad       Number     `json:"total_load_kn,omitempty" doc:"permanent, variable and own weight of one piece"`
+	SelfWeight      Number     `json:"self_weight_kn,omitempty"`
+	Checks          []Check    `json:"checks,omitempty"`
+	Rejected        []Rejected `json:"lighter_rejected,omitempty"`
+	Reactions       []Reaction `json:"reactions,omitempty"`
+	Ratios          []Ratio    `json:"split_ratios,omitempty"`
+	DeflectionLimit Number     `json:"deflection_limit,omitempty"`
+}
+
+// Check is one check of the chosen section, with the inputs that it used.
+type Check struct {
+	ID          string     `json:"id"`
+	Clause      string     `json:"clause"`
+	Formula     string     `json:"formula"`
+	Demand      Number     `json:"demand"`
+	Resistance  Number     `json:"resistance"`
+	Unit        string     `json:"unit"`
+	Utilisation Number     `json:"utilisation"`
+	PassFail    bool       `json:"pass_fail,omitempty" doc:"a limit that is met or not; it governs only where it is not met"`
+	Inputs      []Quantity `json:"inputs"`
+	Note        string     `json:"note,omitempty"`
+}
+
+// Quantity is one named input of a check.
+type Quantity struct {
+	Symbol string `json:"symbol"`
+	Value  Number `json:"value"`
+	Unit   string `json:"unit"`
+}
+
+// Rejected is a lighter section and why it fails.
+type Rejected struct {
+	Section     string `json:"section"`
+	Check       string `json:"check"`
+	Utilisation Number `json:"utilisation"`
+}
+
+// Reaction is the exact envelope of one support, up positive.
+type Reaction struct {
+	Position Number `json:"position_m"`
+	Max      Number `json:"max_kn"`
+	Min      Number `json:"min_kn"`
+	Moment   Number `json:"moment_knm,omitempty" doc:"of a fixed support, largest by size"`
+}
+
+// Ratio compares the split method with the exact envelope.
+type Ratio struct {
+	Effect string `json:"effect"`
+	Where  string `json:"where"`
+	Split  Number `json:"split"`
+	Exact  Number `json:"exact"`
+	Unit   string `json:"unit"`
+	Ratio  Number `json:"ratio" doc:"split / exact, signed; below 1 the shortcut is unsafe"`
+	Unsafe bool   `json:"unsafe"`
+}
+
+// Severity grades findings.
+type Severity string
+
+// The severities, gravest first.
+const (
+	Unsafe   Severity = "unsafe"
+	Doubtful Severity = "doubtful"
+	Notice   Severity = "notice"
+)
+
+// Finding is a doubt that travels with the figures.
+type Finding struct {
+	Severity Severity `json:"severity" enum:"unsafe,doubtful,notice"`
+	Code     string   `json:"code" doc:"stable id of the kind of finding"`
+	Subject  string   `json:"subject" doc:"a mark, a group or the total"`
+	Message  string   `json:"message"`
+	Figures  []string `json:"figures,omitempty" doc:"ids of the figures that are in doubt"`
+}

@@ -1,0 +1,56 @@
+package document
+
+import (
+	"fmt"
+	"strings"
+
+	"spanwright/estimate/assumption"
+)
+
+// Figures returns every figure of the document by id, as printed. These are the
+// ids that the register's feeds name.
+//
+//	member/{mark}/check/{check}      utilisation
+//	member/{mark}/net                kg
+//	item/{item}/net|delivered|purchased
+//	group/{group}/net|delivered|purchased|amount
+//	line/{item}/{category}, category/{category}, base, range, contingency
+func (d Document) Figures() map[string]string {
+	f := map[string]string{}
+	num := func(n Number) string { return fmt.Sprint(n.Rounded()) }
+	for _, m := range d.Members {
+		p := "member/" + assumption.Segment(m.Mark)
+		f[p+"/net"] = num(m.Net)
+		for _, c := range m.Checks {
+			f[p+"/check/"+assumption.Segment(c.ID)] = num(c.Utilisation)
+		}
+	}
+	for _, it := range d.Items {
+		f["item/"+it.ID+"/net"] = it.Net.String()
+		f["item/"+it.ID+"/delivered"] = it.Delivered.String()
+		f["item/"+it.ID+"/purchased"] = it.Purchased.String()
+	}
+	for _, g := range d.Groups {
+		p := "group/" + assumption.Segment(g.Group)
+		f[p+"/net"] = g.Net.String()
+		f[p+"/delivered"] = g.Delivered.String()
+		f[p+"/purchased"] = g.Purchased.String()
+		f[p+"/amount"] = g.Amount.String()
+	}
+	for _, l := range d.Lines {
+		f[l.ID] = l.Amount.String()
+	}
+	for _, c := range d.Categories {
+		f["category/"+c.Category] = c.Amount.String()
+	}
+	f["base"] = d.Totals.Base.String()
+	f["contingency"] = d.Totals.Contingency.String()
+	var p []string
+	for _, q := range d.Range.Percentiles {
+		if q.P == 0.1 || q.P == 0.5 || q.P == 0.8 || q.P == 0.9 {
+			p = append(p, num(q.Value))
+		}
+	}
+	f["range"] = num(d.Range.Mean) + " " + strings.Join(p, " ")
+	return f
+}

@@ -1,0 +1,317 @@
+package engine_test
+
+import (
+	"encoding/json"
+	"fmt"
+	"maps"
+	"slices"
+	"strings"
+	"testing"
+
+	"spanwright/estimate/assumption"
+	"spanwright/estimate/document"
+	"spanwright/estimate/job"
+	"spanwright/estimate/money"
+	"spanwright/estimate/pricing"
+	"spanwright/estimate/ratebook"
+	"spanwright/estimate/schedule"
+	"spanwright/estimate/spread"
+)
+
+// feedsSchedule has every numeric column in use, quantities large enough that
+// one per cent of any allowance moves a kilogram, and utilisations far enough
+// below 1 that one per cent moves no section.
+const feedsSchedule = `Mark,Group,Kind,Quantity,Length (m),Support,Permanent load (kN/m),Variable load (kN/m),Point load (kN),Point position (m),Axial load (kN),Area load (kN/m²),Tributary width (m),Overhang (m),Support positions (m),Restraint spacing (m),Effective length factor,Deflection limit (L/n),Section or family,Grade,Mass if not sized (kg/m),Area (m²)
+B1,Gallery,beam,500,6,simple,2,3,,,,,,,,2,,300,IPE,S275,,
+B2,Gallery,beam,400,5,simple,1,,,,,3,2,,,,,,HEA,S275,,
+B3,Gallery,boom,300,12,overhang,0.8,1.1,3,11.5,,,,4,,,,100,CHS,S355,,
+B4,Bridge,beam,700,9,,1,2,,,,,,,0; 4; 9,,,,HEB,S275,,
+B5,Bridge,post,900,4,strut,,,,,80,,,,,,0.9,,CHS,S275,,
+B6,Bridge,beam,800,5,simple,0.5,0.7,,,30,,,,,,0.95,,RHS,S355,,
+B7,Bridge,beam,600,6,simple,1,2,,,,,,,,,,,IPE 300,S275,,
+G1,Gallery,grating,1000,8,not sized,,,,,,,,,,,,,,,28.5 kg/m²,12
+H1,Gallery,handrail,2000,10,not sized,,,,,,,,,,,,,,,14.5,
+`
+
+func feedsJob(t *testing.T) job.Job {
+	t.Helper()
+	s := readCSV(t, []byte(feedsSchedule), table("Project", "P", "Scheme", "S", "Base date", "2026-06-01"))
+	edited := []ratebook.Multiplier{
+		{Name: "tides", Scope: ratebook.GroupScope, Subject: "Bridge", Categories: []string{ratebook.Erection}, Spread: spread.NewTriangular(1, 1.2, 1.6), Reason: "tidal work", Author: "test", Version: 3},
+		{Name: "site difficulty", Scope: ratebook.MemberScope, Subject: "B2", Categories: []string{ratebook.Erection}, Spread: spread.NewPERT(1, 1.3, 2), Group: "labour", Reason: "hard to reach", Author: "test", Version: 1},
+		{Name: "shop difficulty", Scope: ratebook.FamilyScope, Subject: "CHS", Categories: []string{ratebook.Fabrication}, Spread: spread.NewPERT(1, 1.1, 1.5), Group: "labour", Reason: "tube profiling", Author: "test", Version: 1},
+	}
+	return freeze(t, s, ratebook.Ratio(), edited, quick)
+}
+
+// deepCopy goes through the job's own canonical bytes.
+func deepCopy(t *testing.T, j job.Job) job.Job {
+	t.Helper()
+	data, err := json.Marshal(j)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return reread(t, data)
+}
+
+// expand turns the patterns of an entry into the figures that exist.
+func expand(d document.Document, feeds []string, m *document.Member) []string {
+	set := map[string]bool{}
+	for id := range d.Figures() {
+		for _, p := range feeds {
+			if m != nil {
+				p = strings.NewReplacer("{mark}", assumption.Segment(m.Mark), "{item}", m.Item, "{group}", assumption.Segment(m.Group)).Replace(p)
+			}
+			if id == p || (strings.HasSuffix(p, "/*") && strings.HasPrefix(id, strings.TrimSuffix(p, "*")) && !strings.Contains(id[len(p)-1:], "/")) {
+				set[id] = true
+			}
+		}
+	}
+	return slices.Sorted(maps.Keys(set))
+}
+
+func changed(before, after document.Document) []string {
+	a, b := before.Figures(), after.Figures()
+	var out []string
+	for id, v := range a {
+		if b[id] != v {
+			out = append(out, id)
+		}
+	}
+	slices.Sort(out)
+	return out
+}
+
+func entryOf(t *testing.T, d document.Document, id string) assumption.Entry {
+	t.Helper()
+	for _, e := range d.Assumptions {
+		if e.ID == id {
+			return e
+		}
+	}
+	t.Fatalf("the register has no entry %q", id)
+	return assumption.Entry{}
+}
+
+func sameSections(t *testing.T, what string, a, b document.Document) {
+	t.Helper()
+	for i := range a.Members {
+		if a.Members[i].Section != b.Members[i].Section {
+			t.Fatalf("%s: one per cent moved the section of %s from %s to %s; choose other loads for this test", what, a.Members[i].Mark, a.Members[i].Section, b.Members[i].Section)
+		}
+	}
+}
+
+// nudge adds one per cent; of a value of zero it makes a hundredth.
+func nudge(x float64) float64 {
+	if x == 0 {
+		return 0.01
+	}
+	return x * 1.01
+}
+
+func nudgeSpread(s spread.Spread) spread.Spread {
+	if s.Distribution == spread.Fixed {
+		return spread.NewFixed(nudge(s.Base()))
+	}
+	return s.Scale(1.01)
+}
+
+// leaf is one number of a job that the register has an entry for.
+type leaf struct {
+	id   string
+	mark string // of an input of one member
+	move func(*job.Job)
+}
+
+func bookLeaves(j job.Job) []leaf {
+	move := func(m map[string]ratebook.Figure, k string) {
+		f := m[k]
+		f.Spread = nudgeSpread(f.Spread)
+		m[k] = f
+	}
+	out := []leaf{
+		{id: "rate/material", move: func(j *job.Job) { j.Book.MaterialPrice.Spread = nudgeSpread(j.Book.MaterialPrice.Spread) }},
+		{id: "allowance/bolts", move: func(j *job.Job) { j.Book.Bolts.Spread = nudgeSpread(j.Book.Bolts.Spread) }},
+		{id: "allowance/sizing bias", move: func(j *job.Job) { j.Book.SizingBias.Spread = nudgeSpread(j.Book.SizingBias.Spread) }},
+		{id: "allowance/growth/class 5", move: func(j *job.Job) { move(j.Book.Growth, "5") }},
+		{id: "systemic/class 5", move: func(j *job.Job) { j.Book.Systemic["5"] *= 1.01 }},
+		{id: "setting/reference price", move: func(j *job.Job) { j.Book.ReferencePrice = j.Book.ReferencePrice.Add(money.FromInt(9)) }},
+		{id: "setting/confidence", move: func(j *job.Job) { j.Settings.Confidence *= 1.01 }},
+	}
+	for c := range j.Book.Ratios {
+		out = append(out, leaf{id: "rate/" + c, move: func(j *job.Job) { move(j.Book.Ratios, c) }})
+	}
+	for _, c := range []string{"simple beams", "trestles", "tube booms"} {
+		out = append(out, leaf{id: "allowance/connections/" + c, move: func(j *job.Job) { move(j.Book.Connections, c) }})
+	}
+	for _, w := range []string{"sections", "tube", "plate"} {
+		out = append(out, leaf{id: "allowance/waste/" + w, move: func(j *job.Job) { move(j.Book.Waste, w) }})
+	}
+	for i, m := range j.Multipliers {
+		out = append(out, leaf{id: pricing.MultiplierID(m), move: func(j *job.Job) { j.Multipliers[i].Spread = nudgeSpread(j.Multipliers[i].Spread) }})
+	}
+	return out
+}
+
+// memberLeaves are the numbers of one row that are given (not defaults).
+func memberLeaves(m schedule.Member, i int) []leaf {
+	var out []leaf
+	add := func(id string, ok bool, move func(*schedule.Member)) {
+		if ok {
+			out = append(out, leaf{id: "input/" + id, mark: m.Mark, move: func(j *job.Job) { move(&j.Members[i]) }})
+		}
+	}
+	byArea := m.AreaMass > 0
+	given := func(field string) bool { return m.Defaults[field] == "" }
+	add("length", !byArea, func(m *schedule.Member) { scaleLength(m) })
+	add("quantity", true, func(m *schedule.Member) { m.Quantity += m.Quantity / 100 })
+	for k, l := range m.Loads {
+		id := l.Nature + " load"
+		switch {
+		case l.Kind == "point":
+			id = "point load"
+			add("point position", true, func(m *schedule.Member) { m.Loads[k].Position *= 1.01 })
+		case strings.Contains(strings.ToLower(l.Label), "area"):
+			id = "area load"
+		}
+		add(id, l.Value != 0, func(m *schedule.Member) { m.Loads[k].Value *= 1.01 })
+	}
+	add("axial load", m.Axial != 0, func(m *schedule.Member) { m.Axial *= 1.01 })
+	add("overhang", m.Arrangement == "overhang", func(m *schedule.Member) {
+		m.Supports[1].Position -= 0.01 * (m.Length - m.Supports[1].Position)
+	})
+	add("support positions", m.Arrangement == "positions", func(m *schedule.Member) { m.Supports[1].Position *= 1.01 })
+	add("restraint spacing", m.Restraint > 0, func(m *schedule.Member) { m.Restraint *= 1.01 })
+	add("effective length factor", m.LengthFactor > 0 && given("length_factor") && m.Axial != 0, func(m *schedule.Member) { m.LengthFactor *= 1.01 })
+	add("deflection limit", m.DeflectionLimit > 0 && given("deflection_limit"), func(m *schedule.Member) { m.DeflectionLimit *= 1.01 })
+	add("mass if not sized", m.Treatment == schedule.ByMass, func(m *schedule.Member) { m.LineMass *= 1.01; m.AreaMass *= 1.01 })
+	add("area", byArea, func(m *schedule.Member) { m.Area *= 1.01 })
+	return out
+}
+
+// scaleLength lengthens a member by one per cent; its far support goes with it.
+func scaleLength(m *schedule.Member) {
+	old := m.Length
+	m.Length *= 1.01
+	for k := range m.Supports {
+		if m.Supports[k].Position == old {
+			m.Supports[k].Position = m.Length
+		}
+	}
+}
+
+func TestFeedsNamesExactlyTheFiguresThatChange(t *testing.T) {
+	j := feedsJob(t)
+	before := run(t, j)
+	members := map[string]*document.Member{}
+	for i := range before.Members {
+		members[before.Members[i].Mark] = &before.Members[i]
+	}
+	leaves := bookLeaves(j)
+	for i, m := range j.Members {
+		leaves = append(leaves, memberLeaves(m, i)...)
+	}
+	tested := map[string]bool{}
+	for _, l := range leaves {
+		moved := deepCopy(t, j)
+		l.move(&moved)
+		after := run(t, moved)
+		what := fmt.Sprintf("%s of %q", l.id, l.mark)
+		sameSections(t, what, before, after)
+		tested[l.id] = true
+		got, want := changed(before, after), expand(before, entryOf(t, before, l.id).Feeds, members[l.mark])
+		if !slices.Equal(got, want) {
+			t.Errorf("%s:\n changed but not in feeds: %v\n in feeds but unchanged: %v", what, minus(got, want), minus(want, got))
+		}
+	}
+	for _, l := range defaultLeaves(j) {
+		moved := deepCopy(t, j)
+		l.move(&moved)
+		after := run(t, moved)
+		sameSections(t, l.id, before, after)
+		tested[l.id] = true
+		got, want := changed(before, after), expand(before, entryOf(t, before, l.id).Feeds, nil)
+		if !slices.Equal(got, want) {
+			t.Errorf("%s:\n changed but not in feeds: %v\n in feeds but unchanged: %v", l.id, minus(got, want), minus(want, got))
+		}
+	}
+	for _, e := range before.Assumptions {
+		if len(e.Feeds) > 0 && !tested[e.ID] && !untestable[e.ID] {
+			t.Errorf("entry %s feeds %v but no leaf of this test moves it", e.ID, e.Feeds)
+		}
+	}
+}
+
+// untestable are entries that this job has no member for, or that another entry
+// stands for here.
+var untestable = map[string]bool{
+	"input/tributary width": true, // the load is frozen as area load × width
+	"input/factor":          true, // this job takes the default factor
+	"input/confidence":      true, // moved as setting/confidence
+}
+
+// defaultLeaves are the values that rows or the job took by default.
+func defaultLeaves(j job.Job) []leaf {
+	var out []leaf
+	for _, e := range j.Defaults {
+		if len(e.Feeds) == 0 {
+			continue
+		}
+		out = append(out, leaf{id: e.ID, move: func(j *job.Job) {
+			if strings.HasPrefix(e.ID, "default/factor") {
+				j.Settings.Factor *= 1.01
+			}
+			if e.ID == "default/confidence" {
+				j.Settings.Confidence *= 1.01
+			}
+			for i := range j.Members {
+				for field, id := range j.Members[i].Defaults {
+					if id != e.ID {
+						continue
+					}
+					switch field {
+					case "deflection_limit":
+						j.Members[i].DeflectionLimit *= 1.01
+					case "length_factor":
+						j.Members[i].LengthFactor = nudgeFrom(j.Members[i].LengthFactor, 1)
+					case "restraint_m":
+						j.Members[i].Restraint = 1.01 * longestSpan(j.Members[i])
+					}
+				}
+			}
+		}})
+	}
+	return out
+}
+
+func nudgeFrom(x, fallback float64) float64 {
+	if x == 0 {
+		x = fallback
+	}
+	return x * 1.01
+}
+
+// longestSpan is what an absent restraint spacing means.
+func longestSpan(m schedule.Member) float64 {
+	at := []float64{0, m.Length}
+	for _, s := range m.Supports {
+		at = append(at, s.Position)
+	}
+	slices.Sort(at)
+	longest := 0.0
+	for i := 1; i < len(at); i++ {
+		longest = max(longest, at[i]-at[i-1])
+	}
+	return longest
+}
+
+func minus(a, b []string) []string {
+	var out []string
+	for _, x := range a {
+		if !slices.Contains(b, x) {
+			out = append(out, x)
+		}
+	}
+	return out
+}

@@ -1,0 +1,191 @@
+package engine
+
+import (
+	"fmt"
+	"math"
+	"sort"
+	"strings"
+
+	"spanwright/estimate/assumption"
+	"spanwright/estimate/document"
+	"spanwright/estimate/money"
+	"spanwright/structural/beam"
+	"spanwright/structural/resistance"
+)
+
+// lowestCombinedFactor is the factor on yield below which a first pass without
+// explicit combinations is doubtful (common practice, no source: 3 to 4).
+const lowestCombinedFactor = 3
+
+// findings gathers what is unsafe or doubtful, gravest first, then by subject.
+func (r *run) findings(d document.Document) []document.Finding {
+	var f []document.Finding
+	for _, s := range r.sized {
+		f = append(f, memberFindings(s)...)
+	}
+	f = append(f, r.bandFindings(d.Groups)...)
+	f = append(f, r.totalFindings(d)...)
+	rank := map[document.Severity]int{document.Unsafe: 0, document.Doubtful: 1, document.Notice: 2}
+	sort.SliceStable(f, func(i, j int) bool {
+		if rank[f[i].Severity] != rank[f[j].Severity] {
+			return rank[f[i].Severity] < rank[f[j].Severity]
+		}
+		return false
+	})
+	return f
+}
+
+func memberFindings(s sizedMember) []document.Finding {
+	if s.result == nil {
+		return nil
+	}
+	var out []document.Finding
+	mark := s.member.Mark
+	figures := []string{"member/" + assumption.Segment(mark) + "/net"}
+	if !s.result.Passes {
+		out = append(out, document.Finding{Severity: document.Unsafe, Code: "section-fails", Subject: mark, Figures: figures,
+			Message: fmt.Sprintf("The given section %s fails: %s at %.2f. Its tonnage is priced as given; it will grow.", s.result.Section.Designation, s.result.Governing, s.result.Utilisation)})
+	}
+	if f, ok := unsafeShortcut(mark, s.result.Ratios); ok {
+		out = append(out, f)
+	}
+	if f, ok := uplift(s); ok {
+		out = append(out, f)
+	}
+	for _, c := range s.result.Checks {
+		if c.Note != "" && !resistance.Passes(c.Utilisation) {
+			out = append(out, document.Finding{Severity: document.Doubtful, Code: "check-note", Subject: mark, Message: c.Note, Figures: figures})
+		}
+	}
+	return out
+}
+
+// unsafeShortcut names the ratios of the split method that are too low. The
+// sizing itself uses the exact envelope, so the finding warns against the
+// shortcut, not against the size.
+func unsafeShortcut(mark string, ratios []beam.Ratio) (document.Finding, bool) {
+	var worst beam.Ratio
+	var names []string
+	for _, r := range ratios {
+		if !r.Unsafe {
+			continue
+		}
+		names = append(names, fmt.Sprintf("%s of %s %s", r.Effect, r.Where, twoPlaces(r.Ratio)))
+		if len(names) == 1 || r.Ratio < worst.Ratio {
+			worst = r
+		}
+	}
+	if len(names) == 0 {
+		return document.Finding{}, false
+	}
+	return document.Finding{Severity: document.Unsafe, Code: "unsafe-shortcut", Subject: mark,
+		Message: fmt.Sprintf("The split method would be unsafe here: it gives %s of the exact %s (%s). Ratios below 1: %s. The size and the reactions shown come from the exact envelope.",
+			twoPlaces(worst.Ratio), worst.Effect, worst.Where, strings.Join(names, "; "))}, true
+}
+
+// twoPlaces prints a ratio without a negative zero.
+func twoPlaces(x float64) string {
+	s := fmt.Sprintf("%.2f", x)
+	if s == "-0.00" {
+		return "0.00"
+	}
+	return s
+}
+
+func uplift(s sizedMember) (document.Finding, bool) {
+	var parts []string
+	for _, r := range s.result.Envelope.Reactions {
+		if r.FMin < -1 {
+			parts = append(parts, fmt.Sprintf("%.1f kN at %.3g m", -r.FMin/1000, r.X))
+		}
+	}
+	if len(parts) == 0 {
+		return document.Finding{}, false
+	}
+	return document.Finding{Severity: document.Doubtful, Code: "uplift", Subject: s.member.Mark,
+		Message: "A support is lifted: " + strings.Join(parts, ", ") + ". Holding-down or ballast is needed and is not priced."}, true
+}
+
+// bandFindings holds each group's mass per metre and price per tonne against the
+// bands of the book, by the connection class that most of its mass has.
+func (r *run) bandFindings(groups []document.Group) []document.Finding {
+	class := r.mainClass()
+	var out []document.Finding
+	for _, g := range groups {
+		for _, b := range r.job.Book.Bands {
+			if b.Class != class[g.Group] {
+				continue
+			}
+			value, unit, ok := measure(b.Measure, g, r.currency)
+			if !ok || (b.Low <= value && value <= b.High) {
+				continue
+			}
+			out = append(out, document.Finding{Severity: document.Doubtful, Code: "outside-band", Subject: g.Group,
+				Message: fmt.Sprintf("%.4g %s lies outside the usual %.4g to %.4g for %s (%s).", value, unit, b.Low, b.High, b.Class, b.Source),
+				Figures: []string{"group/" + assumption.Segment(g.Group) + "/amount"}})
+		}
+	}
+	return out
+}
+
+func measure(name string, g document.Group, c money.Currency) (float64, string, bool) {
+	switch name {
+	case "kg/m":
+		return 1000 * g.Net.Float64() / float64(g.Length), "kg/m", g.Length > 0
+	case "price/t":
+		return g.Amount.Float64() / g.Delivered.Float64(), c.Code + "/t", g.Delivered.Sign() > 0
+	}
+	return math.NaN(), "", false
+}
+
+func (r *run) mainClass() map[string]string {
+	heaviest := map[string]float64{}
+	class := map[string]string{}
+	for _, it := range r.items {
+		if t := it.Net.Float64(); t > heaviest[it.Group] {
+			heaviest[it.Group], class[it.Group] = t, it.Connection
+		}
+	}
+	return class
+}
+
+func (r *run) totalFindings(d document.Document) []document.Finding {
+	var out []document.Finding
+	add := func(s document.Severity, code, message string, figures ...string) {
+		out = append(out, document.Finding{Severity: s, Code: code, Subject: "total", Message: message, Figures: figures})
+	}
+	if r.job.Settings.Factor < lowestCombinedFactor {
+		add(document.Doubtful, "low-factor", fmt.Sprintf("The factor on yield is %.4g without explicit combinations; 3 to 4 is usual for a first pass (common practice, no source).", r.job.Settings.Factor))
+	}
+	for _, w := range r.ranged.Warnings {
+		add(document.Doubtful, w.Code, w.Message, "range", "contingency")
+	}
+	if d.Totals.Contingency.Sign() < 0 {
+		add(document.Doubtful, "negative-contingency", fmt.Sprintf("The contingency is negative: the base lies at P%.3g, above the chosen P%.3g.", 100*float64(d.Range.BaseAt), 100*float64(d.Totals.Confidence)), "contingency")
+	}
+	for _, id := range sortedKeys(r.job.Book.Ratios) {
+		if v := r.job.Book.Ratios[id].ValidUntil; v != "" && v < r.job.Settings.BaseDate {
+			add(document.Doubtful, "rate-expired", fmt.Sprintf("The rate of %s was valid until %s, before the base date %s.", id, v, r.job.Settings.BaseDate), "category/"+id)
+		}
+	}
+	if v := r.job.Book.MaterialPrice.ValidUntil; v != "" && v < r.job.Settings.BaseDate {
+		add(document.Doubtful, "rate-expired", fmt.Sprintf("The price of steel was valid until %s, before the base date %s.", v, r.job.Settings.BaseDate), "category/material")
+	}
+	if rho := zeroCorrelation(r.job.Book.Correlation); len(rho) > 0 {
+		add(document.Doubtful, "no-correlation", "Costs of the group "+strings.Join(rho, ", ")+" are taken as uncorrelated (ρ = 0), which narrows the range.", "range")
+	}
+	for _, o := range r.job.Omissions {
+		add(document.Notice, "possible-omission", o)
+	}
+	return out
+}
+
+func zeroCorrelation(c map[string]float64) []string {
+	var out []string
+	for _, g := range sortedKeys(c) {
+		if c[g] == 0 {
+			out = append(out, g)
+		}
+	}
+	return out
+}

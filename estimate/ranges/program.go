@@ -1,0 +1,153 @@
+package ranges
+
+import (
+	"fmt"
+	"math"
+
+	"spanwright/estimate/pricing"
+	"spanwright/estimate/spread"
+)
+
+// program is a model validated and compiled for evaluation by columns.
+type program struct {
+	inputs     []input
+	groups     []group
+	terms      []term
+	overall    []pricing.Factor
+	categories []string // in order of first appearance
+}
+
+// input is one assumption with its sampler and random numbers.
+type input struct {
+	id      string
+	sampler spread.Sampler
+	draws   uniforms
+	group   int // index of groups, −1 for independent
+}
+
+// group is a correlation group: z = √r·Z + √(1−r)·e with one common factor Z, so
+// that any two members have the latent correlation r.
+type group struct {
+	name        string
+	members     int
+	rho         float64
+	common, own float64 // √r, √(1−r)
+	draws       uniforms
+}
+
+// term is a pricing.Term with its category as an index.
+type term struct {
+	category    int
+	coefficient float64
+	factors     []pricing.Factor
+}
+
+// Limits of a model.
+const (
+	MaxInputs     = 20_000
+	MaxTerms      = 1_000_000
+	MaxCategories = 32
+)
+
+// compile validates m under s; the error names the part at fault.
+func compile(m pricing.Model, s Settings) (*program, error) {
+	if len(m.Terms) == 0 || len(m.Terms) > MaxTerms {
+		return nil, fault("model.terms", len(m.Terms), fmt.Sprintf("1 to %d terms", MaxTerms))
+	}
+	if len(m.Inputs) > MaxInputs {
+		return nil, fault("model.inputs", len(m.Inputs), fmt.Sprintf("at most %d inputs", MaxInputs))
+	}
+	p := &program{overall: m.Overall}
+	if err := p.addInputs(m.Inputs, s); err != nil {
+		return nil, err
+	}
+	if err := p.addTerms(m.Terms); err != nil {
+		return nil, err
+	}
+	if err := p.checkFactors("model.overall", m.Overall); err != nil {
+		return nil, err
+	}
+	return p, nil
+}
+
+// addInputs compiles spreads and groups.
+func (p *program) addInputs(inputs []pricing.Input, s Settings) error {
+	index := map[string]int{}
+	for i, in := range inputs {
+		where := fmt.Sprintf("model.inputs[%d] %q", i, in.ID)
+		if in.ID == "" || i > 0 && in.ID <= inputs[i-1].ID {
+			return fault(where, "its id empty, repeated or out of order", "ids that rise")
+		}
+		sampler, err := in.Spread.Sampler()
+		if err != nil {
+			return fmt.Errorf("ranges: %s: %w", where, err)
+		}
+		next := input{id: in.ID, sampler: sampler, draws: newUniforms(s.Seed, "assumption", in.ID), group: -1}
+		if in.Group != "" {
+			rho, ok := s.Correlation[in.Group]
+			if !ok {
+				return fault(where+" group", fmt.Sprintf("%q", in.Group), fmt.Sprintf("a group of the settings' correlation: %q", sortedKeys(s.Correlation)))
+			}
+			if _, ok := index[in.Group]; !ok {
+				index[in.Group] = len(p.groups)
+				p.groups = append(p.groups, newGroup(s.Seed, in.Group, rho))
+			}
+			next.group = index[in.Group]
+			if !sampler.Fixed() {
+				p.groups[next.group].members++
+			}
+		}
+		p.inputs = append(p.inputs, next)
+	}
+	for i := range p.inputs {
+		if g := p.inputs[i].group; g >= 0 && p.groups[g].rho == 0 {
+			p.inputs[i].group = -1
+		}
+	}
+	return nil
+}
+
+// newGroup returns the group of a rank correlation.
+func newGroup(seed uint64, name string, rho float64) group {
+	r := LatentCorrelation(rho)
+	return group{name: name, rho: rho, common: math.Sqrt(r), own: math.Sqrt(1 - r), draws: newUniforms(seed, "group", name)}
+}
+
+// addTerms checks the terms and numbers their categories.
+func (p *program) addTerms(terms []pricing.Term) error {
+	index := map[string]int{}
+	for i, t := range terms {
+		where := fmt.Sprintf("model.terms[%d]", i)
+		if !isFinite(t.Coefficient) {
+			return fault(where+" coefficient", t.Coefficient, "a finite number")
+		}
+		if err := p.checkFactors(where, t.Factors); err != nil {
+			return err
+		}
+		if _, ok := index[t.Category]; !ok {
+			index[t.Category] = len(p.categories)
+			p.categories = append(p.categories, t.Category)
+		}
+		p.terms = append(p.terms, term{category: index[t.Category], coefficient: t.Coefficient, factors: t.Factors})
+	}
+	if len(p.categories) > MaxCategories {
+		return fault("model.terms", fmt.Sprintf("%d categories", len(p.categories)), fmt.Sprintf("at most %d", MaxCategories))
+	}
+	return nil
+}
+
+// checkFactors tests that factors point at inputs and have finite offsets.
+func (p *program) checkFactors(where string, factors []pricing.Factor) error {
+	for i, f := range factors {
+		if f.Input < 0 || f.Input >= len(p.inputs) {
+			return fault(fmt.Sprintf("%s factor %d input", where, i), f.Input, fmt.Sprintf("0 to %d", len(p.inputs)-1))
+		}
+		if !isFinite(f.Offset) {
+			return fault(fmt.Sprintf("%s factor %d offset", where, i), f.Offset, "a finite number")
+		}
+	}
+	return nil
+}
+
+// isFinite reports whether x is neither NaN nor infinite.
+func isFinite(x float64) bool { return math.Abs(x) <= math.MaxFloat64 }

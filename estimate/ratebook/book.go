@@ -1,0 +1,160 @@
+// Package ratebook holds versioned rates, allowances and multipliers.
+//
+//	starting book or a posted book file → Parse, Validate
+//	book + multipliers edited in the service → Resolve: which scope wins for
+//	each member and category, with its author and reason
+//	→ frozen in the job, read by take-off and pricing
+//
+// The starting book `ratio` prices each category as a multiple of a frozen
+// reference price per delivered tonne, so that labour does not move with the
+// price of steel. All its figures are invented and say so.
+package ratebook
+
+import (
+	"bytes"
+	"crypto/sha256"
+	_ "embed" // the starting book
+	"encoding/hex"
+	"encoding/json"
+	"fmt"
+	"io"
+
+	"spanwright/estimate/money"
+	"spanwright/estimate/spread"
+)
+
+// The categories of cost, in the order in which they are shown.
+const (
+	Material    = "material"
+	Fabrication = "fabrication"
+	Coating     = "coating"
+	Inspection  = "inspection"
+	Shipping    = "shipping"
+	Erection    = "erection"
+	Foundations = "foundations"
+	Engineering = "engineering"
+	Indirects   = "indirects"
+	Margin      = "margin"
+)
+
+// Categories returns every category in the order in which it is shown.
+func Categories() []string {
+	return []string{Material, Fabrication, Coating, Inspection, Shipping, Erection, Foundations, Engineering, Indirects, Margin}
+}
+
+// The kinds of waste, by what is bought.
+const (
+	WasteSections = "sections"
+	WasteTube     = "tube"
+	WastePlate    = "plate"
+)
+
+// Figure is one number of the book: a spread with its provenance.
+type Figure struct {
+	Spread     spread.Spread `json:"spread"`
+	Group      string        `json:"group,omitempty" doc:"correlation group; empty for an independent one"`
+	Source     string        `json:"source"`
+	Author     string        `json:"author"`
+	Confidence string        `json:"confidence" enum:"low,medium,high"`
+	ValidUntil string        `json:"valid_until,omitempty" doc:"yyyy-mm-dd"`
+}
+
+// Book is one version of a rate book of the kind ratio.
+type Book struct {
+	Name     string `json:"name"`
+	Kind     string `json:"kind" enum:"ratio"`
+	Currency string `json:"currency"`
+	BaseDate string `json:"base_date" doc:"the date of its money, yyyy-mm-dd"`
+	Note     string `json:"note"`
+
+	// ReferencePrice is the frozen price per delivered tonne that the ratios
+	// multiply. It is a definition, not a belief, and has no spread.
+	ReferencePrice money.Decimal `json:"reference_price"`
+	// MaterialPrice is the price of steel per purchased tonne.
+	MaterialPrice Figure `json:"material_price"`
+	// Ratios are the categories as multiples of the reference price per delivered tonne.
+	Ratios map[string]Figure `json:"ratios"`
+
+	// Connections is the allowance on net mass by connection class.
+	Connections map[string]Figure `json:"connections"`
+	// Bolts is the allowance for bolts on net mass with connections.
+	Bolts Figure `json:"bolts"`
+	// Waste is the allowance from delivered (less bolts) to purchased mass.
+	Waste map[string]Figure `json:"waste"`
+	// Growth is the allowance for growth by estimate class, "5" to "1".
+	Growth map[string]Figure `json:"growth"`
+	// Systemic is the standard deviation of the logarithm of the factor on the
+	// whole base, by estimate class.
+	Systemic map[string]float64 `json:"systemic"`
+	// SizingBias is the belief about real over sized mass: the conservatism of
+	// the checks. It acts in the range, never in the base.
+	SizingBias Figure `json:"sizing_bias"`
+
+	Multipliers []Multiplier `json:"multipliers"`
+	Bands       []Band       `json:"bands"`
+	// Correlation is Spearman's ρ within each group.
+	Correlation map[string]float64 `json:"correlation"`
+}
+
+// Multiplier is an editable factor on categories.
+type Multiplier struct {
+	Name       string        `json:"name" doc:"multipliers of one name override each other by scope; those of different names multiply"`
+	Scope      Scope         `json:"scope" enum:"member,group,family,scheme,project,rate book"`
+	Subject    string        `json:"subject,omitempty" doc:"the mark, group or family that the scope names"`
+	Categories []string      `json:"categories"`
+	Spread     spread.Spread `json:"spread"`
+	Group      string        `json:"group,omitempty" doc:"correlation group"`
+	Reason     string        `json:"reason"`
+	Author     string        `json:"author"`
+	Version    int64         `json:"version,omitempty" doc:"version of the edited multiplier, 0 for one of the book"`
+}
+
+// Band is a range of what is usual for a kind of structure, against which each
+// group is held before anybody sees the total.
+type Band struct {
+	Measure string  `json:"measure" enum:"kg/m,price/t"`
+	Class   string  `json:"class" doc:"connection class that the band is for"`
+	Low     float64 `json:"low"`
+	High    float64 `json:"high"`
+	Source  string  `json:"source"`
+}
+
+//go:embed ratio.json
+var ratioJSON []byte
+
+// Ratio returns the starting book of the kind ratio.
+func Ratio() Book {
+	b, err := Parse(ratioJSON)
+	if err != nil {
+		panic("ratebook: the embedded book is broken: " + err.Error())
+	}
+	return b
+}
+
+// Parse reads a book from JSON, refusing unknown fields and anything that
+// Validate refuses.
+func Parse(data []byte) (Book, error) {
+	var b Book
+	d := json.NewDecoder(bytes.NewReader(data))
+	d.DisallowUnknownFields()
+	if err := d.Decode(&b); err != nil {
+		return Book{}, fmt.Errorf("reading the rate book: %w", err)
+	}
+	if _, err := d.Token(); err != io.EOF {
+		return Book{}, fmt.Errorf("reading the rate book: something follows the closing brace")
+	}
+	if err := b.Validate(); err != nil {
+		return Book{}, err
+	}
+	return b, nil
+}
+
+// Canonical returns the book's canonical bytes and their SHA-256 in hex.
+func (b Book) Canonical() ([]byte, string, error) {
+	data, err := json.Marshal(b)
+	if err != nil {
+		return nil, "", fmt.Errorf("writing the rate book: %w", err)
+	}
+	sum := sha256.Sum256(data)
+	return data, hex.EncodeToString(sum[:]), nil
+}

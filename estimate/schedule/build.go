@@ -1,0 +1,194 @@
+package schedule
+
+import "fmt"
+
+// build turns a row into a member. Every fault of the row is reported; the member
+// is of use only where there is none.
+func (r *row) build() Member {
+	f := r.readFields()
+	m := Member{
+		Mark: f.mark.value, Group: r.intern(f.group.value), Kind: r.intern(f.kind.value),
+		Description: f.description.value, Remarks: f.remarks.value,
+		Quantity: f.quantity, Length: f.length.value, Row: r.place(colMark),
+	}
+	d := taken{}
+	r.checkMark(f.mark)
+	if f.quantityState == blank {
+		r.missing(colQuantity, "the quantity is blank", "enter the number of pieces")
+	}
+	if f.group.state == blank {
+		m.Group = ungrouped
+		d.take("group", r.defaults.group())
+	}
+	switch word, byDefault := r.arrangement(&f); {
+	case word.state == bad:
+		r.givenGrade(&f)
+	case word.value == notSized:
+		r.unsized(&m, &f)
+	default:
+		m.Arrangement = word.value
+		if byDefault {
+			d.take("arrangement", r.defaults.simple())
+		}
+		r.sized(&m, &f, &d)
+	}
+	r.classify(&m, &f, &d)
+	m.Defaults = r.defaults.share(d)
+	return m
+}
+
+func (r *row) checkMark(mark text) {
+	if mark.state == blank {
+		r.missing(colMark, "the mark is blank", "give the row a name of its own")
+	}
+	if mark.state != given {
+		return
+	}
+	if first, twice := r.marks[mark.value]; twice {
+		r.fault(colMark, mark.value, fmt.Sprintf("is the mark of row %d already", first), "a mark of its own for each row; pieces alike are one row with their quantity")
+		return
+	}
+	r.marks[mark.value] = r.number
+}
+
+// unsized completes a row by mass.
+func (r *row) unsized(m *Member, f *fields) {
+	m.Treatment = ByMass
+	m.Grade = r.givenGrade(f)
+	r.nameProduct(m, f)
+	for _, l := range []struct {
+		id columnID
+		n  number
+	}{{colPermanent, f.permanent}, {colVariable, f.variable}, {colPoint, f.point}, {colAxial, f.axial}, {colAreaLoad, f.areaLoad}} {
+		if l.n.state == given && l.n.value != 0 {
+			r.fault(l.id, r.cells[l.id].Text, "is a load on a row that is not sized, which carries none", "leave it blank here and put it on the member that carries it")
+		}
+	}
+	r.strayOverhang(notSized, f)
+	switch {
+	case f.mass.state == bad:
+		return
+	case f.mass.state == blank:
+		r.missing(colMass, "a row that is not sized needs its mass", "enter it with its unit, such as 30 kg/m or 25 kg/m²")
+	case f.massByArea:
+		m.AreaMass, m.Area = f.mass.value, f.area.value
+		if f.area.state == blank {
+			r.missing(colArea, "a mass per area needs the area", "enter the area of one piece")
+		}
+	default:
+		m.LineMass = f.mass.value
+		r.needLength(f)
+	}
+}
+
+// nameProduct keeps what a row that is not sized calls itself: as its kind, else
+// at the head of the description.
+func (r *row) nameProduct(m *Member, f *fields) {
+	product := f.product.value
+	switch {
+	case product == "":
+	case m.Kind == "":
+		m.Kind = r.intern(product)
+	case fold(m.Kind) == fold(product):
+	case m.Description == "":
+		m.Description = product
+	default:
+		m.Description = product + ": " + m.Description
+	}
+}
+
+func (r *row) needLength(f *fields) bool {
+	if f.length.state == blank {
+		r.missing(colLength, "the length is blank", "enter the whole length of one piece")
+	}
+	return f.length.state == given
+}
+
+func (r *row) strayOverhang(word string, f *fields) {
+	if f.overhang.state == given && word != overhang {
+		r.fault(colOverhang, r.cells[colOverhang].Text, "is an overhang, but Support says "+word, "overhang in Support, or a blank cell here")
+	}
+}
+
+// sized completes a row that is held and loaded.
+func (r *row) sized(m *Member, f *fields, d *taken) {
+	hasLength := r.needLength(f)
+	r.strayOverhang(m.Arrangement, f)
+	if hasLength {
+		m.Supports = r.hold(m.Arrangement, f)
+	}
+	m.Loads = r.loads(m.Arrangement, f)
+	m.Axial = f.axial.value
+	if m.Arrangement == strut {
+		m.Upright = isUpright(m.Kind)
+	}
+	if f.product.state == blank {
+		r.missing(colProduct, "no section and no family is named", "enter a family such as IPE, a section such as IPE 300, or not sized in Support")
+	}
+	if s := r.product(f); s.known {
+		m.Treatment, m.Family, m.Section = s.treatment, s.family, s.designation
+		r.steel(m, f, d)
+	} else {
+		r.givenGrade(f)
+	}
+	r.restrain(m, f, d)
+	m.LengthFactor = f.factor.value
+	if f.factor.state == blank {
+		m.LengthFactor = 1
+		d.take("length_factor", r.defaults.lengthFactor())
+	}
+}
+
+// restrain settles the restraint spacing: the row's, else the job's as far as it
+// is below the length, else the full span.
+func (r *row) restrain(m *Member, f *fields, d *taken) {
+	switch {
+	case f.restraint.state == given:
+		m.Restraint = f.restraint.value
+		if f.length.state == given && m.Restraint > m.Length {
+			r.fault(colRestraint, r.cells[colRestraint].Text, "is longer than the member, "+metres(m.Length), "full span, or a spacing up to the length")
+		}
+	case f.restraint.state == blank && r.job.given[jobRestraint]:
+		if s := r.job.Restraint; s < m.Length {
+			m.Restraint = s
+		}
+	case f.restraint.state == blank:
+		d.take("restraint_m", r.defaults.restraint())
+	}
+}
+
+// classify fills what follows from the kind of the member: the kind itself where
+// it is blank, the connection class, the deflection limit.
+func (r *row) classify(m *Member, f *fields, d *taken) {
+	if m.Kind == "" && f.kind.state != bad {
+		m.Kind = kindOf(m)
+		d.take("kind", r.defaults.kind(m.Kind, m.Arrangement))
+	}
+	switch {
+	case f.connection.state == given:
+		m.ConnectionClass = r.connectionClass(f)
+	case r.job.given[jobConnection]:
+		m.ConnectionClass = r.job.ConnectionClass
+	default:
+		m.ConnectionClass = classOf(m.Kind)
+		d.take("connection_class", r.defaults.connection(m.ConnectionClass))
+	}
+	switch {
+	case m.Treatment == ByMass:
+	case f.limit.state == given:
+		m.DeflectionLimit = f.limit.value
+	case r.job.given[jobLimit]:
+		m.DeflectionLimit = r.job.DeflectionLimit
+	default:
+		m.DeflectionLimit = limitOf(m.Kind)
+		d.take("deflection_limit", r.defaults.limit(m.DeflectionLimit))
+	}
+}
+
+func (r *row) connectionClass(f *fields) string {
+	class, ok := r.findClass(f.connection.value)
+	if !ok {
+		r.fault(colConnection, f.connection.value, "is no connection class", r.classRemedy(f.connection.value))
+	}
+	return class
+}

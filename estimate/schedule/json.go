@@ -1,0 +1,261 @@
+package schedule
+
+import (
+	"bytes"
+	"context"
+	"encoding/json"
+	"errors"
+	"fmt"
+	"io"
+	"strings"
+
+	"spanwright/estimate/sheet"
+)
+
+// Names of the parts of a JSON schedule; faults bear them as their sheet.
+const (
+	jsonRows = "rows"
+	jsonJob  = "job"
+)
+
+// mostKeys bounds the different keys of the rows: far more than there are columns.
+const mostKeys = 200
+
+// nestedKind marks a JSON array or object where a single value is wanted.
+const nestedKind sheet.Kind = 254
+
+// ReadJSON reads a schedule posted as JSON:
+//
+//	{"rows": [{"Mark": "B1", "Quantity": 2, "Length (m)": 6, …}], "job": {"Grade": "S355"}}
+//
+// Keys are the headers of the columns and the keys of the Job sheet, each spelled
+// alike in all rows. The rules are those of Read; a key that is unknown or stands
+// twice in one object is a fault. A fault's address has "rows" or "job" as its
+// sheet, the row counted from 1, and the key as its header. Text that is no JSON of
+// this form is another error that says where.
+func ReadJSON(ctx context.Context, data []byte, o Options) (Schedule, error) {
+	r := newReader(o)
+	r.jsonKeys = true
+	t := table{reader: r, columns: map[string]int{}}
+	if err := t.survey(ctx, data); err != nil {
+		return Schedule{}, fmt.Errorf("reading the schedule as JSON: %w", err)
+	}
+	if t.job && o.JobTable != nil {
+		return Schedule{}, errors.New("the posting has a job and a job table is given as well; accepted is one of them")
+	}
+	r.address = func(row, _ int) sheet.Address { return sheet.Address{Sheet: jsonRows, Row: row} }
+	inJob := func(int, int) sheet.Address { return sheet.Address{Sheet: jsonJob} }
+	rows, comma := jobRows(t.jobRows), false
+	if o.JobTable != nil {
+		var err error
+		if rows, comma, err = openJobTable(o.JobTable); err != nil {
+			return Schedule{}, err
+		}
+	}
+	if err := r.readJob(ctx, rows, comma, inJob, o); err != nil {
+		return Schedule{}, err
+	}
+	return r.finish(t.rows(ctx, data))
+}
+
+// table turns JSON objects into rows of cells: one column for each key.
+type table struct {
+	*reader
+	columns  map[string]int // by key, from 1
+	keys     []sheet.Cell   // the header row
+	first    []int          // row in which each key stands first
+	settings [][]sheet.Cell // of the job object
+	job      bool
+}
+
+// survey checks the form of the whole text, collects the keys and the job.
+func (t *table) survey(ctx context.Context, data []byte) error {
+	d := newDecoder(data)
+	seen := map[string]bool{}
+	err := eachKey(d, func(key string) error {
+		if seen[key] {
+			return fmt.Errorf("the key %q stands twice", shorten(key))
+		}
+		seen[key] = true
+		switch key {
+		case jsonRows:
+			return eachItem(d, func(i int) error {
+				if err := ctx.Err(); err != nil {
+					return err
+				}
+				return t.surveyRow(d, i+1)
+			})
+		case jsonJob:
+			t.job = true
+			return eachKey(d, func(key string) error {
+				c, err := readValue(d)
+				c.Column = 2
+				t.settings = append(t.settings, []sheet.Cell{{Column: 1, Kind: sheet.Text, Text: key}, c})
+				return err
+			})
+		}
+		return fmt.Errorf("the key %q is not known; accepted are %q and %q", shorten(key), jsonRows, jsonJob)
+	})
+	if err != nil {
+		return fmt.Errorf("at byte %d: %w", d.InputOffset(), err)
+	}
+	if _, err := d.Token(); !errors.Is(err, io.EOF) {
+		return fmt.Errorf("at byte %d: something follows the end", d.InputOffset())
+	}
+	return nil
+}
+
+func (t *table) surveyRow(d *json.Decoder, row int) error {
+	seen := map[string]bool{}
+	return eachKey(d, func(key string) error {
+		if seen[key] {
+			t.report(sheet.Address{Sheet: jsonRows, Row: row}, shorten(key), shorten(key), "is a key that stands twice in the row", "leave one of them out")
+		}
+		seen[key] = true
+		if _, known := t.columns[key]; !known {
+			if len(t.keys) == mostKeys {
+				return fmt.Errorf("row %d: there are more than %d different keys; accepted are the headers of the columns", row, mostKeys)
+			}
+			t.columns[key] = len(t.keys) + 1
+			t.keys = append(t.keys, sheet.Cell{Column: len(t.keys) + 1, Kind: sheet.Text, Text: key})
+			t.first = append(t.first, row)
+		}
+		_, err := readValue(d)
+		return err
+	})
+}
+
+func (t *table) jobRows(_ context.Context, fn func(int, []sheet.Cell) error) error {
+	for i, cells := range t.settings {
+		if err := fn(i+1, cells); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// rows hands out the header and then row by row, as a sheet does.
+func (t *table) rows(ctx context.Context, data []byte) error {
+	if len(t.keys) == 0 {
+		return nil
+	}
+	rowAddress := t.address
+	t.address = func(row, column int) sheet.Address {
+		switch {
+		case row != headerRow:
+			return rowAddress(row, column)
+		case column == 0:
+			return sheet.Address{Sheet: jsonRows}
+		}
+		return rowAddress(t.first[column-1], column)
+	}
+	if err := t.readRow(headerRow, t.keys); err != nil {
+		return err
+	}
+	d := newDecoder(data)
+	return eachKey(d, func(key string) error {
+		if key != jsonRows {
+			_, err := readValue(d)
+			return err
+		}
+		return eachItem(d, func(i int) error {
+			if err := ctx.Err(); err != nil {
+				return err
+			}
+			cells := make([]sheet.Cell, 0, len(t.keys))
+			err := eachKey(d, func(key string) error {
+				c, err := readValue(d)
+				c.Column = t.columns[key]
+				cells = append(cells, c)
+				return err
+			})
+			if err != nil {
+				return err
+			}
+			return t.readRow(i+1, cells)
+		})
+	})
+}
+
+// headerRow is the number of the header, which JSON does not have as a row.
+const headerRow = -1
+
+func newDecoder(data []byte) *json.Decoder {
+	d := json.NewDecoder(bytes.NewReader(data))
+	d.UseNumber()
+	return d
+}
+
+// eachKey calls fn at every key of the object that comes next; fn must read the
+// value.
+func eachKey(d *json.Decoder, fn func(key string) error) error {
+	if err := opens(d, '{', "an object in braces"); err != nil {
+		return err
+	}
+	for d.More() {
+		token, err := d.Token()
+		if err != nil {
+			return err
+		}
+		key, ok := token.(string)
+		if !ok {
+			return fmt.Errorf("found %v where a key is wanted", token)
+		}
+		if err := fn(key); err != nil {
+			return err
+		}
+	}
+	_, err := d.Token()
+	return err
+}
+
+// eachItem calls fn at every item of the array that comes next.
+func eachItem(d *json.Decoder, fn func(i int) error) error {
+	if err := opens(d, '[', "an array in square brackets"); err != nil {
+		return err
+	}
+	for i := 0; d.More(); i++ {
+		if err := fn(i); err != nil {
+			return err
+		}
+	}
+	_, err := d.Token()
+	return err
+}
+
+func opens(d *json.Decoder, want json.Delim, words string) error {
+	token, err := d.Token()
+	if err != nil {
+		if errors.Is(err, io.EOF) {
+			return errors.New("the text ends early")
+		}
+		return err
+	}
+	if token != want {
+		return fmt.Errorf("found %s where %s is wanted", shorten(fmt.Sprint(token)), words)
+	}
+	return nil
+}
+
+// readValue reads one value as a cell.
+func readValue(d *json.Decoder) (sheet.Cell, error) {
+	var raw json.RawMessage
+	if err := d.Decode(&raw); err != nil {
+		return sheet.Cell{}, err
+	}
+	switch raw[0] {
+	case '"':
+		var s string
+		if err := json.Unmarshal(raw, &s); err != nil {
+			return sheet.Cell{}, err
+		}
+		return sheet.Cell{Kind: sheet.Text, Text: s}, nil
+	case '{', '[':
+		return sheet.Cell{Kind: nestedKind, Text: shorten(string(raw[:min(len(raw), 200)]))}, nil
+	case 'n':
+		return sheet.Cell{}, nil
+	case 't', 'f':
+		return sheet.Cell{Kind: sheet.Boolean, Text: strings.ToUpper(string(raw))}, nil
+	}
+	return sheet.Cell{Kind: sheet.Number, Text: string(raw)}, nil
+}

@@ -1,0 +1,118 @@
+package schedule
+
+import (
+	"spanwright/estimate/assumption"
+	"spanwright/estimate/sheet"
+)
+
+// Treatment says what is done with a row.
+type Treatment string
+
+// The treatments.
+const (
+	SizeFromFamily Treatment = "size"      // the lightest passing section of a family is chosen
+	CheckSection   Treatment = "check"     // the section is given; it is checked and priced
+	ByMass         Treatment = "not sized" // secondary steel: a mass per metre or square metre
+)
+
+// Support is one place where a member is held.
+type Support struct {
+	Position float64 `json:"position_m"`
+	Kind     string  `json:"kind" enum:"pinned,fixed"`
+}
+
+// Load is one action of a member besides its uniform line loads.
+type Load struct {
+	Nature   string  `json:"nature" enum:"permanent,variable"`
+	Kind     string  `json:"kind" enum:"uniform,point"`
+	Value    float64 `json:"value"` // N/m or N, down positive
+	Position float64 `json:"position_m"`
+	Free     bool    `json:"free"` // placed span by span for the worst effect
+	Label    string  `json:"label"`
+}
+
+// Member is one normalised row: SI units, ten significant digits, every default
+// filled in. It is what a job freezes; the row that it came from is kept beside
+// it for messages and is no part of the frozen form.
+type Member struct {
+	Mark            string    `json:"mark"`
+	Group           string    `json:"group"`
+	Kind            string    `json:"kind"`
+	Description     string    `json:"description,omitempty"`
+	Quantity        int       `json:"quantity"`
+	Length          float64   `json:"length_m"`
+	Treatment       Treatment `json:"treatment" enum:"size,check,not sized"`
+	Arrangement     string    `json:"arrangement,omitempty"` // the plain word, or "positions"
+	Upright         bool      `json:"upright,omitempty"`     // a strut: its own weight acts along it
+	Supports        []Support `json:"supports,omitempty"`
+	Loads           []Load    `json:"loads,omitempty"`
+	Axial           float64   `json:"axial_n,omitempty"` // compression positive
+	Family          string    `json:"family,omitempty"`  // the family to size from, or of the section
+	Section         string    `json:"section,omitempty"` // the given section
+	Grade           string    `json:"grade,omitempty"`
+	Restraint       float64   `json:"restraint_m,omitempty"`      // lateral restraint spacing; 0 = full span
+	LengthFactor    float64   `json:"length_factor,omitempty"`    // effective length factor K
+	DeflectionLimit float64   `json:"deflection_limit,omitempty"` // n of length / n; 0 = no limit
+	LineMass        float64   `json:"line_mass_kg_m,omitempty"`   // rows that are not sized
+	AreaMass        float64   `json:"area_mass_kg_m2,omitempty"`
+	Area            float64   `json:"area_m2,omitempty"` // of one piece
+	ConnectionClass string    `json:"connection_class"`
+	Remarks         string    `json:"remarks,omitempty"`
+
+	// Defaults names the register entries whose value this row took, by field.
+	Defaults map[string]string `json:"defaults,omitempty"`
+
+	Row sheet.Address `json:"-"`
+}
+
+// Settings are the job's own defaults: the Job sheet, with what it leaves blank
+// filled in.
+type Settings struct {
+	Project         string  `json:"project"`
+	Scheme          string  `json:"scheme"`
+	DesignBasis     string  `json:"design_basis" enum:"allowable"`
+	Factor          float64 `json:"factor"` // on yield, design basis allowable
+	Grade           string  `json:"grade"`
+	DeflectionLimit float64 `json:"deflection_limit"` // n of length / n
+	Restraint       float64 `json:"restraint_m"`      // 0 = full span
+	ConnectionClass string  `json:"connection_class,omitempty"`
+	Coating         string  `json:"coating,omitempty"`         // recorded; the ratio book prices coating as one multiple
+	ExecutionClass  string  `json:"execution_class,omitempty"` // recorded; the ratio book prices inspection as one multiple
+	StockLengths    string  `json:"stock_lengths,omitempty"`   // recorded for the purchase
+	EstimateClass   int     `json:"estimate_class"`            // 5 to 1
+	Currency        string  `json:"currency"`
+	BaseDate        string  `json:"base_date"` // yyyy-mm-dd
+	Confidence      float64 `json:"confidence"`
+}
+
+// Echo is what a posted schedule says in total, shown before it is accepted.
+type Echo struct {
+	Members []EchoMember `json:"members"`
+	Groups  []EchoGroup  `json:"groups"`
+}
+
+// EchoMember is the load of one member as read, without its own weight.
+type EchoMember struct {
+	Mark      string  `json:"mark"`
+	Permanent float64 `json:"permanent_kn"`
+	Variable  float64 `json:"variable_kn"`
+	Axial     float64 `json:"axial_kn"`
+}
+
+// EchoGroup is the tonnage of one group. Sized members are counted when their
+// sizes are known.
+type EchoGroup struct {
+	Group  string  `json:"group"`
+	Pieces int     `json:"pieces"`
+	Tonnes float64 `json:"tonnes"`
+}
+
+// Schedule is what was read: members sorted by mark, settings, the register
+// entries of every default taken, and what may have been forgotten.
+type Schedule struct {
+	Settings  Settings
+	Members   []Member
+	Defaults  []assumption.Entry
+	Omissions []string
+	Echo      Echo
+}

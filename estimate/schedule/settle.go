@@ -1,0 +1,263 @@
+package schedule
+
+import (
+	"slices"
+	"strings"
+	"time"
+
+	"spanwright/estimate/assumption"
+	"spanwright/estimate/money"
+	"spanwright/estimate/sheet"
+	"spanwright/structural/unit"
+)
+
+// Ids of the register entries of settings left blank.
+const (
+	basisEntry      = "default/design basis"
+	factorEntry     = "default/factor"
+	classEntry      = "default/estimate class"
+	confidenceEntry = "default/confidence"
+	currencyEntry   = "default/currency"
+)
+
+// jobFault reports a value of the job.
+func (r *reader) jobFault(id jobID, wrong *complaint) {
+	e := r.job.entries[id]
+	r.report(e.address, e.header, wrong.found, wrong.problem, wrong.remedy)
+}
+
+// jobText reads a value as text; blank and faulty ones are empty.
+func (r *reader) jobText(id jobID) string {
+	c := r.job.entries[id].cell
+	if c.Kind == lostKind {
+		return ""
+	}
+	t, wrong := readText(c, longestText, "text such as "+jobKeys[id].Example)
+	if wrong != nil {
+		r.jobFault(id, wrong)
+	}
+	if t.state == blank {
+		r.job.given[id] = false
+	}
+	return t.value
+}
+
+// settle reads every value and fills in the defaults.
+func (r *reader) settle() {
+	s := &r.job.Settings
+	s.Project, s.Scheme = r.jobText(jobProject), r.jobText(jobScheme)
+	s.Coating, s.ExecutionClass, s.StockLengths = r.jobText(jobCoating), r.jobText(jobExecution), r.jobText(jobStock)
+	s.DesignBasis = r.designBasis()
+	s.Factor = r.jobFactor()
+	s.Grade = r.jobGrade()
+	s.DeflectionLimit = r.jobLimit()
+	s.Restraint = r.jobRestraint()
+	s.ConnectionClass = r.jobConnection()
+	s.EstimateClass = r.estimateClass()
+	s.Currency = r.currency()
+	s.BaseDate = r.baseDate()
+	s.Confidence = r.confidence()
+}
+
+// setting enters the default of a setting left blank.
+func (r *reader) setting(id, value, statement string, c assumption.Confidence, feeds ...string) {
+	r.defaults.enter(assumption.Entry{ID: id, Statement: statement, Value: value, Confidence: c, Feeds: feeds})
+}
+
+// bases are the design bases by the words that name them; only the first is
+// available.
+var bases = []string{defaultBasis, "en1993", "aisc-asd", "aisc-lrfd"}
+
+func (r *reader) designBasis() string {
+	found := r.jobText(jobStandard)
+	key := fold(found)
+	switch {
+	case found == "" && !r.job.given[jobStandard]:
+		r.setting(basisEntry, defaultBasis, "Members are checked by allowable stress, yield over one factor.", assumption.Medium)
+	case found == "" || key == defaultBasis:
+	case strings.Contains(key, "1993"), strings.Contains(key, "eurocode"), strings.Contains(key, "aisc"):
+		r.jobFault(jobStandard, &complaint{shorten(found), "is a design basis that is not available yet", "allowable"})
+	default:
+		r.jobFault(jobStandard, &complaint{shorten(found), "is no design basis", didYouMean(near(found, bases[:1]), "allowable")})
+	}
+	return defaultBasis
+}
+
+// jobQuantity reads a plain number within bounds.
+func (r *reader) jobQuantity(id jobID, d unit.Dimension, s span) number {
+	e := r.job.entries[id]
+	if e.cell.Kind == lostKind {
+		return number{state: bad}
+	}
+	n, wrong := readQuantity(e.cell, e.comma, d, e.unit, s.words)
+	if wrong == nil && n.state == given && !s.holds(n.value) {
+		wrong = &complaint{shorten(e.cell.Text), "is out of bounds", s.words}
+		n.state = bad
+	}
+	if wrong != nil {
+		r.jobFault(id, wrong)
+	}
+	if n.state == blank {
+		r.job.given[id] = false
+	}
+	return n
+}
+
+func (r *reader) jobFactor() float64 {
+	n := r.jobQuantity(jobFactor, unit.Number, yieldFactor)
+	if n.state == blank {
+		r.setting(factorEntry, fixedText(defaultFactor), "The factor on yield is 3, a comfortable first pass where loads are rough.", assumption.Low)
+		return defaultFactor
+	}
+	return n.value
+}
+
+func (r *reader) jobGrade() string {
+	found := r.jobText(jobGrade)
+	if found == "" {
+		if r.job.given[jobGrade] {
+			return ""
+		}
+		return defaultGrade
+	}
+	g := findGrade(found)
+	if g.wrong != nil {
+		r.jobFault(jobGrade, g.wrong)
+	}
+	return g.name
+}
+
+func (r *reader) jobLimit() float64 {
+	e := r.job.entries[jobLimit]
+	if e.cell.Kind == lostKind {
+		return defaultLimit
+	}
+	n, wrong := readLimit(e.cell, e.comma)
+	if wrong != nil {
+		r.jobFault(jobLimit, wrong)
+	}
+	if n.state == blank {
+		r.job.given[jobLimit] = false
+		return defaultLimit
+	}
+	return n.value
+}
+
+func (r *reader) jobRestraint() float64 {
+	if isFullSpan(r.job.entries[jobRestraint].cell) {
+		return 0
+	}
+	return r.jobQuantity(jobRestraint, unit.Length, lengths).value
+}
+
+func (r *reader) jobConnection() string {
+	found := r.jobText(jobConnection)
+	if found == "" {
+		return ""
+	}
+	class, ok := r.findClass(found)
+	if !ok {
+		r.jobFault(jobConnection, &complaint{shorten(found), "is no connection class", r.classRemedy(found)})
+	}
+	return class
+}
+
+// findClass finds a connection class whatever its letter case and spaces.
+func (r *reader) findClass(found string) (string, bool) {
+	i := slices.IndexFunc(r.classes, func(c string) bool { return fold(c) == fold(found) })
+	if i < 0 {
+		return "", false
+	}
+	return r.classes[i], true
+}
+
+func (r *reader) classRemedy(found string) string {
+	return didYouMean(near(found, r.classes), "one of "+strings.Join(r.classes, ", "))
+}
+
+func (r *reader) estimateClass() int {
+	e := r.job.entries[jobClass]
+	if e.cell.Kind == lostKind {
+		return defaultClass
+	}
+	if e.cell.Kind == sheet.Text {
+		e.cell.Text = strings.TrimPrefix(strings.ToLower(strings.TrimSpace(e.cell.Text)), "class")
+	}
+	n, s, wrong := readCount(e.cell, e.comma, 5, "an estimate class from 5 to 1")
+	if wrong != nil {
+		r.jobFault(jobClass, wrong)
+	}
+	if s == blank {
+		r.job.given[jobClass] = false
+		r.setting(classEntry, "5", "The estimate is of class 5, the least defined.", assumption.Medium)
+		return defaultClass
+	}
+	return n
+}
+
+func (r *reader) currency() string {
+	found := r.jobText(jobCurrency)
+	if found == "" {
+		if !r.job.given[jobCurrency] {
+			r.setting(currencyEntry, defaultCurrency, "The estimate is in EUR.", assumption.Medium)
+		}
+		return defaultCurrency
+	}
+	c, err := money.FindCurrency(strings.ToUpper(found))
+	if err != nil {
+		remedy := "an ISO 4217 code such as EUR"
+		if _, accepted, ok := strings.Cut(err.Error(), "accepted: "); ok {
+			remedy = accepted
+		}
+		r.jobFault(jobCurrency, &complaint{shorten(found), "is no currency", remedy})
+	}
+	return c.Code
+}
+
+// baseDate reads a date cell or yyyy-mm-dd; blank stays empty, the rate book then
+// says it.
+func (r *reader) baseDate() string {
+	c := r.job.entries[jobBaseDate].cell
+	if c.Kind == sheet.Date {
+		day, _, _ := strings.Cut(c.Text, "T")
+		c = sheet.Cell{Kind: sheet.Text, Text: day}
+	}
+	if c.Kind == lostKind {
+		return ""
+	}
+	t, wrong := readText(c, longestText, "a date such as 2026-01-01")
+	if t.state == blank {
+		r.job.given[jobBaseDate] = false
+		return ""
+	}
+	if wrong == nil {
+		if _, err := time.Parse(time.DateOnly, t.value); err != nil {
+			wrong = &complaint{shorten(t.value), "is no date", "yyyy-mm-dd, such as 2026-01-01, or a date cell"}
+		}
+	}
+	if wrong != nil {
+		r.jobFault(jobBaseDate, wrong)
+	}
+	return t.value
+}
+
+var confidences = span{0.01, 0.99, true, "0.01 to 0.99, such as 0.8, 80 % or P80"}
+
+// confidence reads 0.8, 80 % and P80.
+func (r *reader) confidence() float64 {
+	e := &r.job.entries[jobConfidence]
+	c := e.cell
+	dimension := unit.Number
+	switch word := strings.ToLower(strings.TrimSpace(c.Text)); {
+	case c.Kind == sheet.Text && strings.HasPrefix(word, "p"):
+		e.cell.Text, dimension = strings.TrimSpace(word[1:])+" %", unit.Percent
+	case strings.HasSuffix(word, "%"), !e.unit.IsZero():
+		dimension = unit.Percent
+	}
+	n := r.jobQuantity(jobConfidence, dimension, confidences)
+	if n.state == blank {
+		r.setting(confidenceEntry, fixedText(defaultConfidence), "The contingency reaches the cost that is not exceeded with probability 0.8.", assumption.Medium, "contingency")
+		return defaultConfidence
+	}
+	return n.value
+}
