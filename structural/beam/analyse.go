@@ -2,11 +2,18 @@ package beam
 
 import "slices"
 
+// Analyser analyses one member after another in the same memory. The zero value
+// is ready. One goroutine at a time may use it and its responses.
+type Analyser struct {
+	solver
+	response Response
+}
+
 // solver carries the factorised member and the scratch of one case.
 type solver struct {
 	mesh  *mesh
-	band  *band
-	load  *loading
+	band  band
+	load  loading
 	rhs   []float64
 	turns [][2]float64 // per element: end turns of the loads on the simple span
 }
@@ -19,18 +26,42 @@ type solver struct {
 //
 // Every error is a *Fault. Beam and cases are not kept and not changed.
 func Analyse(b Beam, cases []Case) (*Response, error) {
+	var a Analyser
+	r, err := a.Analyse(b, cases)
+	if err != nil {
+		return nil, err
+	}
+	r.settle()
+	return r, nil
+}
+
+// Analyse is the function Analyse without allocation once the memory has grown.
+// The response holds until the next call; it may find roots on the first
+// envelope with a free term and so is no more for many goroutines than a.
+func (a *Analyser) Analyse(b Beam, cases []Case) (*Response, error) {
 	if fault := check(b, cases); fault != nil {
 		return nil, fault
 	}
-	m := newMesh(b, cases)
-	k, fault := m.assemble()
-	if fault != nil {
+	if a.mesh == nil {
+		a.mesh = new(mesh)
+	}
+	a.mesh.set(b, cases)
+	if fault := a.run(cases, 0); fault != nil {
 		return nil, fault
 	}
-	s := &solver{mesh: m, band: k, load: newLoading(len(m.ei)),
-		rhs: make([]float64, m.unknowns), turns: make([][2]float64, len(m.elements))}
-	r := newResponse(m, len(cases))
-	for c := range r.cases {
+	return &a.response, nil
+}
+
+// run solves the cases on the present mesh, with room for trains.
+func (a *Analyser) run(cases []Case, trains int) *Fault {
+	m, s, r := a.mesh, &a.solver, &a.response
+	if fault := m.assembleInto(&s.band); fault != nil {
+		return fault
+	}
+	s.load.reset(len(m.ei))
+	s.rhs, s.turns = sized(s.rhs, m.unknowns), sized(s.turns, len(m.elements))
+	r.prepare(m, len(cases), trains)
+	for c := range r.solved {
 		s.load.settle = c == r.settlement
 		if s.load.settle {
 			s.load.set(m, nil)
@@ -40,24 +71,22 @@ func Analyse(b Beam, cases []Case) (*Response, error) {
 		s.solve()
 		s.record(r, c)
 	}
-	if fault := r.finish(slices.Min(m.ei) * m.unitEI); fault != nil {
-		return nil, fault
-	}
-	return r, nil
+	return r.finish(slices.Min(m.ei) * m.unitEI)
 }
 
 // solve finds the displacements of the case in load and leaves the final
 // shears and moments in it.
 func (s *solver) solve() {
 	clear(s.rhs)
-	for i, n := range s.mesh.nodes {
-		s.nodeLoads(i, n)
+	for i := range s.mesh.nodes {
+		s.nodeLoads(&s.mesh.nodes[i])
 	}
 	for i := range s.mesh.elements {
 		s.elementLoads(i)
 	}
 	s.band.solve(s.rhs)
-	for i, e := range s.mesh.elements {
+	for i := range s.mesh.elements {
+		e := &s.mesh.elements[i]
 		u := s.displacements(i)
 		chord := (u[2] - u[0]) / e.length
 		left, right := e.ends(u[1]-chord, u[3]-chord, s.turns[i][0], s.turns[i][1])
@@ -65,7 +94,7 @@ func (s *solver) solve() {
 	}
 }
 
-func (s *solver) nodeLoads(i int, n node) {
+func (s *solver) nodeLoads(n *node) {
 	spring, _ := s.mesh.springs(n)
 	if n.deflection >= 0 {
 		s.rhs[n.deflection] += s.load.force[n.station]
@@ -82,7 +111,7 @@ func (s *solver) nodeLoads(i int, n node) {
 // shears of the simple span, the couples that hold its ends straight, and the
 // forces of settled ends.
 func (s *solver) elementLoads(i int) {
-	m, e := s.mesh, s.mesh.elements[i]
+	m, e := s.mesh, &s.mesh.elements[i]
 	vl, vr := s.load.simple(m, e)
 	tl, tr := s.load.turns(m, e)
 	s.turns[i] = [2]float64{tl, tr}
@@ -124,9 +153,10 @@ func (s *solver) displacements(i int) [4]float64 {
 
 // record writes case c to the response in SI units.
 func (s *solver) record(r *Response, c int) {
-	m, ld := s.mesh, s.load
+	m, ld := s.mesh, &s.load
 	turn := m.length * m.length / m.unitEI
-	for i, e := range m.elements {
+	for i := range m.elements {
+		e := &m.elements[i]
 		u := s.displacements(i)
 		v, slope := u[0], u[1]
 		for p := e.first; p < e.last; p++ {
@@ -153,8 +183,9 @@ func (s *solver) record(r *Response, c int) {
 
 // reactions reads the reactions off the jumps of shear and moment.
 func (s *solver) reactions(r *Response, c int) {
-	m, ld := s.mesh, s.load
-	for _, n := range m.nodes {
+	m, ld := s.mesh, &s.load
+	for i := range m.nodes {
+		n := &m.nodes[i]
 		if n.support < 0 {
 			continue
 		}
@@ -170,6 +201,9 @@ func (s *solver) reactions(r *Response, c int) {
 		}
 		if !m.supports[n.support].holdsRotation() {
 			M = 0
+		}
+		if m.supports[n.support].Kind == Guided {
+			F = 0
 		}
 		r.reactions[c*len(m.supports)+n.support] = Reaction{X: m.supports[n.support].X, F: F, M: M * m.length}
 	}

@@ -12,10 +12,19 @@ type band struct {
 	n     int
 	a     []float64 // row i: (i, i), (i, i-1), … (i, i-half)
 	scale []float64 // 1/√ of the diagonal before scaling
+	work  []float64 // one value a row
 }
 
 func newBand(n int) *band {
-	return &band{n: n, a: make([]float64, n*(half+1)), scale: make([]float64, n)}
+	m := new(band)
+	m.reset(n)
+	return m
+}
+
+// reset makes m a matrix of zeros, in its own memory.
+func (m *band) reset(n int) {
+	m.n = n
+	m.a, m.scale, m.work = sized(m.a, n*(half+1)), sized(m.scale, n), sized(m.work, n)
 }
 
 // add adds v to the entries (i, j) and (j, i).
@@ -35,7 +44,8 @@ func (m *band) equilibrate() float64 {
 	for i := range m.n {
 		m.scale[i] = 1 / math.Sqrt(m.row(i)[0])
 	}
-	sums := make([]float64, m.n)
+	sums := m.work
+	clear(sums)
 	for i := range m.n {
 		r := m.row(i)
 		for k := range min(half, i) + 1 {
@@ -48,7 +58,7 @@ func (m *band) equilibrate() float64 {
 	}
 	norm := 0.0
 	for _, s := range sums {
-		norm = math.Max(norm, s)
+		norm = max(norm, s)
 	}
 	return norm
 }
@@ -77,22 +87,21 @@ func (m *band) factorise(smallest float64) int {
 	return -1
 }
 
-// solveScaled solves the scaled system in place.
-func (m *band) solveScaled(x []float64) {
-	for i := range m.n {
-		r := m.row(i)
-		for k := 1; k <= min(half, i); k++ {
-			x[i] -= r[k] * x[i-k]
+// solveScaled solves the scaled system in place; x is zero before row first.
+func (m *band) solveScaled(x []float64, first int) {
+	for i := first + 1; i < m.n; i++ {
+		r, v := m.row(i), x[i]
+		for k := 1; k <= min(half, i-first); k++ {
+			v -= r[k] * x[i-k]
 		}
-	}
-	for i := range m.n {
-		x[i] /= m.row(i)[0]
+		x[i] = v
 	}
 	for i := m.n - 1; i >= 0; i-- {
-		r := m.row(i)
-		for k := 1; k <= min(half, i); k++ {
-			x[i-k] -= r[k] * x[i]
+		v := x[i] / m.a[i*(half+1)]
+		for k := 1; k <= half && i+k < m.n; k++ {
+			v -= m.a[(i+k)*(half+1)+k] * x[i+k]
 		}
+		x[i] = v
 	}
 }
 
@@ -101,7 +110,7 @@ func (m *band) solve(x []float64) {
 	for i := range x {
 		x[i] *= m.scale[i]
 	}
-	m.solveScaled(x)
+	m.solveScaled(x, 0)
 	for i := range x {
 		x[i] *= m.scale[i]
 	}
@@ -111,16 +120,16 @@ func (m *band) solve(x []float64) {
 // column: members have few supports, and an estimate can be far too low.
 func (m *band) inverseNorm() float64 {
 	norm := 0.0
-	x := make([]float64, m.n)
+	x := m.work
 	for j := range m.n {
 		clear(x)
 		x[j] = 1
-		m.solveScaled(x)
+		m.solveScaled(x, j)
 		sum := 0.0
 		for _, v := range x {
 			sum += math.Abs(v)
 		}
-		norm = math.Max(norm, sum)
+		norm = max(norm, sum)
 	}
 	return norm
 }

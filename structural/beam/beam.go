@@ -15,6 +15,8 @@ const (
 	Fixed
 	// Spring resists deflection with Support.Stiffness.
 	Spring
+	// Guided holds the rotation alone: the member may slide across.
+	Guided
 )
 
 // String returns the kind in words.
@@ -26,6 +28,8 @@ func (k SupportKind) String() string {
 		return "fixed"
 	case Spring:
 		return "spring"
+	case Guided:
+		return "guided"
 	}
 	return "unknown"
 }
@@ -35,12 +39,14 @@ type Support struct {
 	X                   float64 // m from the left end
 	Kind                SupportKind
 	Stiffness           float64 // N/m, above 0 for Spring, 0 for the others
-	RotationalStiffness float64 // N.m/rad, 0 or more; 0 for Fixed
+	RotationalStiffness float64 // N.m/rad, 0 or more; 0 for Fixed and Guided
 	Settlement          float64 // m, down +; makes a case of its own, see Response.SettlementCase
 }
 
 // holdsRotation tells whether the support can give a couple.
-func (s Support) holdsRotation() bool { return s.Kind == Fixed || s.RotationalStiffness > 0 }
+func (s Support) holdsRotation() bool {
+	return s.Kind == Fixed || s.Kind == Guided || s.RotationalStiffness > 0
+}
 
 // Segment is a stretch of constant bending stiffness, from the end of the one
 // before it (or the left end) to To. The last one ends at the member's end.
@@ -64,8 +70,9 @@ func Prismatic(length, ei float64, supports ...Support) Beam {
 }
 
 // ordered returns the supports left to right.
-func (b Beam) ordered() []Support {
-	s := slices.Clone(b.Supports)
+func (b Beam) ordered() []Support { return order(slices.Clone(b.Supports)) }
+
+func order(s []Support) []Support {
 	slices.SortFunc(s, func(s, t Support) int { return cmp.Compare(s.X, t.X) })
 	return s
 }

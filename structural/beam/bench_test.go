@@ -44,3 +44,26 @@ func BenchmarkAnalyse5(b *testing.B) {
 		spanned(b, 5)
 	}
 }
+
+// benchTrain finds the bounds of four wheels on n spans.
+func benchTrain(b *testing.B, n int) {
+	r, _ := spanned(b, n)
+	m := Beam{Length: 6 * float64(n), Segments: []Segment{{To: 6 * float64(n), EI: 1}}}
+	for _, x := range r.supports {
+		m.Supports = append(m.Supports, Support{X: x, Kind: Pinned})
+	}
+	t := Train{Loads: []float64{9e4, 9e4, 7e4, 7e4}, Spacings: []float64{3.6, 1.2, 3}}
+	var e Envelope
+	b.ReportAllocs()
+	for b.Loop() {
+		r, err := AnalyseTrains(m, nil, []Train{t})
+		if err != nil {
+			b.Fatal(err)
+		}
+		b.ReportMetric(float64(len(r.x)), "pieces")
+		r.EnvelopeInto(&e, []Term{{Case: 0, Factor: 1}})
+	}
+}
+
+func BenchmarkTrain1(b *testing.B) { benchTrain(b, 1) }
+func BenchmarkTrain5(b *testing.B) { benchTrain(b, 5) }

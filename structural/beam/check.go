@@ -16,17 +16,22 @@ func positive(v float64) bool { return v > 0 && v <= math.MaxFloat64 }
 
 // check refuses what Analyse cannot work with. The first fault is returned.
 func check(b Beam, cases []Case) *Fault {
-	if !positive(b.Length) {
-		return &Fault{FaultLength, "member", 0, num(b.Length) + " m", "a length above 0 m"}
+	if fault := checkLength(b); fault != nil {
+		return fault
 	}
-	for _, f := range []func(Beam) *Fault{checkSegments, checkSupports, checkHinges} {
-		if fault := f(b); fault != nil {
-			return fault
-		}
+	if fault := checkSegments(b); fault != nil {
+		return fault
+	}
+	if fault := checkSupports(b); fault != nil {
+		return fault
+	}
+	if fault := checkHinges(b); fault != nil {
+		return fault
 	}
 	for c, loads := range cases {
-		for i, l := range loads {
-			if fault := checkLoad(b, l, fmt.Sprintf("case %d load %d", c+1, i+1)); fault != nil {
+		for i := range loads {
+			if fault := checkLoad(b, &loads[i]); fault != nil {
+				fault.Part = fmt.Sprintf("case %d load %d", c+1, i+1)
 				return fault
 			}
 		}
@@ -34,15 +39,21 @@ func check(b Beam, cases []Case) *Fault {
 	return nil
 }
 
+func checkLength(b Beam) *Fault {
+	if !positive(b.Length) {
+		return &Fault{FaultLength, "member", 0, num(b.Length) + " m", "a length above 0 m"}
+	}
+	return nil
+}
+
 func checkSegments(b Beam) *Fault {
 	from := 0.0
 	for i, s := range b.Segments {
-		part := fmt.Sprintf("segment %d", i+1)
 		if !positive(s.EI) {
-			return &Fault{FaultStiffness, part, from, "EI = " + num(s.EI) + " N.m²", "an EI above 0 N.m²"}
+			return &Fault{FaultStiffness, ordinal("segment", i), from, "EI = " + num(s.EI) + " N.m²", "an EI above 0 N.m²"}
 		}
 		if !(from+near*b.Length < s.To && s.To <= b.Length*(1+near)) {
-			return &Fault{FaultSegment, part, from, "an end at " + num(s.To) + " m",
+			return &Fault{FaultSegment, ordinal("segment", i), from, "an end at " + num(s.To) + " m",
 				"an end beyond " + num(from) + " m, at " + num(b.Length) + " m at the most"}
 		}
 		from = s.To
@@ -58,95 +69,100 @@ func checkSupports(b Beam) *Fault {
 		return &Fault{FaultNoSupport, "member", 0, "no support", "one fixed support, or two"}
 	}
 	for i, s := range b.Supports {
-		part := fmt.Sprintf("support %d", i+1)
 		if !within(b, s.X) {
-			return outside(b, part, s.X)
+			return outside(b, ordinal("support", i), s.X)
 		}
 		for _, o := range b.Supports[:i] {
 			if math.Abs(o.X-s.X) <= near*b.Length {
-				return &Fault{FaultTwice, part, s.X, "another support at the same place", "one support at a place"}
+				return &Fault{FaultTwice, ordinal("support", i), s.X, "another support at the same place", "one support at a place"}
 			}
 		}
-		if fault := checkSupport(s, part); fault != nil {
+		if fault := checkSupport(s); fault != nil {
+			fault.Part = ordinal("support", i)
 			return fault
 		}
 	}
 	return nil
 }
 
-func checkSupport(s Support, part string) *Fault {
-	stiff := "stiffness " + num(s.Stiffness) + " N/m"
-	turn := "rotational stiffness " + num(s.RotationalStiffness) + " N.m/rad"
+// checkSupport leaves the part to its caller.
+func checkSupport(s Support) *Fault {
+	stiff := func() string { return "stiffness " + num(s.Stiffness) + " N/m" }
+	turn := func() string { return "rotational stiffness " + num(s.RotationalStiffness) + " N.m/rad" }
 	switch {
-	case s.Kind != Pinned && s.Kind != Fixed && s.Kind != Spring:
-		return &Fault{FaultSupport, part, s.X, fmt.Sprintf("kind %d", s.Kind), "Pinned, Fixed or Spring"}
+	case !(s.Kind >= Pinned && s.Kind <= Guided):
+		return &Fault{FaultSupport, "", s.X, fmt.Sprintf("kind %d", s.Kind), "Pinned, Fixed, Spring or Guided"}
 	case s.Kind == Spring && !positive(s.Stiffness):
-		return &Fault{FaultStiffness, part, s.X, stiff, "a spring stiffness above 0 N/m"}
+		return &Fault{FaultStiffness, "", s.X, stiff(), "a spring stiffness above 0 N/m"}
 	case s.Kind != Spring && s.Stiffness != 0:
-		return &Fault{FaultStiffness, part, s.X, stiff + " on a " + s.Kind.String() + " support", "0, or kind Spring"}
+		return &Fault{FaultStiffness, "", s.X, stiff() + " on a " + s.Kind.String() + " support", "0, or kind Spring"}
 	case s.RotationalStiffness != 0 && !positive(s.RotationalStiffness):
-		return &Fault{FaultStiffness, part, s.X, turn, "0 N.m/rad or more"}
-	case s.Kind == Fixed && s.RotationalStiffness != 0:
-		return &Fault{FaultStiffness, part, s.X, turn + " on a fixed support", "0, or kind Pinned"}
+		return &Fault{FaultStiffness, "", s.X, turn(), "0 N.m/rad or more"}
+	case (s.Kind == Fixed || s.Kind == Guided) && s.RotationalStiffness != 0:
+		return &Fault{FaultStiffness, "", s.X, turn() + " on a " + s.Kind.String() + " support", "0, or kind Pinned"}
+	case s.Kind == Guided && s.Settlement != 0:
+		return &Fault{FaultSupport, "", s.X, "settlement " + num(s.Settlement) + " m on a guided support", "0: it does not hold the deflection"}
 	case !finite(s.Settlement):
-		return &Fault{FaultSupport, part, s.X, "settlement " + num(s.Settlement) + " m", "a finite settlement, down +"}
+		return &Fault{FaultSupport, "", s.X, "settlement " + num(s.Settlement) + " m", "a finite settlement, down +"}
 	}
 	return nil
 }
 
 func checkHinges(b Beam) *Fault {
 	for i, x := range b.Hinges {
-		part := fmt.Sprintf("hinge %d", i+1)
 		if !(x > near*b.Length && x < b.Length*(1-near)) {
-			return &Fault{FaultOutside, part, x, num(x) + " m", "a place inside the member, between 0 and " + num(b.Length) + " m"}
+			return &Fault{FaultOutside, ordinal("hinge", i), x, num(x) + " m", "a place inside the member, between 0 and " + num(b.Length) + " m"}
 		}
 		for _, o := range b.Hinges[:i] {
 			if math.Abs(o-x) <= near*b.Length {
-				return &Fault{FaultTwice, part, x, "another hinge at the same place", "one hinge at a place"}
+				return &Fault{FaultTwice, ordinal("hinge", i), x, "another hinge at the same place", "one hinge at a place"}
 			}
 		}
 		for _, s := range b.Supports {
 			if s.holdsRotation() && math.Abs(s.X-x) <= near*b.Length {
-				return &Fault{FaultHinge, part, x, "a support that holds the rotation", "a hinge beside it, or at a pinned support"}
+				return &Fault{FaultHinge, ordinal("hinge", i), x, "a support that holds the rotation", "a hinge beside it, or at a pinned support"}
 			}
 		}
 	}
 	return nil
 }
 
-func checkLoad(b Beam, l Load, part string) *Fault {
+// checkLoad leaves the part to its caller.
+func checkLoad(b Beam, l *Load) *Fault {
 	if !(l.Kind >= Uniform && l.Kind <= Curvature) {
-		return &Fault{FaultLoad, part, l.From, fmt.Sprintf("kind %d", l.Kind), "Uniform, Linear, Point, Moment or Curvature"}
+		return &Fault{FaultLoad, "", l.From, fmt.Sprintf("kind %d", l.Kind), "Uniform, Linear, Point, Moment or Curvature"}
 	}
 	if !finite(l.Start) || !finite(l.End) {
-		return &Fault{FaultLoad, part, l.From, num(l.Start) + ", " + num(l.End), "finite values"}
+		return &Fault{FaultLoad, "", l.From, num(l.Start) + ", " + num(l.End), "finite values"}
 	}
 	if !within(b, l.From) {
-		return outside(b, part, l.From)
+		return outside(b, "", l.From)
 	}
 	if l.Kind.distributed() {
-		return checkExtent(b, l, part)
+		return checkExtent(b, l)
 	}
 	for _, h := range b.Hinges {
 		if l.Kind == Moment && math.Abs(h-l.From) <= near*b.Length {
-			return &Fault{FaultHinge, part, l.From, "a moment at a hinge", "a moment on one side of it"}
+			return &Fault{FaultHinge, "", l.From, "a moment at a hinge", "a moment on one side of it"}
 		}
 	}
 	return nil
 }
 
-func checkExtent(b Beam, l Load, part string) *Fault {
+func checkExtent(b Beam, l *Load) *Fault {
 	if !within(b, l.To) {
-		return outside(b, part, l.To)
+		return outside(b, "", l.To)
 	}
 	if !(l.To-l.From > near*b.Length) {
-		return &Fault{FaultLoad, part, l.From, "an end at " + num(l.To) + " m", "an end beyond the start at " + num(l.From) + " m"}
+		return &Fault{FaultLoad, "", l.From, "an end at " + num(l.To) + " m", "an end beyond the start at " + num(l.From) + " m"}
 	}
 	if l.Kind == Uniform && l.End != 0 && l.End != l.Start {
-		return &Fault{FaultLoad, part, l.From, num(l.Start) + " and " + num(l.End) + " N/m", "one value, or kind Linear"}
+		return &Fault{FaultLoad, "", l.From, num(l.Start) + " and " + num(l.End) + " N/m", "one value, or kind Linear"}
 	}
 	return nil
 }
+
+func ordinal(what string, i int) string { return fmt.Sprintf("%s %d", what, i+1) }
 
 func within(b Beam, x float64) bool { return x >= -near*b.Length && x <= b.Length*(1+near) }
 

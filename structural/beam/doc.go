@@ -7,6 +7,9 @@
 //	  ─ elements between supports and hinges ─▶ banded stiffness, factorised once
 //	  ─ one solution per case ─▶ Response: polynomials of V, M and deflection per piece
 //	  ─ []Term (factors, fixed or free) ─▶ Envelope: extremes by span, reactions
+//	[]Train ─ AnalyseTrains ─▶ influence lines ─▶ bounds at each place: one more case for a Term
+//	Train ─ MoveTrain ─▶ Passage: extremes with the train's position and direction
+//	[]Mass ─ Frequency ─▶ first natural frequency; Layout, Goal ─ PlaceSupports ─▶ best positions
 //	Beam cut at its supports ─ Split ─▶ handbook pieces ─ Compare ─▶ signed ratios
 //
 // Signs: x runs to the right from the left end, loads and deflection are

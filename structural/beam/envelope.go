@@ -1,6 +1,9 @@
 package beam
 
-import "math"
+import (
+	"math"
+	"slices"
+)
 
 // Term is what one case adds to a combination. A fixed term is always there. A
 // free term acts at each place only where it makes the effect looked at worse:
@@ -109,7 +112,12 @@ func (r *Response) EnvelopeAt(terms []Term, x float64, side Side) (shear, moment
 	for k := range out {
 		tracks := r.tracks[k][p*r.cases : (p+1)*r.cases]
 		for _, term := range terms {
-			out[k].add(term, tracks[term.Case].c.at(deg[k], t))
+			v := tracks[term.Case].c.at(deg[k], t)
+			if train := term.Case - r.solved; train >= 0 {
+				out[k].move(term.Factor, Bounds{v, r.lower[k][p*r.trains+train].at(deg[k], t)})
+				continue
+			}
+			out[k].add(term, v)
 		}
 	}
 	return out[shearTrack], out[momentTrack], out[deflectionTrack]
@@ -126,11 +134,23 @@ func (b *Bounds) add(t Term, v float64) {
 	}
 }
 
+// move adds the bounds of a train times a factor.
+func (b *Bounds) move(factor float64, v Bounds) {
+	if factor < 0 {
+		v.Max, v.Min = v.Min, v.Max
+	}
+	b.Max += factor * v.Max
+	b.Min += factor * v.Min
+}
+
 func (r *Response) envelope(dst *Envelope, terms []Term, what effects) {
 	r.reset(dst)
 	if checkTerms(terms, r.cases) != nil {
 		dst.refuse()
 		return
+	}
+	if !r.settled && slices.ContainsFunc(terms, func(t Term) bool { return t.Free }) {
+		r.settle()
 	}
 	s := sweep{r: r, terms: terms, events: dst.events[:0]}
 	for k := range s.least {

@@ -23,6 +23,9 @@ const (
 	FaultCondition  FaultKind = "ill-conditioned"       // stiffnesses too unlike to solve
 	FaultOverflow   FaultKind = "overflow"              // a result too large
 	FaultTerm       FaultKind = "term"                  // a term names no case, or its factor is unusable
+	FaultTrain      FaultKind = "train"                 // wheels or spacings unusable
+	FaultMass       FaultKind = "mass"                  // no mass, or an unusable one
+	FaultLayout     FaultKind = "layout"                // free supports or goal unusable
 	FaultSplitHinge FaultKind = "hinge in split method" // a hinge away from the supports
 )
 

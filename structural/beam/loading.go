@@ -9,12 +9,11 @@ type loading struct {
 	shear, moment []float64    // per piece, at its start
 }
 
-func newLoading(pieces int) *loading {
-	return &loading{
-		q: make([][2]float64, pieces), curve: make([][2]float64, pieces),
-		force: make([]float64, pieces+1), couple: make([]float64, pieces+1),
-		shear: make([]float64, pieces), moment: make([]float64, pieces),
-	}
+// reset makes room for so many pieces.
+func (ld *loading) reset(pieces int) {
+	ld.q, ld.curve = sized(ld.q, pieces), sized(ld.curve, pieces)
+	ld.force, ld.couple = sized(ld.force, pieces+1), sized(ld.couple, pieces+1)
+	ld.shear, ld.moment = sized(ld.shear, pieces), sized(ld.moment, pieces)
 }
 
 // set replaces the loads by those of c.
@@ -23,7 +22,8 @@ func (ld *loading) set(m *mesh, c Case) {
 	clear(ld.curve)
 	clear(ld.force)
 	clear(ld.couple)
-	for _, l := range c {
+	for i := range c {
+		l := &c[i]
 		from := m.station(l.From)
 		switch l.Kind {
 		case Point:
@@ -39,7 +39,7 @@ func (ld *loading) set(m *mesh, c Case) {
 }
 
 // spread adds a distributed load times unit to the pieces that it covers.
-func spread(to [][2]float64, m *mesh, l Load, unit float64) {
+func spread(to [][2]float64, m *mesh, l *Load, unit float64) {
 	first, last := m.station(l.From), m.station(l.To)
 	start, end := l.ends()
 	start, end = start*unit, end*unit
@@ -52,7 +52,7 @@ func spread(to [][2]float64, m *mesh, l Load, unit float64) {
 
 // simple fills shear and moment of element e taken as a simple span and
 // returns the shear inside its two ends.
-func (ld *loading) simple(m *mesh, e element) (left, right float64) {
+func (ld *loading) simple(m *mesh, e *element) (left, right float64) {
 	V, M := 0.0, 0.0
 	for p := e.first; p < e.last; p++ {
 		if p > e.first {
@@ -69,7 +69,7 @@ func (ld *loading) simple(m *mesh, e element) (left, right float64) {
 }
 
 // tilt adds to the element a moment that runs straight from left to left + rise.
-func (ld *loading) tilt(m *mesh, e element, left, rise float64) {
+func (ld *loading) tilt(m *mesh, e *element, left, rise float64) {
 	for p := e.first; p < e.last; p++ {
 		ld.shear[p] += rise / e.length
 		ld.moment[p] += left + rise*(m.x[p]-m.x[e.first])/e.length
@@ -90,7 +90,7 @@ func (ld *loading) curvature(m *mesh, p int) (curve, moment poly) {
 
 // turns returns ∫c(1-ξ) and ∫cξ over element e with its present moments: the
 // end turns of the simple span, each in the sense that sagging gives.
-func (ld *loading) turns(m *mesh, e element) (left, right float64) {
+func (ld *loading) turns(m *mesh, e *element) (left, right float64) {
 	for p := e.first; p < e.last; p++ {
 		c, _ := ld.curvature(m, p)
 		h := m.x[p+1] - m.x[p]

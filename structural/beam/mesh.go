@@ -18,6 +18,8 @@ type mesh struct {
 	elements []element
 	unknowns int
 	supports []Support // left to right
+	hinged   []bool    // by station
+	held     []int     // by station: the support, -1 without
 }
 
 // node is a place where elements meet. Unknown -1 is a held displacement.
@@ -37,60 +39,82 @@ type element struct {
 }
 
 func newMesh(b Beam, cases []Case) *mesh {
-	m := &mesh{length: b.Length, supports: b.ordered()}
+	m := new(mesh)
+	m.set(b, cases)
+	return m
+}
+
+// set cuts up another member, in the memory of the last.
+func (m *mesh) set(b Beam, cases []Case) {
+	m.length = b.Length
+	m.supports = order(append(m.supports[:0], b.Supports...))
 	m.stations(b, cases)
 	m.stiffness(b)
 	m.number(b)
-	return m
 }
 
 // stations collects every place where a polynomial can change. The first to
 // name a place wins, so that a load end beside a support moves to the support.
 func (m *mesh) stations(b Beam, cases []Case) {
-	xs := []float64{0, 1}
-	add := func(x float64) {
-		x = min(max(x/m.length, 0), 1)
-		i, _ := slices.BinarySearch(xs, x)
-		if i < len(xs) && xs[i]-x <= near || i > 0 && x-xs[i-1] <= near {
-			return
-		}
-		xs = slices.Insert(xs, i, x)
-	}
-	for _, s := range m.supports {
-		add(s.X)
+	m.x = append(m.x[:0], 0, 1)
+	for i := range m.supports {
+		m.add(m.supports[i].X)
 	}
 	for _, x := range b.Hinges {
-		add(x)
+		m.add(x)
 	}
 	for _, s := range b.Segments {
-		add(s.To)
+		m.add(s.To)
 	}
 	for _, c := range cases {
-		for _, l := range c {
-			add(l.From)
-			if l.Kind.distributed() {
-				add(l.To)
+		for i := range c {
+			m.add(c[i].From)
+			if c[i].Kind.distributed() {
+				m.add(c[i].To)
 			}
 		}
 	}
-	m.x = xs
+}
+
+// add adds a station at x (m) unless there is one.
+func (m *mesh) add(x float64) {
+	x = min(max(x/m.length, 0), 1)
+	i := m.after(x)
+	if m.x[i]-x <= near || i > 0 && x-m.x[i-1] <= near {
+		return
+	}
+	m.x = slices.Insert(m.x, i, x)
+}
+
+// after returns the first station at or beyond x (0 to 1), the last one at the most.
+func (m *mesh) after(x float64) int {
+	lo, hi := 0, len(m.x)-1
+	for lo < hi {
+		if mid := (lo + hi) / 2; m.x[mid] < x {
+			lo = mid + 1
+		} else {
+			hi = mid
+		}
+	}
+	return lo
 }
 
 // station returns the index of the station nearest to x (m).
 func (m *mesh) station(x float64) int {
 	x /= m.length
-	i, _ := slices.BinarySearch(m.x, x)
-	if i == len(m.x) || i > 0 && x-m.x[i-1] < m.x[i]-x {
+	i := m.after(x)
+	if i > 0 && x-m.x[i-1] < m.x[i]-x {
 		i--
 	}
 	return i
 }
 
 func (m *mesh) stiffness(b Beam) {
+	m.unitEI = 0
 	for _, s := range b.Segments {
 		m.unitEI = math.Max(m.unitEI, s.EI)
 	}
-	m.ei = make([]float64, len(m.x)-1)
+	m.ei = sized(m.ei, len(m.x)-1)
 	from := 0
 	for _, s := range b.Segments {
 		to := m.station(s.To)
@@ -104,20 +128,20 @@ func (m *mesh) stiffness(b Beam) {
 // number makes nodes and elements and gives each free displacement its place
 // in the system of equations, left to right.
 func (m *mesh) number(b Beam) {
-	hinged := make([]bool, len(m.x))
-	held := make([]int, len(m.x))
-	for i := range held {
-		held[i] = -1
+	m.hinged, m.held = sized(m.hinged, len(m.x)), sized(m.held, len(m.x))
+	m.nodes, m.elements, m.unknowns = m.nodes[:0], m.elements[:0], 0
+	for i := range m.held {
+		m.held[i] = -1
 	}
 	for _, x := range b.Hinges {
-		hinged[m.station(x)] = true
+		m.hinged[m.station(x)] = true
 	}
-	for i, s := range m.supports {
-		held[m.station(s.X)] = i
+	for i := range m.supports {
+		m.held[m.station(m.supports[i].X)] = i
 	}
 	for st := range m.x {
-		if st == 0 || st == len(m.x)-1 || hinged[st] || held[st] >= 0 {
-			m.nodes = append(m.nodes, m.node(st, held[st], hinged[st]))
+		if st == 0 || st == len(m.x)-1 || m.hinged[st] || m.held[st] >= 0 {
+			m.nodes = append(m.nodes, m.node(st, m.held[st], m.hinged[st]))
 		}
 	}
 	for i := range len(m.nodes) - 1 {
@@ -132,18 +156,23 @@ func (m *mesh) node(station, support int, hinged bool) node {
 		kind = m.supports[support].Kind
 		n.settled = m.supports[support].Settlement * m.unitEI / cube(m.length)
 	}
-	next := func() int { m.unknowns++; return m.unknowns - 1 }
 	if kind != Pinned && kind != Fixed {
-		n.deflection = next()
+		n.deflection = m.unknown()
 	}
-	if kind != Fixed {
-		n.left = next()
+	if kind != Fixed && kind != Guided {
+		n.left = m.unknown()
 		n.turn = n.left
 	}
 	if hinged {
-		n.turn = next()
+		n.turn = m.unknown()
 	}
 	return n
+}
+
+// unknown numbers one more free displacement.
+func (m *mesh) unknown() int {
+	m.unknowns++
+	return m.unknowns - 1
 }
 
 // element integrates the flexibility of a simple span between two stations:
@@ -168,9 +197,19 @@ func (m *mesh) element(first, last int) element {
 
 // ends returns the end moments (sagging +) of the element from its end turns
 // against the chord, clockwise +, less the turns that its own loads give.
-func (e element) ends(turnLeft, turnRight, loadLeft, loadRight float64) (left, right float64) {
+func (e *element) ends(turnLeft, turnRight, loadLeft, loadRight float64) (left, right float64) {
 	l, r := turnLeft-loadLeft, -turnRight-loadRight
 	return e.inverse[0]*l + e.inverse[1]*r, e.inverse[1]*l + e.inverse[2]*r
+}
+
+// sized returns s with n zeros, in its own memory if that is enough.
+func sized[T any](s []T, n int) []T {
+	if cap(s) < n {
+		return make([]T, n)
+	}
+	s = s[:n]
+	clear(s)
+	return s
 }
 
 func cube(v float64) float64 { return v * v * v }

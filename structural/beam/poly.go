@@ -87,12 +87,18 @@ func (p *poly) turns(deg int, a, b float64, out *[5]float64) int {
 		return keep(-0.5*p[1]/p[2], a, b, out, 0)
 	}
 	d := p.derivative(deg)
+	if math.Abs(d[0]) > math.Abs(d[1])+math.Abs(d[2])+math.Abs(d[3])+math.Abs(d[4]) {
+		return 0 // d keeps its sign on [0, 1]
+	}
 	return d.roots(deg-1, a, b, out)
 }
 
 // quadratic is roots for degree 2, in the form without cancellation.
 func (p *poly) quadratic(a, b float64, out *[5]float64) int {
 	A, B, C := p[2], p[1], p[0]
+	if math.Abs(C) > math.Abs(B)+math.Abs(A) {
+		return 0 // no root on [0, 1]
+	}
 	disc := B*B - 4*A*C
 	if !(disc > 0) {
 		return 0

@@ -1,7 +1,6 @@
 package beam
 
 import (
-	"fmt"
 	"math"
 	"slices"
 )
@@ -39,9 +38,14 @@ type span struct {
 type Response struct {
 	x          []float64 // stations, m
 	curved     []bool    // per piece: some case has a load that varies there
-	cases      int       // the settlement case included
+	cases      int       // settlement and trains included
+	solved     int       // cases that are states: without the trains
+	trains     int
 	settlement int
-	tracks     [trackKinds][]track // piece by piece, in each case by case
+	tracks     [trackKinds][]track // piece by piece, in each case by case; of trains the upper bounds
+	lower      [trackKinds][]poly  // piece by piece, in each train by train: the lower bounds
+	moved      [][2]Bounds         // train by train: force and couple of each support
+	settled    bool                // signs and roots of the tracks are found
 	size       [trackKinds][]float64
 	spans      []span
 	supports   []float64  // m, left to right
@@ -64,25 +68,31 @@ const (
 	Right
 )
 
-func newResponse(m *mesh, cases int) *Response {
-	r := &Response{cases: cases, settlement: -1, curved: make([]bool, len(m.ei))}
-	if slices.ContainsFunc(m.supports, func(s Support) bool { return s.Settlement != 0 }) {
-		r.settlement = cases
-		r.cases++
+// prepare makes room for the results of the mesh.
+func (r *Response) prepare(m *mesh, cases, trains int) {
+	r.solved, r.trains, r.settlement, r.settled = cases, trains, -1, false
+	r.supports, r.x, r.spans = r.supports[:0], r.x[:0], r.spans[:0]
+	for i := range m.supports {
+		r.supports = append(r.supports, m.supports[i].X)
+		if m.supports[i].Settlement != 0 {
+			r.settlement, r.solved = cases, cases+1
+		}
 	}
+	r.cases = r.solved + trains
+	r.curved = sized(r.curved, len(m.ei))
 	for _, x := range m.x {
 		r.x = append(r.x, x*m.length)
 	}
 	for k := range r.tracks {
-		r.tracks[k] = make([]track, len(m.ei)*r.cases)
-		r.size[k] = make([]float64, r.cases)
+		r.tracks[k] = sized(r.tracks[k], len(m.ei)*r.cases)
+		r.lower[k] = sized(r.lower[k], len(m.ei)*trains)
+		r.size[k] = sized(r.size[k], r.cases)
 	}
-	for _, s := range m.supports {
-		r.supports = append(r.supports, s.X)
-	}
-	r.reactions = make([]Reaction, r.cases*len(r.supports))
+	r.moved = sized(r.moved, trains*len(r.supports))
+	r.reactions = sized(r.reactions, r.solved*len(r.supports))
 	from, overhang := 0, true
-	for _, n := range m.nodes {
+	for i := range m.nodes {
+		n := &m.nodes[i]
 		last := n.station == len(m.ei)
 		if n.station > from && (n.support >= 0 || last) {
 			r.spans = append(r.spans, span{r.x[from], r.x[n.station], from, n.station, overhang || n.support < 0})
@@ -90,28 +100,30 @@ func newResponse(m *mesh, cases int) *Response {
 		}
 		overhang = overhang && n.support < 0
 	}
-	return r
 }
 
 // degrees returns the degrees of moment, shear and deflection in piece p.
 func (r *Response) degrees(p int) [trackKinds]int {
+	if r.trains > 0 {
+		return [trackKinds]int{4, 4, 5}
+	}
 	if r.curved[p] {
 		return [trackKinds]int{3, 2, 5}
 	}
 	return [trackKinds]int{2, 1, 4}
 }
 
-// finish finds sizes, signs and roots. It refuses results too large to go on with.
+// finish finds the sizes. It refuses results too large to go on with.
 // leastEI is the smallest bending stiffness (N.m²).
 func (r *Response) finish(leastEI float64) *Fault {
 	for k := range r.tracks {
 		for i := range r.tracks[k] {
-			size := r.tracks[k][i].c.size()
+			size, c := r.tracks[k][i].c.size(), i%r.cases
 			if !(size <= largestResult) {
-				return &Fault{FaultOverflow, fmt.Sprintf("case %d", i%r.cases+1), r.x[i/r.cases],
+				return &Fault{FaultOverflow, ordinal("case", c), r.x[i/r.cases],
 					"a result beyond " + num(largestResult), "loads, lengths and stiffnesses of usual sizes"}
 			}
-			r.size[k][i%r.cases] = math.Max(r.size[k][i%r.cases], size)
+			r.size[k][c] = max(r.size[k][c], size)
 		}
 	}
 	// What is rounding follows from all of a case: of EI v/L² no moment may be
@@ -122,12 +134,22 @@ func (r *Response) finish(leastEI float64) *Fault {
 		*M = math.Max(*M, leastEI*r.size[deflectionTrack][c]/(length*length))
 		*V = math.Max(*V, *M/length)
 	}
+	return nil
+}
+
+// settle finds the signs and roots that free terms need.
+func (r *Response) settle() {
+	if r.settled {
+		return
+	}
+	r.settled = true
 	for k := range r.tracks {
 		for i := range r.tracks[k] {
-			r.tracks[k][i].settle(r.degrees(i / r.cases)[k], math.Max(smallestResult, noise*r.size[k][i%r.cases]))
+			if c := i % r.cases; c < r.solved {
+				r.tracks[k][i].settle(r.degrees(i / r.cases)[k], math.Max(smallestResult, noise*r.size[k][c]))
+			}
 		}
 	}
-	return nil
 }
 
 // settle fills sign and roots; of a track below least there are none.
@@ -158,7 +180,7 @@ func (t *track) settle(deg int, least float64) {
 	}
 }
 
-// Cases returns the number of cases, the settlement case included.
+// Cases returns the number of cases, settlements and trains included.
 func (r *Response) Cases() int { return r.cases }
 
 // SettlementCase returns the case of the supports' settlements, -1 if none
@@ -170,9 +192,9 @@ func (r *Response) SettlementCase() int { return r.settlement }
 func (r *Response) Stations() []float64 { return slices.Clone(r.x) }
 
 // Reactions returns the reactions of case c from left to right, nil if there
-// is no such case.
+// is no such case or it is a train's.
 func (r *Response) Reactions(c int) []Reaction {
-	if c < 0 || c >= r.cases {
+	if c < 0 || c >= r.solved {
 		return nil
 	}
 	return slices.Clone(r.reactions[c*len(r.supports) : (c+1)*len(r.supports)])
@@ -180,10 +202,10 @@ func (r *Response) Reactions(c int) []Reaction {
 
 // At returns shear V (N), moment M (N.m), slope (rad) and deflection (m) of
 // case c at x (m), on the given side. All are NaN off the member or for a case
-// that does not exist.
+// that does not exist or is a train's.
 func (r *Response) At(c int, x float64, side Side) (V, M, slope, deflection float64) {
 	p, t, ok := r.locate(x, side)
-	if !ok || c < 0 || c >= r.cases {
+	if !ok || c < 0 || c >= r.solved {
 		return math.NaN(), math.NaN(), math.NaN(), math.NaN()
 	}
 	i, deg := p*r.cases+c, r.degrees(p)
@@ -196,25 +218,28 @@ func (r *Response) At(c int, x float64, side Side) (V, M, slope, deflection floa
 }
 
 // locate returns the piece that holds x and the place in it, 0 to 1.
-func (r *Response) locate(x float64, side Side) (int, float64, bool) {
-	end := r.x[len(r.x)-1]
+func (r *Response) locate(x float64, side Side) (int, float64, bool) { return locate(r.x, x, side) }
+
+// locate returns the interval of rising stations that holds x and the place in it.
+func locate(xs []float64, x float64, side Side) (int, float64, bool) {
+	end := xs[len(xs)-1]
 	if !(x >= -near*end && x <= end*(1+near)) {
 		return 0, 0, false
 	}
-	p, found := slices.BinarySearch(r.x, x)
+	p, found := slices.BinarySearch(xs, x)
 	if !found {
 		p--
 		switch {
-		case p >= 0 && x-r.x[p] <= near*end:
-			x, found = r.x[p], true
-		case p+1 < len(r.x) && r.x[p+1]-x <= near*end:
+		case p >= 0 && x-xs[p] <= near*end:
+			x, found = xs[p], true
+		case p+1 < len(xs) && xs[p+1]-x <= near*end:
 			p++
-			x, found = r.x[p], true
+			x, found = xs[p], true
 		}
 	}
 	if found && side == Left {
 		p--
 	}
-	p = min(max(p, 0), len(r.x)-2)
-	return p, min(max((x-r.x[p])/(r.x[p+1]-r.x[p]), 0), 1), true
+	p = min(max(p, 0), len(xs)-2)
+	return p, min(max((x-xs[p])/(xs[p+1]-xs[p]), 0), 1), true
 }

@@ -39,14 +39,17 @@ type SplitResult struct {
 // and footings are never sized from it. Errors are or wrap a *Fault: those of
 // Analyse, of Response.CheckTerms, and for a hinge away from the supports.
 func Split(b Beam, cases []Case, terms []Term) (SplitResult, error) {
-	if fault := checkSplit(b, cases, terms); fault != nil {
+	return SplitTrains(b, cases, nil, terms)
+}
+
+// SplitTrains is Split for the terms of AnalyseTrains: each piece takes the
+// extremes of a train that crosses it alone, and a support the largest of what
+// its two pieces give together while the train crosses the member.
+func SplitTrains(b Beam, cases []Case, trains []Train, terms []Term) (SplitResult, error) {
+	if fault := checkSplit(b, cases, trains, terms); fault != nil {
 		return SplitResult{}, fault
 	}
-	terms = slices.Clone(terms)
-	terms = slices.DeleteFunc(terms, func(t Term) bool { return t.Case == len(cases) })
-	for i := range terms {
-		terms[i].Free = false
-	}
+	terms = withoutSettlement(b, terms, len(cases))
 	supports := b.ordered()
 	cuts := cut(b.Length, supports)
 	out := SplitResult{Reactions: make([]Reaction, len(supports))}
@@ -54,26 +57,72 @@ func Split(b Beam, cases []Case, terms []Term) (SplitResult, error) {
 		out.Reactions[i].X = s.X
 	}
 	for i := range cuts {
-		if err := out.add(b, cuts, i, supports, cases, terms); err != nil {
+		if err := out.add(b, cuts, i, supports, cases, trains, terms); err != nil {
 			return SplitResult{}, fmt.Errorf("split method, %s from %v m: %w", cuts[i].handbook(), cuts[i].from, err)
 		}
 	}
 	out.placed(cuts, cases, terms)
+	for i, t := range trains {
+		if err := out.cross(b, cuts, t, factorOf(terms, len(cases)+i)); err != nil {
+			return SplitResult{}, err
+		}
+	}
 	return out, nil
 }
 
-func checkSplit(b Beam, cases []Case, terms []Term) *Fault {
+// settles tells whether a support does, which makes a case before the trains.
+func settles(b Beam) bool {
+	return slices.ContainsFunc(b.Supports, func(s Support) bool { return s.Settlement != 0 })
+}
+
+// withoutSettlement returns the terms without that of the settlements, all of
+// them fixed and the trains counted on from the cases.
+func withoutSettlement(b Beam, terms []Term, cases int) []Term {
+	var out []Term
+	for _, t := range terms {
+		t.Free = false
+		if settles(b) && t.Case == cases {
+			continue
+		}
+		if settles(b) && t.Case > cases {
+			t.Case--
+		}
+		out = append(out, t)
+	}
+	return out
+}
+
+// factorOf returns the sum of the factors of a case.
+func factorOf(terms []Term, c int) float64 {
+	sum := 0.0
+	for _, t := range terms {
+		if t.Case == c {
+			sum += t.Factor
+		}
+	}
+	return sum
+}
+
+func checkSplit(b Beam, cases []Case, trains []Train, terms []Term) *Fault {
 	if fault := check(b, cases); fault != nil {
 		return fault
 	}
-	count := len(cases)
-	for _, s := range b.Supports {
-		if s.Settlement != 0 {
-			count = len(cases) + 1
+	for i, t := range trains {
+		if fault := t.check(ordinal("train", i)); fault != nil {
+			return fault
 		}
+	}
+	count := len(cases) + len(trains)
+	if settles(b) {
+		count++
 	}
 	if fault := checkTerms(terms, count); fault != nil {
 		return fault
+	}
+	for i, s := range b.Supports {
+		if s.Kind == Guided {
+			return &Fault{FaultSupport, ordinal("support", i), s.X, "a guided support in the split method", "pinned, fixed or spring supports, or the exact method"}
+		}
 	}
 	if len(b.Supports) == 1 && !b.Supports[0].holdsRotation() {
 		return &Fault{FaultMechanism, "support 1", b.Supports[0].X, "a single " + b.Supports[0].Kind.String() + " support", "one fixed support, or two"}
@@ -200,13 +249,13 @@ func ownerOf(cuts []stretch, l Load, tol float64) int {
 }
 
 // add analyses piece i and adds its reactions.
-func (r *SplitResult) add(b Beam, cuts []stretch, i int, supports []Support, cases []Case, terms []Term) error {
+func (r *SplitResult) add(b Beam, cuts []stretch, i int, supports []Support, cases []Case, trains []Train, terms []Term) error {
 	s := cuts[i]
 	own := make([]Case, len(cases))
 	for c := range cases {
 		own[c] = loads(cuts, i, cases[c], b.Length)
 	}
-	resp, err := Analyse(s.beam(b), own)
+	resp, err := AnalyseTrains(s.beam(b), own, trains)
 	if err != nil {
 		return err
 	}
@@ -217,6 +266,9 @@ func (r *SplitResult) add(b Beam, cuts []stretch, i int, supports []Support, cas
 		x.X += s.from
 	}
 	r.Pieces = append(r.Pieces, p)
+	if len(trains) > 0 { // those cross the supports later, see cross
+		e = resp.Envelope(slices.DeleteFunc(slices.Clone(terms), func(t Term) bool { return t.Case >= len(cases) }))
+	}
 	for _, end := range e.Reactions {
 		at := s.right
 		if s.left >= 0 && end.X == 0 {
@@ -234,6 +286,9 @@ func (r *SplitResult) add(b Beam, cuts []stretch, i int, supports []Support, cas
 func (r *SplitResult) placed(cuts []stretch, cases []Case, terms []Term) {
 	tol := near * cuts[len(cuts)-1].to
 	for _, t := range terms {
+		if t.Case >= len(cases) {
+			continue
+		}
 		for _, l := range cases[t.Case] {
 			if l.Kind != Point || ownerOf(cuts, l, tol) >= 0 {
 				continue

@@ -47,6 +47,12 @@ func (s *sweep) reactions(dst *Envelope) {
 	for i := range dst.Reactions {
 		var F, M Bounds
 		for _, t := range s.terms {
+			if train := t.Case - s.r.solved; train >= 0 {
+				b := &s.r.moved[train*len(s.r.supports)+i]
+				F.move(t.Factor, b[0])
+				M.move(t.Factor, b[1])
+				continue
+			}
 			v := &s.r.reactions[t.Case*len(s.r.supports)+i]
 			F.add(t, v.F)
 			M.add(t, v.M)
@@ -109,6 +115,18 @@ func (s *sweep) piece(p, kind int, hi, lo *Extreme, first bool) (start, end Boun
 	} else {
 		var up, down poly
 		single := s.begin(tracks, deg, &up, &down)
+		for i := range s.terms {
+			t := &s.terms[i]
+			if train := t.Case - r.solved; train >= 0 {
+				single = false
+				hi, lo := &tracks[t.Case].c, &r.lower[kind][p*r.trains+train]
+				if t.Factor < 0 {
+					hi, lo = lo, hi
+				}
+				up.add(deg, t.Factor, hi)
+				down.add(deg, t.Factor, lo)
+			}
+		}
 		start = Bounds{up[0], down[0]}
 		w.open(start, first)
 		from := 0.0
@@ -145,18 +163,22 @@ func (s *sweep) begin(tracks []track, deg int, up, down *poly) (single bool) {
 	for i := range s.terms {
 		t := &s.terms[i]
 		tr := &tracks[t.Case]
-		if t.Factor == 0 || tr.first == 0 {
+		if t.Factor == 0 || t.Case >= s.r.solved {
+			continue
+		}
+		if !t.Free {
+			up.add(deg, t.Factor, &tr.c)
+			down.add(deg, t.Factor, &tr.c)
+			continue
+		}
+		if tr.first == 0 {
 			continue
 		}
 		above := (tr.first > 0) == (t.Factor > 0)
-		if above || !t.Free {
+		if above {
 			up.add(deg, t.Factor, &tr.c)
-		}
-		if !above || !t.Free {
+		} else {
 			down.add(deg, t.Factor, &tr.c)
-		}
-		if !t.Free {
-			continue
 		}
 		single = false
 		for k := range tr.n {

@@ -16,46 +16,37 @@ func (m *mesh) unknownsOf(e int) (dofs [4]int, held [4]float64) {
 
 // matrix returns the 4 by 4 stiffness of an element on v, θ, v, θ (down and
 // clockwise +), from the stiffness of its ends against the chord.
-func (e element) matrix() [4][4]float64 {
-	chord := [2][4]float64{{1 / e.length, 1, -1 / e.length, 0}, {1 / e.length, 0, -1 / e.length, 1}}
-	k := [2][2]float64{{e.inverse[0], -e.inverse[1]}, {-e.inverse[1], e.inverse[2]}}
-	var out [4][4]float64
-	for r := range 4 {
-		for s := range 4 {
-			for p := range 2 {
-				for q := range 2 {
-					out[r][s] += chord[p][r] * k[p][q] * chord[q][s]
-				}
-			}
-		}
-	}
-	return out
+func (e *element) matrix() [4][4]float64 {
+	A, B, C := e.inverse[0], -e.inverse[1], e.inverse[2]
+	l, r := (A+B)/e.length, (B+C)/e.length
+	s := (l + r) / e.length
+	return [4][4]float64{{s, l, -s, r}, {l, A, -l, B}, {-s, -l, s, -r}, {r, B, -r, C}}
 }
 
 // springs returns the stiffnesses of the node's support in the mesh's units.
-func (m *mesh) springs(n node) (deflection, turn float64) {
+func (m *mesh) springs(n *node) (deflection, turn float64) {
 	if n.support < 0 {
 		return 0, 0
 	}
-	s := m.supports[n.support]
+	s := &m.supports[n.support]
 	return s.Stiffness * cube(m.length) / m.unitEI, s.RotationalStiffness * m.length / m.unitEI
 }
 
 // assemble builds and factorises the stiffness matrix.
 func (m *mesh) assemble() (*band, *Fault) {
-	k := newBand(m.unknowns)
+	k := new(band)
+	return k, m.assembleInto(k)
+}
+
+// assembleInto is assemble in the memory of k.
+func (m *mesh) assembleInto(k *band) *Fault {
+	k.reset(m.unknowns)
 	for i := range m.elements {
 		dofs, _ := m.unknownsOf(i)
-		ke := m.elements[i].matrix()
-		for r, row := range dofs {
-			for s, column := range dofs {
-				if row >= 0 && column >= 0 {
-					k.add(row, column, ke[r][s])
-				}
-			}
-		}
+		k.addElement(dofs, m.elements[i].matrix())
 	}
-	for _, n := range m.nodes {
+	for i := range m.nodes {
+		n := &m.nodes[i]
 		down, turn := m.springs(n)
 		if down > 0 {
 			k.add(n.deflection, n.deflection, down)
@@ -64,7 +55,7 @@ func (m *mesh) assemble() (*band, *Fault) {
 			k.add(n.turn, n.turn, turn)
 		}
 	}
-	return k, m.factorise(k)
+	return m.factorise(k)
 }
 
 // factorise factorises k, refuses a mechanism and what is too badly
@@ -79,8 +70,8 @@ func (m *mesh) factorise(k *band) *Fault {
 			"supports that hold the member: one fixed, or two, and one more for each hinge"}
 	}
 	condition := norm * k.inverseNorm()
-	for _, e := range m.elements {
-		if !(e.condition > 0 && e.condition <= condition) {
+	for i := range m.elements {
+		if e := &m.elements[i]; !(e.condition > 0 && e.condition <= condition) {
 			condition = e.condition
 		}
 	}

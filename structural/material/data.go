@@ -7,7 +7,7 @@ import (
 	"encoding/csv"
 	"encoding/hex"
 	"fmt"
-	"math"
+	"slices"
 	"strconv"
 	"strings"
 	"sync"
@@ -67,7 +67,7 @@ func readRows(text []byte, width int) ([][]string, error) {
 }
 
 func (d *data) readGrades(text []byte) error {
-	rows, err := readRows(text, 11)
+	rows, err := readRows(text, 12)
 	if err != nil {
 		return err
 	}
@@ -78,16 +78,36 @@ func (d *data) readGrades(text []byte) error {
 		}
 		old, ok := d.grades[g.Name]
 		if !ok {
+			if row[10] != "" {
+				return fmt.Errorf("grade %s: its first row is for %s alone; want the row of all families first", g.Name, row[10])
+			}
 			d.names = append(d.names, g.Name)
 			d.grades[g.Name] = g
 			continue
 		}
-		if !(g.Bands[0].UpTo > old.Bands[len(old.Bands)-1].UpTo) {
-			return fmt.Errorf("grade %s: band up to %s does not follow the one above it", g.Name, row[7])
+		if err := old.add(g.Bands[0], strings.Fields(row[10])); err != nil {
+			return fmt.Errorf("grade %s: band up to %s: %w", g.Name, row[7], err)
 		}
-		old.Bands = append(old.Bands, g.Bands[0])
 		d.grades[g.Name] = old
 	}
+	return nil
+}
+
+// add puts a band under those of the same families.
+func (g *Grade) add(b Band, families []string) error {
+	bands := &g.Bands
+	if len(families) > 0 {
+		i := slices.IndexFunc(g.Variants, func(v Variant) bool { return slices.Equal(v.Families, families) })
+		if i < 0 {
+			g.Variants = append(g.Variants, Variant{Families: families})
+			i = len(g.Variants) - 1
+		}
+		bands = &g.Variants[i].Bands
+	}
+	if n := len(*bands); n > 0 && !(b.UpTo > (*bands)[n-1].UpTo) {
+		return fmt.Errorf("it does not follow the one above it")
+	}
+	*bands = append(*bands, b)
 	return nil
 }
 
@@ -104,13 +124,13 @@ func gradeOf(row []string) (Grade, error) {
 	var v [6]float64
 	for i := range v {
 		x, err := strconv.ParseFloat(row[4+i], 64)
-		if err != nil || !(x > 0 && x <= math.MaxFloat64) {
+		if err != nil || !finite(x) {
 			return Grade{}, fmt.Errorf("%q is not a number above zero", row[4+i])
 		}
 		v[i] = x
 	}
 	return Grade{
-		Name: row[0], Standard: row[1], Source: row[10],
+		Name: row[0], Standard: row[1], Source: row[11],
 		E: v[0] * stress, G: v[1] * stress, Density: v[2],
 		Bands: []Band{{UpTo: v[3] * length, Yield: v[4] * stress, Ultimate: v[5] * stress}},
 	}, nil

@@ -2,7 +2,8 @@
 // which section families are made in which grade.
 //
 //	grades.csv, suits.csv (embedded) → rows → grades, verdicts
-//	"S 355 J2" → Find → Grade → Strength(thickness) → fy, fu
+//	"S 355 J2" → Find → Grade → For(family) → Strength(thickness) → fy, fu
+//	the user's own values → New → Grade
 //	family, grade → Suits → Verdict
 //
 // All values are in SI: stresses in Pa, thickness in m, density in kg/m³.
@@ -30,7 +31,29 @@ type Grade struct {
 	E        float64 // Pa, Young's modulus
 	G        float64 // Pa, shear modulus
 	Density  float64 // kg/m³
-	Bands    []Band  // thinnest first
+	Bands    []Band  // thinnest first; the lowest of all families where Variants differ
+
+	Variants []Variant // strengths that hold for some families only; mostly none
+}
+
+// Variant is the strength of a grade in some section families: A500 is stronger
+// in shaped than in round tube, stainless plate than bar.
+type Variant struct {
+	Families []string // canonical family names
+	Bands    []Band   // thinnest first
+}
+
+// For returns the grade with the strength that it has in a section family (its
+// canonical name). Without For, Strength gives the lowest of all families, which
+// is safe.
+func (g Grade) For(family string) Grade {
+	for _, v := range g.Variants {
+		if slices.Contains(v.Families, family) {
+			g.Bands = v.Bands
+			return g
+		}
+	}
+	return g
 }
 
 // Strength returns the least yield and tensile strength in Pa at a thickness
@@ -64,8 +87,9 @@ func Names() []string {
 
 // Find returns the grade of a trade spelling: letter case, spaces, hyphens,
 // "ASTM", "EN 10025-2", "Gr." and "Grade" don't matter, and a quality after an EN
-// grade (S355J2+N, S355J2H) names the same strengths. Anything else is an
-// *UnknownError with near misses.
+// grade (S355J2+N) names the same strengths; NL and ML stand for N and M, JRH, J0H
+// and J2H for the hollow-section grade (S355H). Anything else is an *UnknownError
+// with near misses.
 func Find(name string) (Grade, error) {
 	d, err := load()
 	if err != nil {
@@ -75,8 +99,7 @@ func Find(name string) (Grade, error) {
 	if !ok {
 		return Grade{}, &UnknownError{Found: name, Near: d.near(name)}
 	}
-	g.Bands = slices.Clone(g.Bands)
-	return g, nil
+	return g.clone(), nil
 }
 
 // UnknownError is a grade name that is not held.

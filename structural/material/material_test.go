@@ -12,8 +12,18 @@ import (
 	"github.com/google/go-cmp/cmp"
 )
 
-// Yield and tensile strength in MPa by thickness in mm: EN 10025-2:2004 table 7,
-// from memory, at each edge of the bands; ASTM values in ksi from A36, A53, A106.
+// allNames are the grades in the order of the data.
+var allNames = []string{
+	"S235", "S275", "S355", "S275N", "S355N", "S420N", "S460N", "S275M", "S355M", "S420M", "S460M",
+	"S235H", "S275H", "S355H", "S275NH", "S355NH", "S420NH", "S460NH", "S275MH", "S355MH", "S420MH", "S460MH",
+	"A36", "A572 42", "A572 50", "A572 55", "A572 60", "A572 65", "A588", "A992", "A500 A", "A500 B", "A500 C", "A500 D", "A53 B", "A106 B",
+	"1.4301", "1.4401", "1.4462",
+}
+
+// Yield and tensile strength in MPa by thickness in mm, from memory, at each edge
+// of the bands: EN 10025-2:2004 table 7, EN 10025-3 and -4:2004 tables 4 and 5, EN
+// 10210-1:2006 tables A.3 and B.3, EN 10219-1:2006 tables A.3 and B.5; ASTM values
+// in ksi from the standards' tensile tables; EN 1993-1-4 table 2.1.
 func TestStrength(t *testing.T) {
 	const in = 25.4
 	for _, c := range []struct {
@@ -29,6 +39,19 @@ func TestStrength(t *testing.T) {
 		{"S355", 63, 335, 470}, {"S355", 80, 325, 470}, {"S355", 100, 315, 470}, {"S355", 150, 295, 450}, {"S355", 200, 285, 450}, {"S355", 250, 275, 450},
 		{"A36", 0.5 * in, 248.211, 399.896}, {"A36", 8 * in, 248.211, 399.896}, // 36 and 58 ksi
 		{"A53 B", 0.375 * in, 241.317, 413.685}, {"A106 B", 1 * in, 241.317, 413.685}, // 35 and 60 ksi
+		{"S275N", 16, 275, 370}, {"S275N", 100, 235, 370}, {"S275N", 150, 225, 350}, {"S355N", 40, 345, 470}, {"S355N", 63, 335, 470},
+		{"S420N", 16, 420, 520}, {"S420N", 63, 390, 520}, {"S420N", 100, 360, 520}, {"S460N", 16, 460, 540}, {"S460N", 40, 440, 540},
+		{"S460N", 63, 430, 540}, {"S460N", 80, 410, 540}, {"S460N", 100, 400, 540}, {"S460N", 200, 370, 530},
+		{"S275M", 63, 255, 360}, {"S355M", 16, 355, 470}, {"S355M", 40, 345, 470}, {"S355M", 63, 335, 450}, {"S355M", 120, 320, 430},
+		{"S420M", 16, 420, 520}, {"S420M", 40, 400, 520}, {"S420M", 80, 380, 480}, {"S460M", 16, 460, 540}, {"S460M", 63, 430, 530}, {"S460M", 100, 400, 500},
+		{"S235H", 16, 235, 360}, {"S235H", 40, 225, 360}, {"S275H", 16, 275, 410}, {"S355H", 16, 355, 470}, {"S355H", 40, 345, 470}, {"S355H", 63, 335, 470},
+		{"S275NH", 65, 255, 370}, {"S355NH", 40, 345, 470}, {"S420NH", 16, 420, 520}, {"S460NH", 16, 460, 540}, {"S460NH", 65, 430, 540},
+		{"S275MH", 16, 275, 360}, {"S355MH", 40, 345, 470}, {"S420MH", 16, 420, 500}, {"S460MH", 40, 440, 530},
+		{"A992", 1 * in, 344.738, 448.159}, {"A572 50", 1 * in, 344.738, 448.159}, // 50 and 65 ksi
+		{"A572 42", 6 * in, 289.580, 413.685}, {"A572 65", 1.25 * in, 448.159, 551.581}, // 42, 60; 65, 80 ksi
+		{"A588", 4 * in, 344.738, 482.633}, {"A588", 5 * in, 317.159, 461.949}, // 50, 70; 46, 67 ksi
+		{"A500 B", 0.5 * in, 289.580, 399.896}, {"A500 C", 0.5 * in, 317.159, 427.475}, // round: 42, 58; 46, 62 ksi
+		{"1.4301", 20, 190, 500}, {"1.4401", 20, 200, 500}, {"1.4462", 20, 450, 640},
 		{"A106 B", 59.54, 241.317, 413.685}, // NPS 24 schedule 160, the thickest wall of ASME B36.10M in our sizes
 	} {
 		g, err := Find(c.grade)
@@ -66,7 +89,7 @@ func TestStrengthRefuses(t *testing.T) {
 }
 
 // E and G of EN 1993-1-1 3.2.6 and, as 29,000 and 11,200 ksi, of AISC 360-22;
-// density of EN 1991-1-1 table A.4.
+// density of EN 1991-1-1 table A.4. Stainless: EN 1993-1-4 2.1.3, EN 10088-1.
 func TestConstants(t *testing.T) {
 	for _, name := range Names() {
 		g, err := Find(name)
@@ -74,11 +97,15 @@ func TestConstants(t *testing.T) {
 			t.Fatal(err)
 		}
 		e, shear := 210e9, 81e9
+		density := 7850.0
 		if strings.HasPrefix(name, "A") {
 			e, shear = 199.948e9, 77.221e9
 		}
-		if !(math.Abs(g.E/e-1) < 1e-5) || !(math.Abs(g.G/shear-1) < 1e-5) || g.Density != 7850 {
-			t.Errorf("%s: E %.6g, G %.6g Pa, %g kg/m³; want %.6g, %.6g, 7850", name, g.E, g.G, g.Density, e, shear)
+		if rho, ok := map[string]float64{"1.4301": 7900, "1.4401": 8000, "1.4462": 7800}[name]; ok {
+			e, shear, density = 200e9, 76.9e9, rho
+		}
+		if !(math.Abs(g.E/e-1) < 1e-5) || !(math.Abs(g.G/shear-1) < 1e-5) || g.Density != density {
+			t.Errorf("%s: E %.6g, G %.6g Pa, %g kg/m³; want %.6g, %.6g, %g", name, g.E, g.G, g.Density, e, shear, density)
 		}
 		if g.Name != name || g.Standard == "" || g.Source == "" {
 			t.Errorf("%s: name %q, standard %q, source %q", name, g.Name, g.Standard, g.Source)
@@ -94,7 +121,13 @@ func TestConstants(t *testing.T) {
 func TestFindSpellings(t *testing.T) {
 	for spelling, want := range map[string]string{
 		"S355": "S355", "s 355": "S355", "S-355": "S355", "S355J2": "S355", "S355 J2+N": "S355", "S355J0": "S355", "S355JO": "S355",
-		"S355K2": "S355", "S355J2H": "S355", "S355NH": "", "S275JR": "S275", "S275J0H": "S275", "S235JRH": "S235", "S235JR+AR": "S235",
+		"S355K2": "S355", "S355J2H": "S355H", "S355NH": "S355NH", "S275JR": "S275", "S275J0H": "S275H", "S235JRH": "S235H", "S235JR+AR": "S235",
+		"S355N": "S355N", "S355+N": "S355", "S355NL": "S355N", "S 460 M": "S460M", "S460ML": "S460M", "S420NLH": "S420NH", "s355mlh": "S355MH",
+		"S355J2N": "S355", "EN 10025-3 S355N": "S355N", "S460M EN 10025-4:2019": "S460M", "EN 10210-1 S355J2H": "S355H", "S355H+N": "S355H",
+		"S420": "", "S460": "", "S355Q": "",
+		"A572 Gr 50": "A572 50", "A572-50": "A572 50", "ASTM A572/A572M Grade 50": "A572 50", "A57250": "A572 50", "A572": "", "A572 Gr 36": "",
+		"A992": "A992", "ASTM A992/A992M": "A992", "A588": "A588", "A500 Gr. C": "A500 C", "A500B": "A500 B", "ASTM A500 grade B": "A500 B", "A500": "",
+		"1.4301": "1.4301", "EN 1.4462": "", "EN 10088-2 1.4401": "1.4401", "EN 10088 1.4301": "1.4301", "X5CrNi18-10 1.4301": "1.4301", "304": "",
 		"EN 10025-2 S355J2": "S355", "S235 EN 10025-2:2004": "S235", "S355 to": "",
 		"A36": "A36", "a 36": "A36", "ASTM A36": "A36", "A36/A36M": "A36", "A36M": "A36", "ASTM A-36": "A36",
 		"A53 B": "A53 B", "A53B": "A53 B", "A53 Gr. B": "A53 B", "A53 Gr B": "A53 B", "A53 grade B": "A53 B", "ASTM A53-B": "A53 B", "A53/A53M Gr.B": "A53 B",
@@ -121,7 +154,11 @@ func TestNearMisses(t *testing.T) {
 		"S365":    "S355",
 		"A53":     "A53 B",
 		"A106 C":  "A106 B",
-		"S355NH":  "S355",
+		"S460":    "S460N",
+		"A572":    "A572 42",
+		"A500":    "A500 A",
+		"304":     "1.4301",
+		"S355Q":   "S355",
 		"St 37-2": "S235",
 		"St52-3":  "S355",
 		"Fe 430":  "S275",
@@ -137,7 +174,7 @@ func TestNearMisses(t *testing.T) {
 		t.Errorf("got %v\nwant %s", err, want)
 	}
 	_, err = Find("unobtainium")
-	if want := `unknown steel grade "unobtainium"; known grades are S235, S275, S355, A36, A53 B, A106 B`; err == nil || err.Error() != want {
+	if want := `unknown steel grade "unobtainium"; known grades are ` + strings.Join(allNames, ", "); err == nil || err.Error() != want {
 		t.Errorf("got %v\nwant %s", err, want)
 	}
 }
@@ -156,7 +193,7 @@ func TestDataIsNotShared(t *testing.T) {
 	if again.Bands[0].Yield != 355e6 {
 		t.Errorf("a caller's change reached the grade: %g Pa", again.Bands[0].Yield)
 	}
-	if d := cmp.Diff([]string{"S235", "S275", "S355", "A36", "A53 B", "A106 B"}, Names()); d != "" {
+	if d := cmp.Diff(allNames, Names()); d != "" {
 		t.Errorf("Names (-want +got):\n%s", d)
 	}
 }
@@ -175,18 +212,20 @@ func TestDataHash(t *testing.T) {
 	}
 }
 
-const goodHead = "grade,standard,stress,length,E,G,density,up_to,yield,ultimate,source\n"
+const goodHead = "grade,standard,stress,length,E,G,density,up_to,yield,ultimate,families,source\n"
 
 func TestReadGradesRefuses(t *testing.T) {
 	for name, c := range map[string]struct{ rows, want string }{
 		"no rows":           {"", "want a header"},
 		"short row":         {"S1,EN,MPa\n", "fields"},
-		"stress unit":       {"S1,EN,bar,mm,1,1,1,1,1,1,s\n", `"bar"`},
-		"length unit":       {"S1,EN,MPa,ft,1,1,1,1,1,1,s\n", `"ft"`},
-		"NaN":               {"S1,EN,MPa,mm,NaN,1,1,1,1,1,s\n", `"NaN"`},
-		"infinite":          {"S1,EN,MPa,mm,1,Inf,1,1,1,1,s\n", `"Inf"`},
-		"zero":              {"S1,EN,MPa,mm,1,1,0,1,1,1,s\n", `"0"`},
-		"bands upside down": {"S1,EN,MPa,mm,1,1,1,40,1,1,s\nS1,EN,MPa,mm,1,1,1,16,1,1,s\n", "does not follow"},
+		"stress unit":       {"S1,EN,bar,mm,1,1,1,1,1,1,,s\n", `"bar"`},
+		"length unit":       {"S1,EN,MPa,ft,1,1,1,1,1,1,,s\n", `"ft"`},
+		"NaN":               {"S1,EN,MPa,mm,NaN,1,1,1,1,1,,s\n", `"NaN"`},
+		"infinite":          {"S1,EN,MPa,mm,1,Inf,1,1,1,1,,s\n", `"Inf"`},
+		"zero":              {"S1,EN,MPa,mm,1,1,0,1,1,1,,s\n", `"0"`},
+		"bands upside down": {"S1,EN,MPa,mm,1,1,1,40,1,1,,s\nS1,EN,MPa,mm,1,1,1,16,1,1,,s\n", "does not follow"},
+		"variant first":     {"S1,EN,MPa,mm,1,1,1,16,1,1,HSS,s\n", "want the row of all families first"},
+		"variant's bands":   {"S1,EN,MPa,mm,1,1,1,16,1,1,,s\nS1,EN,MPa,mm,1,1,1,40,2,2,HSS,s\nS1,EN,MPa,mm,1,1,1,16,2,2,HSS,s\n", "does not follow"},
 	} {
 		d := &data{grades: map[string]Grade{}}
 		if err := d.readGrades([]byte(goodHead + c.rows)); err == nil || !strings.Contains(err.Error(), c.want) {

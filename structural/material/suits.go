@@ -37,13 +37,17 @@ type Verdict struct {
 }
 
 // Suits returns the verdict on a section family (its name in any letter case)
-// in a grade (any spelling that Find takes), from the family × grade table. A
+// in a grade (any spelling that Find takes), from the family × grade table; exact
+// names are answered without reading spellings, because sizing asks often. A
 // family or grade that is not in the table is refused, and the remedy lists what
 // is.
 func Suits(family, grade string) Verdict {
 	d, err := load()
 	if err != nil {
 		return Verdict{Level: Refused, Reason: err.Error(), Remedy: "mend the embedded data"}
+	}
+	if v, ok := d.verdicts[pair{family, grade}]; ok {
+		return v
 	}
 	f := strings.ToUpper(strings.TrimSpace(family))
 	if !d.families[f] {

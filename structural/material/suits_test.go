@@ -23,6 +23,25 @@ func TestSuits(t *testing.T) {
 		{"HEB", "A36", Doubtful, "not stocked in A36", "S275"},
 		{"HEA", "A106 B", Refused, "pipe steels", "S235"},
 		{"CHS", "S355J2H", Suitable, "EN 10219-1", ""},
+		{"W", "A992", Suitable, "A992", ""},
+		{"W", "A572 Gr 50", Suitable, "A992 is what is stocked", ""},
+		{"W", "S355", Doubtful, "not stocked", "A992"},
+		{"IPE", "A992", Refused, "rolled W shapes alone", "S355"},
+		{"C", "A992", Refused, "rolled W shapes alone", "A36"},
+		{"WELDED-I", "A992", Refused, "rolled W shapes alone", "A572 50"},
+		{"WELDED-BOX", "S460M", Suitable, "EN 10025-4", ""},
+		{"HSS", "A500 C", Suitable, "0.93", ""},
+		{"HSS", "A53 B", Refused, "round pipe only", "A500 C"},
+		{"HSS-ROUND", "A53 B", Doubtful, "schedule", "PIPE"},
+		{"HSS", "A992", Refused, "", "A500"},
+		{"SHS", "S355MH", Suitable, "EN 10219-1", ""},
+		{"CHS", "S355NH", Suitable, "EN 10210-1", ""},
+		{"UPN", "S355H", Refused, "hollow sections", "S355"},
+		{"UPE", "S275", Suitable, "EN 10025-2", ""},
+		{"L", "S355", Suitable, "EN 10056-1", ""},
+		{"PIPE", "A500 B", Doubtful, "HSS-ROUND", "A53 B"},
+		{"FLAT", "1.4301", Suitable, "EN 10088", ""},
+		{"W", "1.4401", Refused, "stainless", "WELDED-I"},
 		{"SHS", "S235", Suitable, "S235JRH", ""},
 		{"RHS", "A36", Refused, "no hollow sections", "S235"},
 		{"CHS", "A53 B", Doubtful, "schedule", "PIPE"},
@@ -33,8 +52,8 @@ func TestSuits(t *testing.T) {
 		{"WELDED-I", "S355", Suitable, "plate", ""},
 		{"FLAT", "A36", Suitable, "A36", ""},
 		{"ROUND", "A53 B", Refused, "pipe steels", "A36"},
-		{"IPE", "S999", Refused, "unknown steel grade", "S235, S275, S355, A36"},
-		{"BEAM", "S355", Refused, `"BEAM"`, "CHS, FLAT, HEA, HEB, IPE, PIPE, RHS, ROUND, SHS, WELDED-I"},
+		{"IPE", "S999", Refused, "unknown steel grade", "S235, S275, S355, S275N"},
+		{"BEAM", "S355", Refused, `"BEAM"`, "CHANNEL, CHS, FLAT, HEA, HEB, HEM, HSS, HSS-ROUND, IPE, L, PIPE, RHS, ROUND, SHS, TEE, UPE, UPN, W, WELDED-BOX, WELDED-I"},
 		{"", "", Refused, `""`, "CHS, FLAT"},
 	} {
 		v := Suits(c.family, c.grade)
@@ -50,7 +69,7 @@ func TestEveryPairHasAVerdict(t *testing.T) {
 		t.Fatal(err)
 	}
 	families := slices.Sorted(maps.Keys(d.families))
-	want := []string{"CHS", "FLAT", "HEA", "HEB", "IPE", "PIPE", "RHS", "ROUND", "SHS", "WELDED-I"}
+	want := []string{"C", "CHANNEL", "CHS", "FLAT", "HEA", "HEB", "HEM", "HSS", "HSS-ROUND", "IPE", "L", "PIPE", "RHS", "ROUND", "SHS", "TEE", "UPE", "UPN", "W", "WELDED-BOX", "WELDED-I"}
 	if diff := cmp.Diff(want, families); diff != "" {
 		t.Errorf("families (-want +got):\n%s", diff)
 	}
@@ -93,5 +112,21 @@ func TestLevelString(t *testing.T) {
 		if got := level.String(); got != want {
 			t.Errorf("Level(%d) = %q, want %q", uint8(level), got, want)
 		}
+	}
+}
+
+// Sizing asks for every candidate: exact names must be answered without work.
+func TestSuitsExactNamesDoNotAllocate(t *testing.T) {
+	if n := testing.AllocsPerRun(100, func() { Suits("HEB", "S355") }); n != 0 {
+		t.Errorf("Suits allocates %g times for exact names; want none", n)
+	}
+	if exact, spelt := Suits("WELDED-I", "A572 50"), Suits("welded-i ", "astm A572 gr 50"); exact != spelt {
+		t.Errorf("exact %+v, spelt %+v", exact, spelt)
+	}
+}
+
+func BenchmarkSuits(b *testing.B) {
+	for b.Loop() {
+		Suits("HEB", "S355")
 	}
 }

@@ -6,13 +6,6 @@ import (
 	"spanwright/structural/section"
 )
 
-// bucklesSideways tells whether a beam of the shape can buckle sideways and twist:
-// closed tubes and solid rounds are too stiff in torsion, and have no weak axis or
-// warp hardly at all.
-func bucklesSideways(s *section.Section) bool {
-	return s.Shape == section.ISection || s.Shape == section.Flat
-}
-
 // part is the plate of a section that comes nearest to its limit, or over it most.
 type part struct {
 	name  string
@@ -25,28 +18,22 @@ func (p part) ratio() float64 { return ratio(p.ct, p.limit) }
 // localBuckling holds each plate in compression to the limit of class 3, EN
 // 1993-1-1:2005 Table 5.2, so that elastic resistances are reached:
 //
-//	round tube d/t ≤ 90ε²; outstand flange c/tf ≤ 14ε; internal flange c/t ≤ 42ε
+//	round tube d/t ≤ 90ε²; outstand flange or stem c/t ≤ 14ε; internal flange c/t ≤ 42ε
 //	web c/t ≤ 42ε/(0.67 + 0.33ψ) for ψ > −1, 124ε in pure bending; ε = √(235 MPa/fy)
+//	angle h/t ≤ 15ε and (b + h)/2t ≤ 11.5ε
 //
 // ψ is the ratio of the stresses at the web's edges under the compression together
-// with the greatest moment; tension is not counted in its favour. Solid rounds and
-// flats have no plate in the sense of the table.
+// with the greatest moment about y, the larger part of the web pressed; tension is
+// not counted in its favour. Bending about z presses the whole side of a tube. Stems
+// count as pressed all over. Solid rounds and flats have no plate in the sense of the
+// table.
 func (a allowable) localBuckling(s *section.Section, m Material, d *Demand, t *trace) use {
-	if d.Moment == 0 && d.Axial <= 0 {
+	if d.Moment == 0 && d.MomentZ == 0 && d.Axial <= 0 {
 		return use{}
 	}
 	epsilon := math.Sqrt(235e6 / m.Yield)
-	var worst part
-	switch s.Shape {
-	case section.RoundTube:
-		worst = part{"wall", s.H / s.Tw, 90 * epsilon * epsilon}
-	case section.ISection:
-		flange := part{"flange", (s.B - s.Tw - 2*s.R) / 2 / s.Tf, 14 * epsilon}
-		worst = worse(flange, web(s, s.H-2*s.Tf-2*s.R, epsilon, d, t))
-	case section.RectangularTube:
-		flange := part{"flange", (s.B - 3*s.Tw) / s.Tw, 42 * epsilon}
-		worst = worse(flange, web(s, s.H-3*s.Tw, epsilon, d, t))
-	default:
+	worst, ok := worstPart(s, epsilon, d, t)
+	if !ok {
 		return use{}
 	}
 	t.put("fy", m.Yield, "Pa")
@@ -62,6 +49,36 @@ func (a allowable) localBuckling(s *section.Section, m Material, d *Demand, t *t
 	return u
 }
 
+// worstPart returns the plate nearest to its limit, and whether there is any.
+func worstPart(s *section.Section, epsilon float64, d *Demand, t *trace) (part, bool) {
+	switch s.Shape {
+	case section.RoundTube:
+		return part{"wall", s.H / s.Tw, 90 * epsilon * epsilon}, true
+	case section.Angle:
+		return worse(part{"longer leg", s.H / s.Tw, 15 * epsilon}, part{"legs together", (s.H + s.B) / 2 / s.Tw, 11.5 * epsilon}), true
+	case section.Tee:
+		return worse(part{"flange", s.FlangeSlender, 14 * epsilon}, part{"stem", s.WebSlender, 14 * epsilon}), true
+	case section.ISection, section.RectangularTube, section.WeldedBox, section.Channel, section.UnequalI:
+	default:
+		return part{}, false
+	}
+	p := strong(s)
+	limit := 42 * epsilon
+	if p.outstand {
+		limit = 14 * epsilon
+	}
+	worst := worse(part{"flange", p.flange / p.flangeT, limit}, web(s, &p, epsilon, d, t))
+	if s.Shape == section.UnequalI {
+		lower := (s.LowerB - s.Tw) / 2 / s.LowerTf
+		worst = worse(worst, part{"lower flange", lower, limit})
+	}
+	if d.MomentZ != 0 && !p.outstand {
+		side := weak(s)
+		worst = worse(worst, part{"side", side.flange / side.flangeT, limit})
+	}
+	return worst, true
+}
+
 func worse(a, b part) part {
 	if b.ratio() > a.ratio() {
 		return b
@@ -69,23 +86,24 @@ func worse(a, b part) part {
 	return a
 }
 
-// web returns the web of depth c between its edges (m).
-func web(s *section.Section, c, epsilon float64, d *Demand, t *trace) part {
-	psi := edgeRatio(d.Axial/s.A, d.Moment*c/2/s.Iy)
+// web returns the web with the larger part of it pressed.
+func web(s *section.Section, p *plates, epsilon float64, d *Demand, t *trace) part {
+	far, near := max(p.edge, p.farEdge), min(p.edge, p.farEdge)
+	psi := edgeRatio(d.Axial/s.A, d.Moment*far/s.Iy, near/far)
 	t.put("ψ", psi, "")
 	limit := 124 * epsilon
 	if psi > -1 {
 		limit = 42 * epsilon / (0.67 + 0.33*psi)
 	}
-	return part{"web", c / s.Tw, limit}
+	return part{"web", p.web / p.webT, limit}
 }
 
 // edgeRatio returns ψ, the stress at the less over that at the more compressed edge,
-// from the axial stress (compression +) and the bending stress at the edges. Without
-// compression it is −1, pure bending.
-func edgeRatio(axial, bending float64) float64 {
+// from the axial stress (compression +), the bending stress at the more compressed
+// edge and its share at the other. Without compression it is that of pure bending.
+func edgeRatio(axial, bending, share float64) float64 {
 	if axial <= 0 {
-		return -1
+		return -share
 	}
-	return (axial - bending) / (axial + bending)
+	return (axial - share*bending) / (axial + bending)
 }

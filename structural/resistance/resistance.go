@@ -24,6 +24,11 @@ const (
 	Interaction     = "interaction"
 	LocalBuckling   = "local slenderness"
 	Deflecting      = "deflection"
+	BendingZ        = "bending about the weak axis"
+	ShearY          = "shear along the width"
+	WebBuckling     = "web shear buckling"
+	Vibrating       = "frequency"
+	NotCovered      = "not covered"
 )
 
 // tolerance is how far above 1 a utilisation may lie and still pass: rounding, not
@@ -71,6 +76,12 @@ type Demand struct {
 	LengthY        float64      // m, buckling length K·L about the strong axis; above 0 wherever there is compression
 	LengthZ        float64      // m, buckling length K·L about the weak axis; above 0 wherever there is compression
 	Deflections    []Deflection // one for each span and overhang that has a limit
+	MomentZ        float64      // N·m about the weak axis, greatest absolute value
+	ShearY         float64      // N along the width, greatest absolute value
+	MomentFactor   float64      // C1 (EN 1993) or Cb (AISC 360) of the governing unrestrained length; 0 stands for 1
+	NetAreaFactor  float64      // net over gross area of a tension member, above 0 to 1; 0 stands for 1
+	Frequency      float64      // Hz, lowest natural frequency of the member
+	FrequencyFloor float64      // Hz, least natural frequency asked for; 0 means no check
 }
 
 // Deflection is the sag or rise of one span, or of the tip of one overhang.
@@ -116,12 +127,14 @@ type Basis interface {
 	// utilisations the first in the order of Explain governs. The figure lies
 	// between 0 and 1e9: an input that is not a number fails. It allocates nothing.
 	//
-	// More demand never lowers it, except where local slenderness governs under
-	// compression, whose limit may ease as the moment grows: sizing gives up
-	// candidates by this rule.
+	// At a given axial force more demand never lowers it, except where local
+	// slenderness governs under compression, whose limit may ease as the moment grows:
+	// sizing gives up candidates by this rule. More axial force never lowers it by
+	// more than 1 %, where it shifts the class of a section.
 	Utilisation(s *section.Section, m Material, d *Demand) (float64, string)
 	// Explain returns every check that applies, with the figures that Utilisation
-	// used, bit for bit.
+	// used, bit for bit. What the basis does not cover is a NotCovered check, which
+	// is never met and whose Note names the clause and the reason.
 	Explain(s *section.Section, m Material, d *Demand) []Check
 }
 

@@ -15,10 +15,12 @@ var (
 	ipe300 = section.Section{
 		Designation: "IPE 300", Shape: section.ISection, H: 0.3, B: 0.15, Tw: 0.0071, Tf: 0.0107, R: 0.015,
 		A: 53.81e-4, Iy: 8356e-8, Iz: 603.8e-8, Wely: 557.1e-6, J: 20.12e-8, Iw: 125.9e-9, Avz: 25.68e-4, Ry: 0.1246, Rz: 0.0335,
+		Making: section.HotRolled, Welz: 80.50e-6, Wply: 628.4e-6, Wplz: 125.2e-6, Avy: 32.1e-4,
 	}
 	ipe500 = section.Section{
 		Designation: "IPE 500", Shape: section.ISection, H: 0.5, B: 0.2, Tw: 0.0102, Tf: 0.016, R: 0.021,
 		A: 115.5e-4, Iy: 48200e-8, Iz: 2142e-8, Wely: 1928e-6, J: 89.29e-8, Iw: 1249e-9, Avz: 59.87e-4, Ry: 0.2043, Rz: 0.0431,
+		Making: section.HotRolled, Welz: 214.2e-6, Wply: 2194e-6, Wplz: 335.9e-6, Avy: 64e-4,
 	}
 	s235 = Material{Yield: 235e6, Ultimate: 360e6, E: 210e9, G: 81e9}
 	s355 = Material{Yield: 355e6, Ultimate: 470e6, E: 210e9, G: 81e9}

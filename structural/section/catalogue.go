@@ -16,7 +16,10 @@ var dataFiles embed.FS
 
 // catalogueFiles names the embedded files in the order of Families; families
 // without a file are made by dimensions only.
-var catalogueFiles = []string{"ipe.csv", "hea.csv", "heb.csv", "chs.csv", "pipe.csv", "shs.csv", "rhs.csv"}
+var catalogueFiles = []string{
+	"ipe.csv", "hea.csv", "heb.csv", "hem.csv", "upn.csv", "upe.csv", "w.csv", "c.csv", "l.csv",
+	"chs.csv", "pipe.csv", "shs.csv", "rhs.csv", "hss.csv", "hss-round.csv",
+}
 
 // Family is a series of sections that a member can be sized from, or a shape
 // that is given by its dimensions.
@@ -36,7 +39,10 @@ type catalogue struct {
 	hash     string
 }
 
-var load = sync.OnceValues(func() (*catalogue, error) {
+var load = sync.OnceValues(read)
+
+// read builds the catalogue from the embedded data.
+func read() (*catalogue, error) {
 	c := &catalogue{series: map[string][]Section{}, index: map[string]Section{}}
 	h := sha256.New()
 	for _, name := range catalogueFiles {
@@ -60,7 +66,7 @@ var load = sync.OnceValues(func() (*catalogue, error) {
 		}
 	}
 	return c, nil
-})
+}
 
 // add builds the sections of a table and files them under every spelling.
 func (c *catalogue) add(t table) error {

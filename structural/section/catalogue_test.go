@@ -8,6 +8,7 @@ import (
 	"errors"
 	"math"
 	"reflect"
+	"slices"
 	"strconv"
 	"strings"
 	"testing"
@@ -15,9 +16,10 @@ import (
 	"github.com/google/go-cmp/cmp"
 )
 
-// Rows a family, in the order of Families. The counts of the I series are those
-// of EN 10365 (IPE 80 to 600; HE 100 to 1000); the tubes' are our own choice of
-// sizes and only guard against a lost line.
+// Rows a family, in the order of Families. The counts of the I series and
+// channels are those of EN 10365 (IPE 80 to 600; HE 100 to 1000; UPN 50 to 400; UPE
+// 80 to 400); the others' are our own choice of sizes and only guard against a
+// lost line.
 func TestFamilies(t *testing.T) {
 	got := map[string]int{}
 	var order []string
@@ -27,22 +29,30 @@ func TestFamilies(t *testing.T) {
 		if f.Title == "" || f.Standard == "" {
 			t.Errorf("family %s: title %q, standard %q; want both", f.Name, f.Title, f.Standard)
 		}
-		if wantForm := !strings.Contains("IPE HEA HEB", f.Name); f.ByDimensions != wantForm {
+		if wantForm := !slices.Contains([]string{"IPE", "HEA", "HEB", "HEM", "UPN", "UPE", "W", "C"}, f.Name); f.ByDimensions != wantForm {
 			t.Errorf("family %s: ByDimensions = %v", f.Name, f.ByDimensions)
 		}
 	}
-	want := map[string]int{"IPE": 18, "HEA": 24, "HEB": 24, "CHS": 254, "PIPE": 172, "SHS": 142, "RHS": 155, "WELDED-I": 0, "ROUND": 0, "FLAT": 0}
+	want := map[string]int{"IPE": 18, "HEA": 24, "HEB": 24, "HEM": 24, "UPN": 18, "UPE": 14, "W": 276, "C": 29, "L": 91,
+		"CHS": 254, "PIPE": 172, "SHS": 142, "RHS": 155, "HSS": 367, "HSS-ROUND": 128,
+		"WELDED-I": 0, "WELDED-BOX": 0, "TEE": 0, "CHANNEL": 0, "ROUND": 0, "FLAT": 0}
 	if d := cmp.Diff(want, got); d != "" {
 		t.Errorf("sizes a family (-want +got):\n%s", d)
 	}
-	wantOrder := []string{"IPE", "HEA", "HEB", "CHS", "PIPE", "SHS", "RHS", "WELDED-I", "ROUND", "FLAT"}
+	wantOrder := []string{"IPE", "HEA", "HEB", "HEM", "UPN", "UPE", "W", "C", "L", "CHS", "PIPE", "SHS", "RHS", "HSS", "HSS-ROUND",
+		"WELDED-I", "WELDED-BOX", "TEE", "CHANNEL", "ROUND", "FLAT"}
 	if d := cmp.Diff(wantOrder, order); d != "" {
 		t.Errorf("order (-want +got):\n%s", d)
 	}
 }
 
-// The nominal mass of every row to the last digit printed, at 7850 kg/m³; round
-// tube by 0.0246615 (D − T) T of EN 10210-2 and ASME B36.10M.
+// massExceptions are rows whose nominal mass the standard prints otherwise than
+// the dimensions give it, within 0.35 %; all three recalled from memory.
+var massExceptions = []string{"L 130x130x12", "L 200x200x18", "L 200x100x15"}
+
+// The nominal mass of every row: to the last digit printed at 7850 kg/m³ (HSS at
+// 490 lb/ft³; round tube by 0.0246615 (D − T) T of EN 10210-2 and ASME B36.10M),
+// within 1.5 % for A6 and tapered shapes.
 func TestNominalMass(t *testing.T) {
 	for _, file := range catalogueFiles {
 		text, err := dataFiles.ReadFile("data/" + file)
@@ -55,33 +65,50 @@ func TestNominalMass(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		column := map[string]int{}
-		for i, name := range records[0] {
-			column[name] = i
-		}
+		column := slices.Index(records[0], "mass")
 		for _, record := range records[1:] {
-			printed := record[column["mass"]]
 			s, err := Find(record[0])
 			if err != nil {
 				t.Fatal(err)
 			}
-			mass := 7850 * s.A
-			if s.Shape == RoundTube {
-				mass = 0.0246615 * (s.H - s.Tw) * s.Tw * 1e6
-			}
-			_, decimals, _ := strings.Cut(printed, ".")
-			if got := strconv.FormatFloat(mass, 'f', len(decimals), 64); got != printed {
-				t.Errorf("%s: dimensions give %s kg/m (%.5f), the standard prints %s", record[0], got, mass, printed)
-			}
-			if want, _ := strconv.ParseFloat(printed, 64); s.Mass != want {
-				t.Errorf("%s: billed at %g kg/m, want the printed %s", record[0], s.Mass, printed)
-			}
+			checkMass(t, s, record[column])
 		}
 	}
 }
 
+func checkMass(t *testing.T, s Section, printed string) {
+	t.Helper()
+	want, err := strconv.ParseFloat(printed, 64)
+	if err != nil {
+		t.Fatal(err)
+	}
+	mass, billed := 7850*s.A, want
+	switch {
+	case strings.HasPrefix(s.Family, "HSS"):
+		mass, billed = s.A/(0.3048*0.3048)*490, want*1.48816394
+	case s.Family == "W" || s.Family == "C":
+		mass, billed = mass/1.48816394, want*1.48816394
+	case s.Shape == RoundTube:
+		mass = 0.0246615 * (s.H - s.Tw) * s.Tw * 1e6
+	}
+	if !(math.Abs(s.Mass/billed-1) < 1e-8) {
+		t.Errorf("%s: billed at %g kg/m, want the printed %s as %g", s.Designation, s.Mass, printed, billed)
+	}
+	within := map[string]float64{"W": 0.015, "C": 0.015, "UPN": 0.015}[s.Family]
+	if slices.Contains(massExceptions, s.Designation) {
+		within = 0.0035
+	}
+	_, decimals, _ := strings.Cut(printed, ".")
+	got := strconv.FormatFloat(mass, 'f', len(decimals), 64)
+	if within == 0 && got != printed || within > 0 && !(math.Abs(mass/want-1) <= within) {
+		t.Errorf("%s: dimensions give %s (%.5f), the standard prints %s", s.Designation, got, mass, printed)
+	}
+}
+
 // Masses that ASME B36.10M and EN 10210-2/10219-2 print, from memory; the rows of
-// the files were computed, so these are the outside check.
+// the files were computed, so these are the outside check. American lb/ft (HSS6x6x1/2
+// 35.24, HSS4x4x1/4 12.21, HSS8x4x3/8 27.48, HSS12x12x5/8 93.34, HSS6.625x0.280
+// 18.99) are turned into kg/m.
 func TestPrintedMasses(t *testing.T) {
 	for designation, want := range map[string]float64{
 		"NPS 1/2 STD": 1.27, "NPS 2 STD": 5.44, "NPS 2 XXS": 13.44, "NPS 4 STD": 16.08, "NPS 6 SCH 160": 67.57,
@@ -89,6 +116,8 @@ func TestPrintedMasses(t *testing.T) {
 		"NPS 16 SCH 80": 203.54, "NPS 18 STD": 105.17, "NPS 20 STD": 117.15, "NPS 24 SCH 40": 255.43, "NPS 24 SCH 160": 808.27,
 		"NPS 36 STD": 212.57, "CHS 21.3x2.6": 1.20, "CHS 114.3x5": 13.5, "CHS 168.3x6.3": 25.2, "CHS 219.1x8": 41.6,
 		"CHS 273x10": 64.9, "CHS 323.9x10": 77.4, "CHS 508x16": 194, "SHS 50x4": 5.45, "SHS 100x5": 14.4,
+		"HSS6x6x1/2": 52.44, "HSS4x4x1/4": 18.17, "HSS8x4x3/8": 40.89, "HSS12x12x5/8": 138.9, "HSS6.625x0.280": 28.26,
+		"W18x50": 74.41, "W14x90": 133.9, "C10x20": 29.76, "L 150x150x15": 33.8, "UPN 240": 33.2, "UPE 270": 35.2, "HEM 240": 157,
 		"SHS 200x10": 57.0, "RHS 120x80x5": 14.4, "RHS 200x100x8": 33.9, "RHS 300x200x10": 72.7,
 	} {
 		s, err := Find(designation)
@@ -96,7 +125,7 @@ func TestPrintedMasses(t *testing.T) {
 			t.Errorf("Find(%q): %v", designation, err)
 			continue
 		}
-		if s.Mass != want {
+		if !(math.Abs(s.Mass-want) <= 0.0005*want) {
 			t.Errorf("%s: %g kg/m, the standard prints %g", designation, s.Mass, want)
 		}
 	}
@@ -126,6 +155,11 @@ func TestEveryRow(t *testing.T) {
 	}
 }
 
+// mayBeZero are the properties that some shapes don't have; Y0, Z0 and Alpha may
+// be negative.
+var mayBeZero = []string{"Tf", "R", "Iw", "LowerB", "LowerTf", "ToeR", "Slope", "Nominal", "Y0", "Z0", "Wagner", "Iyz", "Alpha",
+	"FlangeSlender", "SpacingZ", "SpacingY", "ChordA", "ChordRv"}
+
 func checkRow(t *testing.T, f Family, s Section) {
 	t.Helper()
 	if s.Family != f.Name || s.Source == "" || s.Shape == 0 || s.Making == 0 {
@@ -138,7 +172,7 @@ func checkRow(t *testing.T, f Family, s Section) {
 	v := reflect.ValueOf(s)
 	for i := range v.NumField() {
 		name := v.Type().Field(i).Name
-		if v.Field(i).Kind() != reflect.Float64 || name == "Tf" || name == "R" || name == "Iw" {
+		if v.Field(i).Kind() != reflect.Float64 || slices.Contains(mayBeZero, name) {
 			continue
 		}
 		if x := v.Field(i).Float(); !(x > 0 && x < 1e6) {
@@ -148,7 +182,7 @@ func checkRow(t *testing.T, f Family, s Section) {
 	if !(s.Iw >= 0) || !(s.Tf >= 0) || !(s.R >= 0) {
 		t.Errorf("%s: Iw %g, Tf %g, R %g; want none below zero", s.Designation, s.Iw, s.Tf, s.R)
 	}
-	if !(s.Iy >= s.Iz) || !(s.Wply > s.Wely) || !(s.Wplz > s.Welz) || !(s.Avz+s.Avy < 2*s.A) {
+	if !(s.Iy >= s.Iz*(1-1e-9)) || !(s.Iu >= s.Iy*(1-1e-9)) || !(s.Iz >= s.Iv*(1-1e-9)) || !(s.Wply > s.Wely) || !(s.Wplz > s.Welz) || !(s.Avz+s.Avy < 2*s.A) {
 		t.Errorf("%s: y is not the strong axis, or a plastic modulus is under the elastic one", s.Designation)
 	}
 	if s.Thickness != math.Max(s.Tw, s.Tf) {
@@ -179,9 +213,9 @@ func TestSeriesIsTheCallersOwn(t *testing.T) {
 
 func TestSeriesRefuses(t *testing.T) {
 	for family, want := range map[string]string{
-		"":      `unknown section "": no such family; families with a catalogue are IPE, HEA, HEB, CHS, PIPE, SHS, RHS`,
-		"IPX":   `unknown section "IPX": no such family; families with a catalogue are IPE, HEA, HEB, CHS, PIPE, SHS, RHS`,
-		"round": `unknown section "round": family ROUND has no catalogue to size from; name one size, such as ROUND 50, or a family of IPE, HEA, HEB, CHS, PIPE, SHS, RHS`,
+		"":      `unknown section "": no such family; families with a catalogue are IPE, HEA, HEB, HEM, UPN, UPE, W, C, L, CHS, PIPE, SHS, RHS, HSS, HSS-ROUND`,
+		"IPX":   `unknown section "IPX": no such family; families with a catalogue are IPE, HEA, HEB, HEM, UPN, UPE, W, C, L, CHS, PIPE, SHS, RHS, HSS, HSS-ROUND`,
+		"round": `unknown section "round": family ROUND has no catalogue to size from; name one size, such as ROUND 50, or a family of IPE, HEA, HEB, HEM, UPN, UPE, W, C, L, CHS, PIPE, SHS, RHS, HSS, HSS-ROUND`,
 	} {
 		_, err := Series(family)
 		var unknown *UnknownError
@@ -193,7 +227,7 @@ func TestSeriesRefuses(t *testing.T) {
 
 func TestDataHash(t *testing.T) {
 	h := sha256.New()
-	for _, name := range []string{"ipe", "hea", "heb", "chs", "pipe", "shs", "rhs"} {
+	for _, name := range []string{"ipe", "hea", "heb", "hem", "upn", "upe", "w", "c", "l", "chs", "pipe", "shs", "rhs", "hss", "hss-round"} {
 		text, err := dataFiles.ReadFile("data/" + name + ".csv")
 		if err != nil {
 			t.Fatal(err)
@@ -229,7 +263,7 @@ func TestTableRefuses(t *testing.T) {
 	}
 	for name, c := range map[string]struct{ old, with, want string }{
 		"no shape":     {"# shape: I section\n", "", "shape"},
-		"unknown unit": {"mm kg/m", "in lb/ft", "units"},
+		"unknown unit": {"mm kg/m", "ft lb/ft", "units"},
 		"no rows":      {"IPE 300,300,150,7.1,10.7,15,42.2\n", "", "no rows"},
 		"not a number": {"10.7", "ten", "column tf"},
 		"NaN mass":     {"42.2", "NaN", "mass"},

@@ -20,9 +20,9 @@ var (
 	partScales = map[string]float64{"MM": 1e-3, "CM": 1e-2, "M": 1, "IN": 0.0254, "INCH": 0.0254}
 )
 
-// dimensions reads "508X25.4", "20INX1IN" or "20X1IN" in m. Without a unit mm is
-// meant; a unit after the last dimension alone holds for all.
-func dimensions(text string) ([]float64, error) {
+// dimensions reads "508X25.4", "20INX1IN" or "20X1IN" in m. Without a unit the
+// given one is meant; a unit after the last dimension alone holds for all.
+func dimensions(text, unit string) ([]float64, error) {
 	parts := strings.Split(text, "X")
 	values := make([]float64, len(parts))
 	units := make([]string, len(parts))
@@ -50,7 +50,7 @@ func dimensions(text string) ([]float64, error) {
 			u = last
 		}
 		if u == "" {
-			u = "MM"
+			u = unit
 		}
 		// Rounded to 0.1 µm so that the designation tells the exact size.
 		values[i] = math.Round(values[i]*partScales[u]*1e7) / 1e7

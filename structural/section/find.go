@@ -28,12 +28,19 @@ func (e *UnknownError) Error() string {
 //
 //   - catalogue: "IPE 300", "heb200", "HE 200 B", "CHS 168.3x6.3", "NPS 20 XS",
 //     "PIPE 1-1/2 in SCH 80";
+//   - American sizes: "W18x50", "C10x20", "HSS8x8x1/2", "HSS 6.625x0.280", and
+//     tees cut from a wide flange, "WT9x25";
 //   - by dimensions in mm, or in inches if they say so: "CHS 508x25.4", "RHS
 //     200x100x8", "SHS 100x5", "WELDED-I 500x200x10x16" (depth x width x web x
-//     flange), "ROUND 50", "FLAT 100x10", "PIPE 20 in x 1 in"; a size that the
-//     catalogue holds is that row. PIPE takes any wall, but only the outside
+//     flange), "WELDED-I 900x300x10x20x400x25" (lower width x lower flange last),
+//     "WELDED-BOX 600x400x12x20", "TEE 150x200x10x15", "CHANNEL 200x80x6x11",
+//     "L 110x90x9", "ROUND 50", "FLAT 100x10", "PIPE 20 in x 1 in"; HSS in inches
+//     unless mm are named; a size that the catalogue holds is that row. PIPE takes any wall, but only the outside
 //     diameters of ASME B36.10M;
-//   - a hollow section of the other standard: "SHS 100x5 EN 10210".
+//   - a hollow section of the other standard: "SHS 100x5 EN 10210";
+//   - a tee cut from an I section: "1/2 IPE 300";
+//   - chords built together: "2x UPN 200 @ 600", "4x L 100x100x10 @ 800x600" (mm
+//     between chord centroids: depth x width); see Chords.
 //
 // The designation of the answer finds the same section again. Anything else is
 // an *UnknownError.
@@ -45,6 +52,9 @@ func Find(designation string) (Section, error) {
 	k := key(designation)
 	if s, ok := c.index[k]; ok {
 		return s, nil
+	}
+	if s, ok, err := c.composed(designation, k); ok {
+		return s, err
 	}
 	unknown := &UnknownError{Found: designation}
 	family, rest, ok := splitFamily(k)
@@ -96,9 +106,12 @@ func (c *catalogue) size(family, rest string) (Section, error) {
 		standard = "EN " + rest[m[2]+2:m[3]] + "-2"
 		rest = rest[:m[0]]
 	}
-	d, err := dimensions(rest)
+	d, err := dimensions(rest, f.defaultUnit())
 	if err != nil {
-		return Section{}, fmt.Errorf("%w; write %s (%s in mm)", err, f.example, f.meaning)
+		return Section{}, fmt.Errorf("%w; write %s (%s)", err, f.example, f.described())
+	}
+	if f.family == "HSS" && len(d) == 2 {
+		f, _ = formOf("HSS-ROUND")
 	}
 	return c.byDimensions(f, d, standard)
 }
@@ -117,6 +130,9 @@ func (c *catalogue) byDimensions(f form, d []float64, standard string) (Section,
 			return Section{}, err
 		}
 		text = by(d)
+	}
+	if s, ok := c.american(f.family, d); ok {
+		return s, nil
 	}
 	designation := f.family + " " + text
 	held, inCatalogue := c.index[key(designation)]

@@ -58,12 +58,12 @@ func (c *catalogue) nearAll(k string) []string {
 
 // nearIn returns the sizes of a family whose numbers are nearest by ratio to
 // those in rest, within a factor of 2 over all; without numbers to compare, none.
-// Pipe that is given by diameter and wall is compared by these, not by its
-// nominal size.
+// What is given by dimensions is compared by these, not by its nominal size.
 func (c *catalogue) nearIn(family, rest string) []string {
 	want := numbers(rest)
-	d, err := dimensions(rest)
-	measured := err == nil && len(d) > 1
+	f, byDimensions := formOf(family)
+	d, err := dimensions(rest, f.defaultUnit())
+	measured := byDimensions && err == nil && len(d) > 1
 	if measured {
 		want = d
 	}
@@ -73,10 +73,8 @@ func (c *catalogue) nearIn(family, rest string) []string {
 	var list []candidate
 	for _, s := range c.series[family] {
 		have := numbers(key(s.Designation))
-		if measured && s.Shape == RoundTube {
-			have = []float64{s.H, s.Tw}
-		} else if measured {
-			scale(have, 1e-3)
+		if measured {
+			have = measures(s, len(want))
 		}
 		if off := ratio(have, want); off <= math.Ln2 {
 			list = append(list, candidate{s.Designation, off})
@@ -85,10 +83,15 @@ func (c *catalogue) nearIn(family, rest string) []string {
 	return closest(list)
 }
 
-func scale(list []float64, by float64) {
-	for i := range list {
-		list[i] *= by
+// measures returns n dimensions of a section in the order of its form.
+func measures(s Section, n int) []float64 {
+	switch {
+	case s.Shape == RoundTube || n == 2:
+		return []float64{s.H, s.Tw}
+	case s.Shape == RectangularTube || s.Shape == Angle:
+		return []float64{s.H, s.B, s.Tw}
 	}
+	return nil
 }
 
 // ratio is the sum of |ln(a/b)| over pairs; infinite if the counts differ or a

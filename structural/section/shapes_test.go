@@ -31,8 +31,8 @@ func readChecks(t *testing.T) []checkSection {
 	if err := json.Unmarshal(text, &file); err != nil {
 		t.Fatal(err)
 	}
-	if len(file.Sections) != 31 {
-		t.Fatalf("testdata holds %d sections, want 31", len(file.Sections))
+	if len(file.Sections) != 42 {
+		t.Fatalf("testdata holds %d sections, want 42", len(file.Sections))
 	}
 	return file.Sections
 }
@@ -45,10 +45,19 @@ func (c checkSection) build(t *testing.T) Section {
 	switch c.Kind {
 	case "I_rolled", "W", "plate_girder":
 		s, err = iSection(d("h"), d("b"), d("tw"), d("tf"), d("r"))
+		if c.Kind == "W" {
+			s.J = torsionI(s.H, s.B, s.Tw, s.Tf, s.R)
+		}
 	case "CHS":
 		s, err = roundTube(d("D"), d("t"))
 	case "RHS":
 		s, err = rectangularTube(d("h"), d("b"), d("t"), d("ro"), d("ri"))
+	case "UPE":
+		s, err = channel(channelSize{h: d("h"), b: d("b"), tw: d("tw"), tf: d("tf"), r: d("r")})
+	case "UPN":
+		s, err = channel(channelSize{d("h"), d("b"), d("tw"), d("tf"), d("r1"), d("r2"), c.Dims["slope"], d("tf_measured_at_y")})
+	case "angle":
+		s, err = angle(d("h"), d("b"), d("t"), d("r"), d("r2"))
 	case "solid_round":
 		s, err = solidRound(d("D"))
 	case "flat":
@@ -66,27 +75,21 @@ func properties(s Section) map[string]float64 {
 	return map[string]float64{
 		"A": s.A, "Iy": s.Iy, "Iz": s.Iz, "Wel_y": s.Wely, "Wel_z": s.Welz, "Wpl_y": s.Wply, "Wpl_z": s.Wplz,
 		"iy": s.Ry, "iz": s.Rz, "perimeter": s.Perimeter, "mass": 7850 * s.A,
+		"Iyz": s.Iyz, "Iu": s.Iu, "Iv": s.Iv, "iu": s.Ru, "iv": s.Rv, "y_c": s.Yc, "z_c": s.Zc,
+		"shear_y": -s.Y0, "shear_z": -s.Z0,
 		"J": s.J, "J_EN_annex": s.J, "Iw_thin_wall": s.Iw, "Iw": s.Iw,
 	}
 }
 
-// Values of testdata/sections.json: polygon integration for all but J and Iw,
-// these by the formula or model that the key names. J of open sections is a
-// handbook formula, so against the finite-element model it has a wider band: 4 %
-// is the formula's own error (its values are those that EN section tables print).
+// Values of testdata/sections.json: polygon integration for all but J, Iw and
+// the shear centre, these by the formula or model that the key names.
 func TestAgainstIndependentValues(t *testing.T) {
 	swapped := map[string]string{"Iy": "Iz", "Iz": "Iy", "Wel_y": "Wel_z", "Wel_z": "Wel_y", "Wpl_y": "Wpl_z", "Wpl_z": "Wpl_y", "iy": "iz", "iz": "iy"}
 	compared := 0
 	for _, c := range readChecks(t) {
 		got := properties(c.build(t))
 		for name, want := range c.Props {
-			tolerance := 1e-6
-			if name == "J" {
-				tolerance = map[string]float64{"CHS": 1e-9, "solid_round": 1e-9, "flat": 1e-3, "RHS": 0.02}[c.Kind]
-				if tolerance == 0 {
-					tolerance = 0.04
-				}
-			}
+			tolerance := modelTolerance(c, name)
 			// The model of the flat lies on its side.
 			if other, ok := swapped[name]; ok && c.Kind == "flat" {
 				name = other
@@ -97,9 +100,31 @@ func TestAgainstIndependentValues(t *testing.T) {
 			compared++
 		}
 	}
-	if compared < 350 {
-		t.Errorf("compared %d values; want at least 350", compared)
+	if compared < 550 {
+		t.Errorf("compared %d values; want at least 550", compared)
 	}
+}
+
+// modelTolerance is 1e-6 for what is exact. J, Iw and shear centre are formulas
+// against a finite-element model: the band is the formula's own error, which the
+// printed tables share. J of IPE 80 is the only one over 3 %: the EN table prints
+// 0.70 cm⁴ where the model has 0.673. Thin-walled shear centres and warping
+// constants lose most where the walls are thick (UPE 80, small angles).
+func modelTolerance(c checkSection, name string) float64 {
+	bands := map[string]map[string]float64{
+		"J": {"CHS": 1e-9, "solid_round": 1e-9, "flat": 1e-3, "RHS": 0.02, "I_rolled": 0.03, "W": 0.003, "plate_girder": 0.006,
+			"UPE": 0.005, "UPN": 0.025, "angle": 0.025},
+		"Iw":      {"UPE": 0.05, "UPN": 0.016, "angle": 0.10},
+		"shear_y": {"UPE": 0.06, "UPN": 0.06, "angle": 0.06},
+		"shear_z": {"angle": 0.06},
+	}
+	if c.ID == "IPE 80" && name == "J" {
+		return 0.04
+	}
+	if band, ok := bands[name][c.Kind]; ok {
+		return band
+	}
+	return 1e-6
 }
 
 // Table values of the EN standards as recalled, in the same file, within 0.5 %;
@@ -122,44 +147,6 @@ func TestAgainstPublishedTables(t *testing.T) {
 	}
 	if compared < 100 {
 		t.Errorf("compared %d values; want at least 100", compared)
-	}
-}
-
-// Catalogue rows against the tables of EN 10365, EN 10210-2 and EN 10219-2, all
-// from memory: cm², cm³, cm⁴, 10³ cm⁶, cm, m²/m; 0 is not compared.
-func TestCatalogueAgainstTables(t *testing.T) {
-	type table struct {
-		designation                                                              string
-		mass, a, iy, wely, wply, ry, avz, iz, welz, wplz, rz, j, iw, surfacePerM float64
-	}
-	for _, w := range []table{
-		{"IPE 300", 42.2, 53.81, 8356, 557.1, 628.4, 12.46, 25.68, 603.8, 80.50, 125.2, 3.35, 20.12, 125.9, 1.16},
-		{"HEA 200", 42.3, 53.83, 3692, 388.6, 429.5, 8.28, 18.08, 1336, 133.6, 203.8, 4.98, 20.98, 108.0, 1.136},
-		{"HEB 300", 117, 149.1, 25170, 1678, 1869, 12.99, 47.43, 8563, 570.9, 870.1, 7.58, 185.0, 1688, 1.732},
-		{"HEB 200", 61.3, 78.08, 5696, 569.6, 642.5, 8.54, 24.83, 2003, 200.3, 305.8, 5.07, 59.28, 171.1, 1.151},
-		{"IPE 600", 122, 156.0, 92080, 3069, 3512, 24.30, 83.78, 3387, 307.9, 485.6, 4.66, 165.4, 2846, 2.015},
-		{"CHS 168.3x6.3", 25.2, 32.1, 1053, 125, 165, 5.73, 0, 1053, 125, 165, 5.73, 2107, 0, 0.529},
-		{"CHS 508x16", 194, 247, 74909, 2949, 3874, 17.4, 0, 74909, 2949, 3874, 17.4, 149818, 0, 1.60},
-		{"SHS 100x5", 14.4, 18.4, 271, 54.2, 64.6, 3.84, 0, 271, 54.2, 64.6, 3.84, 441, 0, 0.383},
-	} {
-		s, err := Find(w.designation)
-		if err != nil {
-			t.Errorf("Find(%q): %v", w.designation, err)
-			continue
-		}
-		for _, c := range []struct {
-			name      string
-			got, want float64
-		}{
-			{"mass", s.Mass, w.mass}, {"A", s.A * 1e4, w.a}, {"Iy", s.Iy * 1e8, w.iy}, {"Wely", s.Wely * 1e6, w.wely},
-			{"Wply", s.Wply * 1e6, w.wply}, {"Ry", s.Ry * 1e2, w.ry}, {"Avz", s.Avz * 1e4, w.avz}, {"Iz", s.Iz * 1e8, w.iz},
-			{"Welz", s.Welz * 1e6, w.welz}, {"Wplz", s.Wplz * 1e6, w.wplz}, {"Rz", s.Rz * 1e2, w.rz}, {"J", s.J * 1e8, w.j},
-			{"Iw", s.Iw * 1e9, w.iw}, {"Perimeter", s.Perimeter, w.surfacePerM},
-		} {
-			if c.want != 0 && !(math.Abs(c.got/c.want-1) <= 0.005) {
-				t.Errorf("%s: %s = %.5g, table has %.5g", w.designation, c.name, c.got, c.want)
-			}
-		}
 	}
 }
 

@@ -14,7 +14,7 @@ var (
 	bareSchedule  = regexp.MustCompile(`^((?:PIPE\s+)?NPS\s*[\d+/.]+)\s+(\d+)$`)
 	looseDot      = regexp.MustCompile(`\.([^\d]|$)`)
 	separators    = strings.NewReplacer(" ", "", "-", "", "_", "")
-	europeanWide  = regexp.MustCompile(`^HE(\d+)([AB])$`)
+	europeanWide  = regexp.MustCompile(`^HE(\d+)([ABM])$`)
 	pipeSchedule  = regexp.MustCompile(`^(\d+(?:\+\d+/\d+|\.\d+|/\d+)?)(?:IN(?:CH)?)?(?:(?:SCHEDULE|SCH)?(STD|XXS|XXH|XS|XH)|(?:SCHEDULE|SCH|S)\.?(\d+))$`)
 	namedStandard = regexp.MustCompile(`(?:TO)?(?:BS|DIN)?(EN10210|EN10219)2?$`)
 )
@@ -33,16 +33,27 @@ func key(text string) string {
 // words are the spellings of a family before its size, as keys; the first is
 // the key of its name.
 var words = map[string][]string{
-	"IPE":      {"IPE"},
-	"HEA":      {"HEA"},
-	"HEB":      {"HEB"},
-	"CHS":      {"CHS", "ROUNDTUBE", "CIRCULARHOLLOWSECTION"},
-	"PIPE":     {"PIPE", "NPS", "PIPENPS", "STEELPIPE"},
-	"SHS":      {"SHS", "SQUARETUBE", "SQUAREHOLLOWSECTION"},
-	"RHS":      {"RHS", "RECTANGULARTUBE", "RECTANGULARHOLLOWSECTION"},
-	"WELDED-I": {"WELDEDI", "WI", "WELDEDIBEAM", "PLATEGIRDER"},
-	"ROUND":    {"ROUND", "ROUNDBAR", "SOLIDROUND", "RD"},
-	"FLAT":     {"FLAT", "FLATBAR", "FL"},
+	"IPE":        {"IPE"},
+	"HEA":        {"HEA"},
+	"HEB":        {"HEB"},
+	"HEM":        {"HEM"},
+	"UPN":        {"UPN", "UNP"},
+	"UPE":        {"UPE"},
+	"W":          {"W"},
+	"C":          {"C"},
+	"L":          {"L", "ANGLE"},
+	"CHS":        {"CHS", "ROUNDTUBE", "CIRCULARHOLLOWSECTION"},
+	"PIPE":       {"PIPE", "NPS", "PIPENPS", "STEELPIPE"},
+	"SHS":        {"SHS", "SQUARETUBE", "SQUAREHOLLOWSECTION"},
+	"RHS":        {"RHS", "RECTANGULARTUBE", "RECTANGULARHOLLOWSECTION"},
+	"HSS":        {"HSS", "RECTANGULARHSS", "SQUAREHSS"},
+	"WELDED-I":   {"WELDEDI", "WI", "WELDEDIBEAM", "PLATEGIRDER", "PG"},
+	"CHANNEL":    {"CHANNEL"},
+	"TEE":        {"TEE"},
+	"HSS-ROUND":  {"HSSROUND", "ROUNDHSS"},
+	"WELDED-BOX": {"WELDEDBOX", "BOX", "BOXGIRDER"},
+	"ROUND":      {"ROUND", "ROUNDBAR", "SOLIDROUND", "RD"},
+	"FLAT":       {"FLAT", "FLATBAR", "FL"},
 }
 
 // IsFamily says whether text names a family, in any trade spelling, and
@@ -58,7 +69,8 @@ func IsFamily(text string) (string, bool) {
 }
 
 // splitFamily parts a key into the family that it begins with and the rest.
-// The longest word wins: ROUNDTUBE is not a ROUND.
+// The longest word wins: ROUNDTUBE is not a ROUND. A word of one or two letters needs
+// a number after it: WIDGET is not a W.
 func splitFamily(k string) (family, rest string, ok bool) {
 	if m := europeanWide.FindStringSubmatch(k); m != nil {
 		return "HE" + m[2], m[1], true
@@ -69,12 +81,20 @@ func splitFamily(k string) (family, rest string, ok bool) {
 	longest := 0
 	for name, spellings := range words {
 		for _, w := range spellings {
-			if after, found := strings.CutPrefix(k, w); found && len(w) > longest {
+			after, found := strings.CutPrefix(k, w)
+			if len(w) <= 2 && !startsNumber(after) {
+				continue
+			}
+			if found && len(w) > longest {
 				family, rest, longest = name, after, len(w)
 			}
 		}
 	}
 	return family, rest, longest > 0
+}
+
+func startsNumber(text string) bool {
+	return text == "" || text[0] == '.' || text[0] >= '0' && text[0] <= '9'
 }
 
 // decimalNPS are the nominal pipe sizes that are written as fractions.

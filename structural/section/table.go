@@ -11,8 +11,9 @@ import (
 // table is one catalogue file: "# name: value" lines, then CSV with a header.
 //
 //	# family, title, standard, source, making, shape: of all rows
-//	# units: "mm kg/m"
+//	# units: "mm kg/m" or "in lb/ft"; the column slope has none
 //	# corners: of rectangular tubes, the standard whose corner radii hold
+//	# torsion: "El Darwish" where J of I sections is by that formula
 //	designation, the shape's dimensions, mass[, aliases parted by |]
 //
 // A new shape needs a builder; a new unit needs a line in scales.
@@ -30,8 +31,21 @@ type row struct {
 
 // scales turn file units into m and kg/m.
 var scales = map[string][2]float64{
-	"mm kg/m": {1e-3, 1},
+	"mm kg/m":  {1e-3, 1},
+	"in lb/ft": {inch, poundPerFoot},
 }
+
+// Exact by the international yard and pound agreement of 1959.
+const (
+	inch         = 0.0254                 // m
+	poundPerFoot = 0.45359237 / 12 / inch // kg/m
+)
+
+// Values of the head lines corners and torsion.
+const (
+	americanCorners = "2t"
+	elDarwish       = "El Darwish"
+)
 
 // builders turn a row's dimensions, in m, into a section.
 var builders = map[string]struct {
@@ -40,6 +54,18 @@ var builders = map[string]struct {
 }{
 	"I section": {[]string{"h", "b", "tw", "tf", "r"}, func(_ table, v map[string]float64) (Section, error) {
 		return iSection(v["h"], v["b"], v["tw"], v["tf"], v["r"])
+	}},
+	"I section by k": {[]string{"h", "b", "tw", "tf", "k"}, func(_ table, v map[string]float64) (Section, error) {
+		return iSection(v["h"], v["b"], v["tw"], v["tf"], v["k"]-v["tf"])
+	}},
+	"channel": {[]string{"h", "b", "tw", "tf", "r"}, func(_ table, v map[string]float64) (Section, error) {
+		return channel(channelSize{h: v["h"], b: v["b"], tw: v["tw"], tf: v["tf"], r: v["r"]})
+	}},
+	"tapered channel": {[]string{"h", "b", "tw", "tf", "r", "toe", "slope", "at"}, func(_ table, v map[string]float64) (Section, error) {
+		return channel(channelSize{v["h"], v["b"], v["tw"], v["tf"], v["r"], v["toe"], v["slope"], v["at"]})
+	}},
+	"angle": {[]string{"h", "b", "t", "r", "toe"}, func(_ table, v map[string]float64) (Section, error) {
+		return angle(v["h"], v["b"], v["t"], v["r"], v["toe"])
 	}},
 	"round tube": {[]string{"d", "t"}, func(_ table, v map[string]float64) (Section, error) {
 		return roundTube(v["d"], v["t"])
@@ -57,11 +83,14 @@ var makings = map[string]Making{"hot rolled": HotRolled, "cold formed": ColdForm
 
 // corners returns the outer and inner corner radius of a rectangular tube of
 // wall t for the calculation of properties: EN 10219-2 annex B by wall, EN
-// 10210-2 annex A 1.5t and 1.0t.
+// 10210-2 annex A 1.5t and 1.0t; 2t is the rule behind the American HSS tables
+// (2t and 1t of the wall that they reckon with).
 func corners(standard string, t float64) (outer, inner float64, err error) {
 	switch standard {
 	case "EN 10210-2":
 		return 1.5 * t, t, nil
+	case americanCorners:
+		return 2 * t, t, nil
 	case "EN 10219-2":
 		// Walls come through a decimal text, so 6 mm may be a hair above 0.006.
 		switch {
@@ -72,7 +101,7 @@ func corners(standard string, t float64) (outer, inner float64, err error) {
 		}
 		return 3 * t, 2 * t, nil
 	}
-	return 0, 0, fmt.Errorf("corner radii by %q; want EN 10219-2 or EN 10210-2", standard)
+	return 0, 0, fmt.Errorf("corner radii by %q; want EN 10219-2, EN 10210-2 or 2t", standard)
 }
 
 func readTable(text []byte) (table, error) {
@@ -92,7 +121,7 @@ func readTable(text []byte) (table, error) {
 	}
 	scale, ok := scales[t.head["units"]]
 	if !ok {
-		return table{}, fmt.Errorf("units %q; want mm kg/m", t.head["units"])
+		return table{}, fmt.Errorf("units %q; want mm kg/m or in lb/ft", t.head["units"])
 	}
 	r := csv.NewReader(bytes.NewReader(text))
 	r.Comment = '#'
@@ -128,9 +157,13 @@ func readRow(header, record []string, scale [2]float64) (row, error) {
 			if err != nil {
 				return row{}, fmt.Errorf("column %s: %q is not a number", name, record[i])
 			}
-			r.value[name] = x * scale[0]
-			if name == "mass" {
+			switch name {
+			case "mass":
 				r.mass = x * scale[1]
+			case "slope":
+				r.value[name] = x
+			default:
+				r.value[name] = x * scale[0]
 			}
 		}
 	}
@@ -154,6 +187,9 @@ func (t table) section(r row) (Section, error) {
 	s, err := b.build(t, r.value)
 	if err != nil {
 		return Section{}, fmt.Errorf("row %s: %w", r.designation, err)
+	}
+	if t.head["torsion"] == elDarwish {
+		s.J = torsionI(s.H, s.B, s.Tw, s.Tf, s.R)
 	}
 	s.Designation, s.Family, s.Source, s.Mass = r.designation, t.head["family"], t.head["source"], r.mass
 	if s.Making, ok = makings[t.head["making"]]; !ok {
