@@ -52,8 +52,8 @@ func ParseToken(text string) (publicID string, sha256 []byte, err error) {
 	if !ok || len(id) != 20 {
 		return "", nil, ErrToken
 	}
-	secret, err := base64.RawURLEncoding.DecodeString(encoded)
-	if err != nil || len(secret) != 32 {
+	secret, ok := decode(encoded)
+	if !ok {
 		return "", nil, ErrToken
 	}
 	return id, Hash(secret), nil
@@ -61,11 +61,21 @@ func ParseToken(text string) (publicID string, sha256 []byte, err error) {
 
 // ParseSession returns the hash of a session's secret.
 func ParseSession(text string) ([]byte, error) {
-	secret, err := base64.RawURLEncoding.DecodeString(text)
-	if err != nil || len(secret) != 32 {
+	secret, ok := decode(text)
+	if !ok {
 		return nil, errors.New("not a session")
 	}
 	return Hash(secret), nil
+}
+
+// decode reads 256 bits; the length is checked first because the decoder passes
+// over line breaks.
+func decode(text string) ([]byte, bool) {
+	if len(text) != base64.RawURLEncoding.EncodedLen(32) {
+		return nil, false
+	}
+	secret, err := base64.RawURLEncoding.Strict().DecodeString(text)
+	return secret, err == nil && len(secret) == 32
 }
 
 // Hash is SHA-256: a secret of 256 random bits needs no slower one.

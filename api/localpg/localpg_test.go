@@ -36,14 +36,14 @@ func TestMain(m *testing.M) {
 func child(dir string) {
 	s, err := Start(context.Background(), Config{Dir: dir})
 	if err != nil {
-		fmt.Println("failed:", err)
+		fmt.Fprintln(os.Stdout, "failed:", err)
 		os.Exit(1)
 	}
 	conn, err := pgx.Connect(context.Background(), s.AdminURL("postgres"))
 	if err == nil {
 		_, err = conn.Exec(context.Background(), "create table kept (n int); insert into kept values (42)")
 	}
-	fmt.Println("ready", s.current().os.Pid, err)
+	fmt.Fprintln(os.Stdout, "ready", s.current().os.Pid, err)
 	time.Sleep(time.Minute)
 	os.Exit(2)
 }

@@ -20,7 +20,11 @@ func (n Number) MarshalJSON() ([]byte, error) {
 	if math.IsNaN(x) || math.IsInf(x, 0) {
 		return nil, fmt.Errorf("a figure of the estimate is %v", x)
 	}
-	return strconv.AppendFloat(nil, n.Rounded(), 'g', -1, 64), nil
+	r := n.Rounded()
+	if a := math.Abs(r); a != 0 && (a < 1e-6 || a >= 1e21) {
+		return strconv.AppendFloat(nil, r, 'e', -1, 64), nil
+	}
+	return strconv.AppendFloat(nil, r, 'f', -1, 64), nil
 }
 
 // Rounded returns the value as it is printed: 12 significant digits, and zero

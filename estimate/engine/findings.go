@@ -64,32 +64,32 @@ func memberFindings(s sizedMember) []document.Finding {
 // sizing itself uses the exact envelope, so the finding warns against the
 // shortcut, not against the size.
 func unsafeShortcut(mark string, ratios []beam.Ratio) (document.Finding, bool) {
-	var worst beam.Ratio
-	var names []string
-	for _, r := range ratios {
-		if !r.Unsafe {
+	var worst *beam.Ratio
+	var low, missing []string
+	for i, r := range ratios {
+		switch {
+		case !r.Unsafe:
 			continue
+		case r.Split == 0:
+			missing = append(missing, r.Effect+" of "+r.Where)
+			continue
+		case worst == nil || r.Ratio < worst.Ratio:
+			worst = &ratios[i]
 		}
-		names = append(names, fmt.Sprintf("%s of %s %s", r.Effect, r.Where, twoPlaces(r.Ratio)))
-		if len(names) == 1 || r.Ratio < worst.Ratio {
-			worst = r
-		}
+		low = append(low, fmt.Sprintf("%s of %s %.2f", r.Effect, r.Where, r.Ratio))
 	}
-	if len(names) == 0 {
+	if len(low)+len(missing) == 0 {
 		return document.Finding{}, false
 	}
-	return document.Finding{Severity: document.Unsafe, Code: "unsafe-shortcut", Subject: mark,
-		Message: fmt.Sprintf("The split method would be unsafe here: it gives %s of the exact %s (%s). Ratios below 1: %s. The size and the reactions shown come from the exact envelope.",
-			twoPlaces(worst.Ratio), worst.Effect, worst.Where, strings.Join(names, "; "))}, true
-}
-
-// twoPlaces prints a ratio without a negative zero.
-func twoPlaces(x float64) string {
-	s := fmt.Sprintf("%.2f", x)
-	if s == "-0.00" {
-		return "0.00"
+	var parts []string
+	if worst != nil {
+		parts = append(parts, fmt.Sprintf("It gives %.2f of the exact %s of %s; ratios below 1: %s.", worst.Ratio, worst.Effect, worst.Where, strings.Join(low, "; ")))
 	}
-	return s
+	if len(missing) > 0 {
+		parts = append(parts, "It leaves out: "+strings.Join(missing, "; ")+".")
+	}
+	return document.Finding{Severity: document.Unsafe, Code: "unsafe-shortcut", Subject: mark,
+		Message: "The split method would be unsafe here. " + strings.Join(parts, " ") + " The size and the reactions shown come from the exact envelope."}, true
 }
 
 func uplift(s sizedMember) (document.Finding, bool) {

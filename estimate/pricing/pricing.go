@@ -9,6 +9,7 @@ package pricing
 
 import (
 	"fmt"
+	"strconv"
 
 	"spanwright/estimate/assumption"
 	"spanwright/estimate/money"
@@ -158,13 +159,18 @@ func priceLine(item takeoff.Item, category string, r Rates) (Line, error) {
 // ratePlaces is the number of decimals that a rate, ratio or multiplier may carry.
 const ratePlaces = 4
 
-// exact turns a rate or multiplier into a decimal through its shortest text.
+// exact turns a rate or multiplier into a decimal through its shortest text of
+// twelve digits, which takes off the noise of binary arithmetic.
 func exact(x float64) (money.Decimal, error) {
-	d, err := money.FromFloat(x, ratePlaces)
+	short, err := strconv.ParseFloat(strconv.FormatFloat(x, 'g', 12, 64), 64)
 	if err != nil {
 		return money.Decimal{}, err
 	}
-	if full, err := money.FromFloat(x, 15); err != nil || full.Cmp(d) != 0 {
+	d, err := money.Parse(strconv.FormatFloat(short, 'f', -1, 64))
+	if err != nil {
+		return money.Decimal{}, err
+	}
+	if !d.Round(ratePlaces).Equal(d) {
 		return money.Decimal{}, fmt.Errorf("%v has more than %d decimals; round it", x, ratePlaces)
 	}
 	return d, nil

@@ -3,6 +3,7 @@ package schedule
 import (
 	"context"
 	"encoding/json"
+	"errors"
 	"fmt"
 	"slices"
 	"strconv"
@@ -221,7 +222,8 @@ func TestAnyCellContent(t *testing.T) {
 			if err == nil && len(s.Members) == 0 {
 				rt.Fatal("neither members nor faults")
 			}
-			if f, ok := err.(sheet.Faults); ok {
+			var f sheet.Faults
+			if errors.As(err, &f) {
 				for _, one := range f {
 					if one.Problem == "" || one.Remedy == "" {
 						rt.Fatalf("a fault without problem or remedy: %+v", one)

@@ -1,6 +1,7 @@
 package schedule
 
 import (
+	"errors"
 	"strings"
 
 	"spanwright/structural/material"
@@ -124,7 +125,8 @@ func (m memory[K, V]) find(key K, look func(K) V) V {
 // unknownSection turns the refusal of a section name into a complaint.
 func unknownSection(found string, err error) *complaint {
 	p := &complaint{found: shorten(found), problem: err.Error(), remedy: "a family such as IPE or a section such as IPE 300; for grating, rails and the like write not sized in Support"}
-	if e, ok := err.(*section.UnknownError); ok {
+	var e *section.UnknownError
+	if errors.As(err, &e) {
 		p.problem = "names no section: " + e.Why
 		p.remedy = didYouMean(e.Near, p.remedy)
 	}
@@ -133,7 +135,8 @@ func unknownSection(found string, err error) *complaint {
 
 func unknownGrade(found string, err error) *complaint {
 	p := &complaint{found: shorten(found), problem: err.Error(), remedy: "one of " + strings.Join(material.Names(), ", ")}
-	if e, ok := err.(*material.UnknownError); ok {
+	var e *material.UnknownError
+	if errors.As(err, &e) {
 		p.problem = "is no steel grade held here"
 		p.remedy = didYouMean(e.Near, p.remedy)
 	}

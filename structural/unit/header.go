@@ -1,6 +1,9 @@
 package unit
 
-import "strings"
+import (
+	"errors"
+	"strings"
+)
 
 // Header parts a column head into name and unit: "Length (m)", "Permanent load
 // [kN/m]", "Length, ft". Spaces are tidied. The bool is false where the head names
@@ -24,7 +27,8 @@ func Header(text string) (string, Unit, bool, error) {
 		return text, Unit{}, false, nil
 	}
 	u, err := Lookup(symbol)
-	if e, ok := err.(*Error); ok && e.Problem == unknown {
+	var e *Error
+	if errors.As(err, &e) && e.Problem == unknown {
 		return text, Unit{}, false, nil
 	}
 	return name, u, err == nil, err

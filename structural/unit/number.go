@@ -181,9 +181,9 @@ func Round(x float64, digits int) float64 {
 // increment adds one to the last digit of an unsigned decimal text.
 func increment(text []byte) []byte {
 	for i := len(text) - 1; i >= 0; i-- {
-		switch {
-		case text[i] == '.':
-		case text[i] == '9':
+		switch text[i] {
+		case '.':
+		case '9':
 			text[i] = '0'
 		default:
 			text[i]++

@@ -1,6 +1,7 @@
 package unit
 
 import (
+	"errors"
 	"math"
 	"strings"
 	"unicode/utf8"
@@ -83,7 +84,8 @@ func (d Dimension) fractions(u Unit) bool {
 func ownUnit(text, symbol string, d Dimension, implied Unit) (Unit, error) {
 	if symbol != "" {
 		u, err := Lookup(symbol)
-		if e, ok := err.(*Error); ok {
+		var e *Error
+		if errors.As(err, &e) {
 			problem := e.Problem
 			if e.Problem == unknown {
 				problem, e.Accepted = "has an unknown unit", wanted(d, pointNotation)

@@ -1,0 +1,269 @@
+package service
+
+import (
+	"context"
+	"errors"
+	"fmt"
+
+	"github.com/google/uuid"
+
+	"spanwright/api/auth"
+	"spanwright/estimate/document"
+	"spanwright/estimate/engine"
+	"spanwright/estimate/job"
+	"spanwright/estimate/money"
+	"spanwright/estimate/ratebook"
+	"spanwright/estimate/schedule"
+)
+
+// basis is what an estimate is made from, read in one transaction.
+type basis struct {
+	project     Project
+	scheme      Scheme
+	revision    Revision
+	book        ratebook.Book
+	bookID      uuid.UUID
+	bookNumber  int
+	multipliers []ratebook.Multiplier
+}
+
+// CreateEstimate computes and stores an estimate of a scheme: NotFound, Invalid
+// (members that cannot be sized, by mark), Busy.
+func (s *Service) CreateEstimate(ctx context.Context, a Actor, scheme uuid.UUID, n NewEstimate, key Idempotency) (Estimate, error) {
+	if err := s.allow(a, auth.MakeEstimates); err != nil {
+		return Estimate{}, err
+	}
+	operation := "create estimate " + scheme.String()
+	var b basis
+	var earlier *Estimate
+	err := s.store.InTenant(ctx, a.Organisation, func(tx Tx) error {
+		m, found, err := s.remembered(ctx, tx, a, operation, key)
+		if err != nil {
+			return err
+		}
+		if found {
+			e, err := tx.Estimate(ctx, m.Resource)
+			earlier = &e
+			return err
+		}
+		b, err = s.basis(ctx, tx, scheme, n)
+		return err
+	})
+	if err != nil || earlier != nil {
+		if earlier == nil {
+			earlier = &Estimate{}
+		}
+		return *earlier, err
+	}
+	sampling, err := n.sampling(s.limits.Trials)
+	if err != nil {
+		return Estimate{}, err
+	}
+	sch, err := s.readPosting(ctx, b.revision.posting(), b.project.Name, b.scheme.Name)
+	if err != nil {
+		return Estimate{}, err
+	}
+	made, err := s.compute(ctx, a, b, sch, sampling)
+	if err != nil {
+		return Estimate{}, err
+	}
+	return once(ctx, s, a, operation, key, made.head.ID,
+		func(tx Tx, id uuid.UUID) (Estimate, error) { return tx.Estimate(ctx, id) },
+		func(tx Tx) (Estimate, error) { return made.head, s.insertEstimate(ctx, tx, a, made) })
+}
+
+func (s *Service) basis(ctx context.Context, tx Tx, scheme uuid.UUID, n NewEstimate) (basis, error) {
+	var b basis
+	var err error
+	if b.scheme, err = tx.Scheme(ctx, scheme); err != nil {
+		return b, err
+	}
+	if b.project, err = tx.Project(ctx, b.scheme.Project); err != nil {
+		return b, err
+	}
+	if n.Revision == nil {
+		b.revision, err = tx.NewestRevision(ctx, scheme)
+	} else {
+		b.revision, err = tx.Revision(ctx, *n.Revision)
+	}
+	if err != nil {
+		return b, err
+	}
+	if b.revision.Scheme != scheme {
+		return b, invalid("/schedule_revision_id", b.revision.ID.String(), "belongs to another scheme", "a revision of this scheme")
+	}
+	if err := s.rates(ctx, tx, &b, n.RateBook); err != nil {
+		return b, err
+	}
+	return b, nil
+}
+
+// rates fills in the rate book and the multipliers in force.
+func (s *Service) rates(ctx context.Context, tx Tx, b *basis, book *uuid.UUID) error {
+	var stored RateBook
+	var err error
+	if book == nil {
+		stored, err = tx.RateBookByName(ctx, StartingBook)
+	} else {
+		stored, err = tx.RateBook(ctx, *book)
+	}
+	if err != nil {
+		return err
+	}
+	b.book, b.bookID, b.bookNumber = stored.Content, stored.ID, stored.Number
+	ms, err := tx.MultipliersInForce(ctx, b.project.ID, b.scheme.ID)
+	if err != nil {
+		return err
+	}
+	for _, m := range ms {
+		b.multipliers = append(b.multipliers, m.inForce())
+	}
+	return nil
+}
+
+func (n NewEstimate) sampling(limit int) (job.Sampling, error) {
+	sampling := job.DefaultSampling()
+	if n.Seed != nil {
+		sampling.Seed = *n.Seed
+	}
+	if n.Replicates != 0 {
+		sampling.Replicates = n.Replicates
+	}
+	if n.Trials != 0 {
+		sampling.Trials = n.Trials
+	}
+	if err := sampling.Validate(); err != nil {
+		return sampling, invalid("/trials", fmt.Sprintf("%d × %d", sampling.Replicates, sampling.Trials), err.Error(), "32 or more replicates of 64 or more trials")
+	}
+	if sampling.Replicates > limit/sampling.Trials {
+		return sampling, &Error{Kind: TooLarge, Message: fmt.Sprintf("%d × %d trials are over the limit of %d", sampling.Replicates, sampling.Trials, limit)}
+	}
+	return sampling, nil
+}
+
+// computed is an estimate ready to be stored.
+type computed struct {
+	head          Estimate
+	job, document []byte
+}
+
+// compute runs the engine; no transaction is open meanwhile.
+func (s *Service) compute(ctx context.Context, a Actor, b basis, sch schedule.Schedule, sampling job.Sampling) (computed, error) {
+	select {
+	case s.heavy <- struct{}{}:
+		defer func() { <-s.heavy }()
+	default:
+		return computed{}, &Error{Kind: Busy, Message: "as many estimates as this server allows are being computed; try again in a moment"}
+	}
+	j, err := job.Freeze(sch, job.Source{Name: b.revision.SourceName, SHA256: b.revision.SourceSHA256}, b.book, b.multipliers, sampling)
+	if err != nil {
+		return computed{}, &Error{Kind: Invalid, Message: err.Error(), Faults: []Fault{{Found: "the job", Problem: err.Error(), Remedy: "correct the job's settings or choose another rate book"}}}
+	}
+	j.EngineVersion, j.Data, j.Build = document.EngineVersion, engine.Data(), s.build
+	doc, err := s.run(ctx, j, nil)
+	if err != nil {
+		return computed{}, fromEngine(err, sch)
+	}
+	return s.seal(a, b, j, doc)
+}
+
+// fromEngine turns members that cannot be sized into faults by row.
+func fromEngine(err error, sch schedule.Schedule) error {
+	var f *engine.FaultsError
+	if !errors.As(err, &f) {
+		return err
+	}
+	rows := map[string]schedule.Member{}
+	for _, m := range sch.Members {
+		rows[m.Mark] = m
+	}
+	out := &Error{Kind: Invalid, Message: "members cannot be sized; nothing was stored"}
+	for _, x := range f.Faults {
+		at := rows[x.Mark].Row
+		out.Faults = append(out.Faults, Fault{Sheet: at.Sheet, Row: at.Row, Mark: x.Mark, Found: "member " + x.Mark, Problem: x.Problem, Remedy: x.Remedy})
+	}
+	return out
+}
+
+// seal writes the canonical bytes and the head that lists and pages read.
+func (s *Service) seal(a Actor, b basis, j job.Job, d document.Document) (computed, error) {
+	var c computed
+	var jobSum, docSum string
+	var err error
+	if c.job, jobSum, err = j.Canonical(); err != nil {
+		return c, err
+	}
+	if c.document, docSum, err = d.Canonical(); err != nil {
+		return c, err
+	}
+	id, err := s.newID()
+	if err != nil {
+		return c, err
+	}
+	c.head, err = Head(d)
+	if err != nil {
+		return c, err
+	}
+	h := &c.head
+	h.ID, h.Scheme, h.Revision, h.RateBook, h.RateBookNumber = id, b.scheme.ID, b.revision.ID, b.bookID, b.bookNumber
+	h.JobSHA256, h.DocumentSHA256, h.CreatedAt, h.CreatedBy, h.Author = jobSum, docSum, s.now(), a.Name, a.Token
+	return c, nil
+}
+
+// Head returns the query columns of a document: the one projection of it, from
+// which the table can be rebuilt.
+func Head(d document.Document) (Estimate, error) {
+	currency, err := money.FindCurrency(d.Job.Currency)
+	if err != nil {
+		return Estimate{}, err
+	}
+	e := Estimate{
+		EngineVersion: d.EngineVersion, Currency: d.Job.Currency, Base: d.Totals.Base, Confidence: float64(d.Totals.Confidence),
+		Contingency: d.Totals.Contingency, Net: d.Totals.Net, Delivered: d.Totals.Delivered, Purchased: d.Totals.Purchased,
+		Members: d.Totals.Members, Unsafe: d.Totals.Unsafe,
+	}
+	if e.Mean, err = money.FromFloat(d.Range.Mean.Rounded(), currency.MinorDigits); err != nil {
+		return e, err
+	}
+	into := map[document.Number]*money.Decimal{0.1: &e.P10, 0.5: &e.P50, 0.8: &e.P80, 0.9: &e.P90}
+	for _, p := range d.Range.Percentiles {
+		if to, ok := into[p.P]; ok {
+			if *to, err = money.FromFloat(p.Value.Rounded(), currency.MinorDigits); err != nil {
+				return e, err
+			}
+		}
+	}
+	return e, nil
+}
+
+func (s *Service) insertEstimate(ctx context.Context, tx Tx, a Actor, c computed) error {
+	if err := tx.InsertEstimate(ctx, c.head, c.job, c.document); err != nil {
+		return err
+	}
+	return s.audit(ctx, tx, a, "create", "estimate", c.head.ID, nil, c.head)
+}
+
+// Estimate reads the head of one estimate: NotFound.
+func (s *Service) Estimate(ctx context.Context, a Actor, id uuid.UUID) (Estimate, error) {
+	return read(ctx, s, a, auth.ReadProjects, func(tx Tx) (Estimate, error) { return tx.Estimate(ctx, id) })
+}
+
+// Document reads the canonical bytes of an estimate's document: NotFound.
+func (s *Service) Document(ctx context.Context, a Actor, id uuid.UUID) ([]byte, error) {
+	return read(ctx, s, a, auth.ReadProjects, func(tx Tx) ([]byte, error) { return tx.EstimateDocument(ctx, id) })
+}
+
+// Estimates lists the estimates of a scheme, newest first: NotFound.
+func (s *Service) Estimates(ctx context.Context, a Actor, scheme uuid.UUID, p Page) (List[Estimate], error) {
+	return list(ctx, s, a, auth.ReadProjects, func(tx Tx) (List[Estimate], error) {
+		if _, err := tx.Scheme(ctx, scheme); err != nil {
+			return List[Estimate]{}, err
+		}
+		return tx.Estimates(ctx, scheme, p)
+	})
+}
+
+// NewestEstimate reads the newest estimate of a scheme: NotFound.
+func (s *Service) NewestEstimate(ctx context.Context, a Actor, scheme uuid.UUID) (Estimate, error) {
+	return read(ctx, s, a, auth.ReadProjects, func(tx Tx) (Estimate, error) { return tx.NewestEstimate(ctx, scheme) })
+}

@@ -1,0 +1,160 @@
+package service
+
+import (
+	"bytes"
+	"context"
+	"crypto/sha256"
+	"encoding/hex"
+	"errors"
+	"path"
+	"strings"
+
+	"github.com/google/uuid"
+
+	"spanwright/api/auth"
+	"spanwright/estimate/schedule"
+	"spanwright/estimate/sheet"
+)
+
+// readPosting reads a schedule from what was posted, with every fault at once.
+func (s *Service) readPosting(ctx context.Context, p Posting, project, scheme string) (schedule.Schedule, error) {
+	o := schedule.Options{MaxMembers: s.limits.Members, Project: project, Scheme: scheme, JobTable: p.JobTable}
+	if int64(len(p.Data)) > s.limits.Sheet.Bytes {
+		return schedule.Schedule{}, &Error{Kind: TooLarge, Message: "the schedule is larger than the limit"}
+	}
+	if strings.HasPrefix(p.ContentType, "application/json") {
+		sch, err := schedule.ReadJSON(ctx, p.Data, o)
+		return sch, fromJSON(fromReading(err))
+	}
+	book, err := sheet.Open(p.Data, p.Name, p.ContentType, s.limits.Sheet)
+	if err != nil {
+		return schedule.Schedule{}, fromReading(err)
+	}
+	sch, err := schedule.Read(ctx, book, o)
+	return sch, fromReading(err)
+}
+
+// fromReading classifies what reading a spreadsheet reports.
+func fromReading(err error) error {
+	var open *sheet.OpenError
+	var faults sheet.Faults
+	switch {
+	case err == nil, errors.Is(err, context.Canceled), errors.Is(err, context.DeadlineExceeded):
+		return err
+	case errors.As(err, &faults):
+		return &Error{Kind: Invalid, Message: "the schedule has faults; nothing was stored", Faults: fromSheet(faults)}
+	case errors.As(err, &open):
+		kinds := map[sheet.OpenKind]Kind{sheet.SizeLimit: TooLarge, sheet.Unsupported: Unsupported, sheet.Malformed: Invalid}
+		return &Error{Kind: kinds[open.Kind], Message: open.Problem, Faults: []Fault{{Found: "the body", Problem: open.Problem, Remedy: open.Remedy}}}
+	}
+	return err
+}
+
+// fromJSON classifies what is left: text that is not a schedule in JSON.
+func fromJSON(err error) error {
+	var known *Error
+	if err == nil || errors.As(err, &known) || errors.Is(err, context.Canceled) || errors.Is(err, context.DeadlineExceeded) {
+		return err
+	}
+	return &Error{Kind: Malformed, Message: err.Error(), Faults: []Fault{{Found: "the body", Problem: err.Error(),
+		Remedy: `{"rows": [{"Mark": "B1", …}], "job": {"Currency": "EUR", …}} with the heads of the columns as keys`}}, Err: err}
+}
+
+// PostSchedule reads a schedule and stores it as the next revision of a scheme:
+// NotFound, Invalid with every fault, Malformed, Unsupported, TooLarge.
+func (s *Service) PostSchedule(ctx context.Context, a Actor, scheme uuid.UUID, p Posting, key Idempotency) (Revision, error) {
+	if err := s.allow(a, auth.PostSchedules); err != nil {
+		return Revision{}, err
+	}
+	var project Project
+	sc, err := read(ctx, s, a, auth.ReadProjects, func(tx Tx) (Scheme, error) {
+		sc, err := tx.Scheme(ctx, scheme)
+		if err == nil {
+			project, err = tx.Project(ctx, sc.Project)
+		}
+		return sc, err
+	})
+	if err != nil {
+		return Revision{}, err
+	}
+	sch, err := s.readPosting(ctx, p, project.Name, sc.Name)
+	if err != nil {
+		return Revision{}, err
+	}
+	r, err := s.revision(a, sc.ID, p, sch)
+	if err != nil {
+		return Revision{}, err
+	}
+	return once(ctx, s, a, "post schedule "+scheme.String(), key, r.ID,
+		func(tx Tx, id uuid.UUID) (Revision, error) { return tx.Revision(ctx, id) },
+		func(tx Tx) (Revision, error) { return s.insertRevision(ctx, tx, a, r) })
+}
+
+func (s *Service) revision(a Actor, scheme uuid.UUID, p Posting, sch schedule.Schedule) (Revision, error) {
+	id, err := s.newID()
+	if err != nil {
+		return Revision{}, err
+	}
+	return Revision{ID: id, Scheme: scheme, SourceName: p.SourceName(), SourceSHA256: p.SHA256(), Members: len(sch.Members),
+		CreatedAt: s.now(), CreatedBy: a.Name, Author: a.Token, Source: p.Data, JobTable: p.JobTable}, nil
+}
+
+func (s *Service) insertRevision(ctx context.Context, tx Tx, a Actor, r Revision) (Revision, error) {
+	r, err := tx.InsertRevision(ctx, r)
+	if err != nil {
+		return r, err
+	}
+	return r, s.audit(ctx, tx, a, "post", "schedule", r.ID, nil, r)
+}
+
+// SHA256 is the hash of the posted bytes, in hexadecimal; a job table posted
+// beside them is part of it.
+func (p Posting) SHA256() string {
+	h := sha256.New()
+	h.Write(p.Data)
+	h.Write(p.JobTable)
+	return hex.EncodeToString(h.Sum(nil))
+}
+
+// SourceName is the posted file's own name, without folders and control
+// characters.
+func (p Posting) SourceName() string {
+	name := path.Base(strings.ReplaceAll(strings.ToValidUTF8(p.Name, ""), "\\", "/"))
+	name = strings.Map(func(r rune) rune {
+		if r < 0x20 || r == 0x7f {
+			return -1
+		}
+		return r
+	}, name)
+	if r := []rune(name); len(r) > nameLength {
+		name = string(r[:nameLength])
+	}
+	if name == "" || name == "." || name == "/" {
+		return "schedule"
+	}
+	return name
+}
+
+// posting turns a stored revision back into what was posted.
+func (r Revision) posting() Posting {
+	p := Posting{Name: r.SourceName, Data: r.Source, JobTable: r.JobTable}
+	if b := bytes.TrimLeft(r.Source, " \t\r\n"); len(b) > 0 && b[0] == '{' {
+		p.ContentType = "application/json"
+	}
+	return p
+}
+
+// Revision reads one schedule revision, its source included: NotFound.
+func (s *Service) Revision(ctx context.Context, a Actor, id uuid.UUID) (Revision, error) {
+	return read(ctx, s, a, auth.ReadProjects, func(tx Tx) (Revision, error) { return tx.Revision(ctx, id) })
+}
+
+// Revisions lists the schedule revisions of a scheme: NotFound.
+func (s *Service) Revisions(ctx context.Context, a Actor, scheme uuid.UUID, p Page) (List[Revision], error) {
+	return list(ctx, s, a, auth.ReadProjects, func(tx Tx) (List[Revision], error) {
+		if _, err := tx.Scheme(ctx, scheme); err != nil {
+			return List[Revision]{}, err
+		}
+		return tx.Revisions(ctx, scheme, p)
+	})
+}

@@ -1,0 +1,182 @@
+package main
+
+import (
+	"context"
+	"crypto/sha256"
+	"encoding/hex"
+	"errors"
+	"fmt"
+	"io"
+	"os"
+	"path/filepath"
+	"strings"
+
+	"spanwright/estimate/document"
+	"spanwright/estimate/engine"
+	"spanwright/estimate/job"
+	"spanwright/estimate/ratebook"
+	"spanwright/estimate/schedule"
+	"spanwright/estimate/sheet"
+	"spanwright/estimate/workbook"
+)
+
+// offlineMembers is how many rows a schedule may have offline.
+const offlineMembers = 100_000
+
+func priceCommand() command {
+	c := command{name: "price", args: "[flags] SCHEDULE", short: "price a schedule offline: CSV or XLSX in, estimate out, no database"}
+	c.long = `
+Reads a schedule (CSV or XLSX; “-” is standard input), sizes its members, counts
+tonnes, prices them with a rate book and prints the estimate. Faults of the
+schedule are listed by cell, all at once, and nothing is printed.
+
+  spanwright price testdata/brackwater.xlsx
+  spanwright price --job testdata/brackwater-job.csv testdata/brackwater.csv
+  spanwright price --format json --out estimate.json testdata/brackwater.xlsx
+  spanwright price --format xlsx --out priced.xlsx testdata/brackwater.xlsx`
+	c.run = func(ctx context.Context, p *program, args []string) error { return p.price(ctx, c, args) }
+	return c
+}
+
+type priceOptions struct {
+	rateBook, jobTable, project, scheme, format, out string
+	seed                                             uint64
+	replicates, trials                               int
+}
+
+func (p *program) price(ctx context.Context, c command, args []string) error {
+	var o priceOptions
+	f := p.flags(c)
+	f.StringVar(&o.rateBook, "rate-book", "", "rate book `FILE` (JSON); the starting book ratio when absent")
+	f.StringVar(&o.jobTable, "job", "", "CSV `FILE` with the keys and values of a Job sheet, for a schedule that has none")
+	f.StringVar(&o.project, "project", "", "project `NAME`; overrides the Job sheet")
+	f.StringVar(&o.scheme, "scheme", "", "scheme `NAME`; overrides the Job sheet")
+	f.StringVar(&o.format, "format", "table", "table, json (the estimate document), xlsx (the priced workbook) or csv (its lines)")
+	f.StringVar(&o.out, "out", "-", "`FILE` to write to; - is standard output")
+	f.Uint64Var(&o.seed, "seed", 1, "seed of the simulation")
+	f.IntVar(&o.replicates, "replicates", 32, "replicates of the simulation, 32 or more")
+	f.IntVar(&o.trials, "trials", 4096, "trials of each replicate")
+	rest, err := parse(f, args)
+	if err != nil {
+		return err
+	}
+	if len(rest) != 1 {
+		f.Usage()
+		return errUsage
+	}
+	render, err := renderer(o.format)
+	if err != nil {
+		return err
+	}
+	d, err := p.estimate(ctx, rest[0], o)
+	if err != nil {
+		return err
+	}
+	data, err := render(d)
+	if err != nil {
+		return err
+	}
+	if o.out == "-" {
+		_, err = p.stdout.Write(data)
+		return err
+	}
+	return os.WriteFile(o.out, data, 0o644)
+}
+
+func renderer(format string) (func(document.Document) ([]byte, error), error) {
+	switch format {
+	case "table":
+		return func(d document.Document) ([]byte, error) { return []byte(workbook.Table(d)), nil }, nil
+	case "json":
+		return func(d document.Document) ([]byte, error) {
+			data, _, err := d.Canonical()
+			return data, err
+		}, nil
+	case "xlsx":
+		return workbook.XLSX, nil
+	case "csv":
+		return workbook.CSV, nil
+	}
+	return nil, fmt.Errorf("format: found %q; accepted: table, json, xlsx, csv", format)
+}
+
+// estimate takes a file through the same stages as the service does.
+func (p *program) estimate(ctx context.Context, path string, o priceOptions) (document.Document, error) {
+	data, err := p.readInput(path)
+	if err != nil {
+		return document.Document{}, err
+	}
+	options := schedule.Options{MaxMembers: offlineMembers, Project: o.project, Scheme: o.scheme}
+	if o.jobTable != "" {
+		if options.JobTable, err = os.ReadFile(o.jobTable); err != nil {
+			return document.Document{}, err
+		}
+	}
+	name := filepath.Base(path)
+	sch, err := readSchedule(ctx, data, name, options)
+	if err != nil {
+		return document.Document{}, p.explain(err)
+	}
+	book := ratebook.Ratio()
+	if o.rateBook != "" {
+		raw, err := os.ReadFile(o.rateBook)
+		if err != nil {
+			return document.Document{}, err
+		}
+		if book, err = ratebook.Parse(raw); err != nil {
+			return document.Document{}, err
+		}
+	}
+	h := sha256.New()
+	h.Write(data)
+	h.Write(options.JobTable)
+	j, err := job.Freeze(sch, job.Source{Name: name, SHA256: hex.EncodeToString(h.Sum(nil))}, book, nil,
+		job.Sampling{Seed: o.seed, Replicates: o.replicates, Trials: o.trials})
+	if err != nil {
+		return document.Document{}, err
+	}
+	j.EngineVersion, j.Data, j.Build = document.EngineVersion, engine.Data(), build()
+	d, err := engine.Run(ctx, j, nil)
+	return d, p.explain(err)
+}
+
+func readSchedule(ctx context.Context, data []byte, name string, o schedule.Options) (schedule.Schedule, error) {
+	if strings.EqualFold(filepath.Ext(name), ".json") {
+		return schedule.ReadJSON(ctx, data, o)
+	}
+	limits := sheet.DefaultLimits()
+	limits.Bytes, limits.UnzippedBytes = 200<<20, 1<<30
+	limits.Rows, limits.Cells, limits.SharedStrings = offlineMembers+100, 5_000_000, 1_000_000
+	book, err := sheet.Open(data, name, "", limits)
+	if err != nil {
+		return schedule.Schedule{}, err
+	}
+	return schedule.Read(ctx, book, o)
+}
+
+// explain lists faults on standard error, one a line, and returns their count as
+// the error.
+func (p *program) explain(err error) error {
+	var faults sheet.Faults
+	var members *engine.FaultsError
+	switch {
+	case errors.As(err, &faults):
+		for _, f := range faults {
+			fmt.Fprintln(p.stderr, f.Error())
+		}
+		return fmt.Errorf("%d faults in the schedule; nothing was priced", len(faults))
+	case errors.As(err, &members):
+		for _, f := range members.Faults {
+			fmt.Fprintf(p.stderr, "member %s: %s; %s\n", f.Mark, f.Problem, f.Remedy)
+		}
+		return fmt.Errorf("%d members cannot be sized; nothing was priced", len(members.Faults))
+	}
+	return err
+}
+
+func (p *program) readInput(path string) ([]byte, error) {
+	if path == "-" {
+		return io.ReadAll(p.stdin)
+	}
+	return os.ReadFile(path)
+}
