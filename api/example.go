@@ -1,6 +1,7 @@
 package api
 
 import (
+	"maps"
 	"net/http"
 	"strconv"
 	"strings"
@@ -60,7 +61,7 @@ func examples() map[string]any {
 	posted := MultiplierValue(value)
 	posted.Author = ""
 	d := exampleDocument()
-	return map[string]any{
+	all := map[string]any{
 		"Project": project, "ProjectList": only(project), "NewProject": service.NewProject{Name: project.Name, Currency: "EUR", BaseDate: "2026-06-01", DisplayUnits: "SI"},
 		"Scheme": scheme, "SchemeList": only(scheme), "NewScheme": NewScheme{Name: scheme.Name},
 		"Schedule": revision, "ScheduleList": only(revision),
@@ -74,6 +75,8 @@ func examples() map[string]any {
 		"DocumentLineItems": Items[document.Line]{d.Lines}, "AssumptionEntryItems": Items[assumption.Entry]{d.Assumptions}, "DocumentRange": d.Range,
 		"DocumentFindingItems": Items[document.Finding]{d.Findings}, "DocumentMemberItems": Items[document.Member]{d.Members},
 	}
+	maps.Copy(all, calculatorExamples())
+	return all
 }
 
 func only[T any](item T) service.List[T] { return service.List[T]{Items: []T{item}} }

@@ -66,6 +66,11 @@ func endpoints(t *testing.T) []endpoint {
 		{"create-token", "POST", "/v1/tokens", `{"name":"spare","role":"viewer"}`, auth.Administrator, 201},
 		{"revoke-token", "DELETE", "/v1/tokens/{token}", "", auth.Administrator, 200},
 		{"list-audit-events", "GET", "/v1/audit-events", "", auth.Manager, 200},
+		{"calculate-beam", "POST", "/v1/calculators/beam", exampleBody(t, "BeamRequest"), auth.Viewer, 200},
+		{"calculate-section", "POST", "/v1/calculators/section", exampleBody(t, "SectionRequest"), auth.Viewer, 200},
+		{"calculate-resistance", "POST", "/v1/calculators/resistance", exampleBody(t, "ResistanceRequest"), auth.Viewer, 200},
+		{"calculate-sizing", "POST", "/v1/calculators/sizing", exampleBody(t, "SizingRequest"), auth.Viewer, 200},
+		{"calculate-arrangements", "POST", "/v1/calculators/arrangements", exampleBody(t, "ArrangementsRequest"), auth.Viewer, 200},
 	}
 }
 

@@ -15,13 +15,14 @@ import (
 // mayImport is the map of DEVELOPERS.md: what each package may import of the
 // project. A name that ends in "/" stands for every package below it.
 var mayImport = map[string][]string{
-	"structural/unit":       {},
-	"structural/material":   {"structural/unit"},
-	"structural/section":    {"structural/unit"},
-	"structural/action":     {"structural/unit"},
-	"structural/beam":       {"structural/unit"},
-	"structural/resistance": {"structural/section", "structural/material"},
-	"structural/sizing":     {"structural/beam", "structural/action", "structural/resistance", "structural/section", "structural/material"},
+	"structural/unit":        {},
+	"structural/material":    {"structural/unit"},
+	"structural/section":     {"structural/unit"},
+	"structural/action":      {"structural/unit"},
+	"structural/beam":        {"structural/unit"},
+	"structural/resistance":  {"structural/section", "structural/material"},
+	"structural/arrangement": {"structural/beam", "structural/action", "structural/resistance", "structural/section", "structural/material", "structural/sizing"},
+	"structural/sizing":      {"structural/beam", "structural/action", "structural/resistance", "structural/section", "structural/material"},
 
 	"estimate/money":      {},
 	"estimate/spread":     {},
@@ -36,8 +37,9 @@ var mayImport = map[string][]string{
 	"estimate/document":   {"estimate/money", "estimate/spread", "estimate/assumption"},
 	"estimate/engine": {"structural/", "estimate/money", "estimate/spread", "estimate/assumption", "estimate/schedule", "estimate/takeoff",
 		"estimate/ratebook", "estimate/pricing", "estimate/ranges", "estimate/job", "estimate/document"},
-	"estimate/chart":    {"estimate/document", "estimate/money", "estimate/spread", "estimate/assumption"},
-	"estimate/workbook": {"estimate/document", "estimate/sheet", "estimate/chart", "estimate/money", "estimate/spread", "estimate/assumption"},
+	"estimate/calculator": {"structural/", "estimate/document"},
+	"estimate/chart":      {"estimate/document", "estimate/money", "estimate/spread", "estimate/assumption"},
+	"estimate/workbook":   {"estimate/document", "estimate/sheet", "estimate/chart", "estimate/money", "estimate/spread", "estimate/assumption"},
 
 	"api/auth":      {},
 	"api/service":   {"api/auth", "estimate/"},
@@ -46,7 +48,7 @@ var mayImport = map[string][]string{
 	"api/pgtest":    {"api/localpg", "api/store", "migrations"},
 	"api/dashboard": {"api/service", "api/auth", "estimate/document", "estimate/chart", "estimate/workbook", "estimate/money", "estimate/spread", "estimate/assumption"},
 	"api": {"api/service", "api/auth", "estimate/document", "estimate/sheet", "estimate/workbook", "estimate/money", "estimate/spread",
-		"estimate/assumption", "estimate/ratebook", "estimate/job"},
+		"estimate/assumption", "estimate/ratebook", "estimate/job", "estimate/calculator"},
 
 	"migrations":     {},
 	"testdata":       {},

@@ -1,6 +1,8 @@
 // Command spanwright prices fabricated steel structures from a sketch.
 //
 //	price  → offline: spreadsheet in, estimate out, no database
+//	template → an empty schedule to be filled in
+//	calculate → offline: one structural calculation, JSON in and out
 //	serve  → the service on a PostgreSQL of yours
 //	demo   → the service on a local PostgreSQL that it runs itself, with the
 //	         invented Brackwater job loaded
@@ -42,7 +44,7 @@ type program struct {
 var errUsage = errors.New("usage")
 
 func commands() []command {
-	return []command{priceCommand(), demoCommand(), serveCommand(), migrateCommand(), tokenCommand()}
+	return []command{priceCommand(), templateCommand(), calculateCommand(), demoCommand(), serveCommand(), migrateCommand(), tokenCommand()}
 }
 
 func main() {

@@ -33,6 +33,7 @@ type Document struct {
 	Items         []Item             `json:"items"`
 	Lines         []Line             `json:"lines"`
 	Members       []Member           `json:"members"`
+	Split         *SplitSummary      `json:"split_summary,omitempty" doc:"where the schedule has members that the split method would cut or simplify"`
 	Findings      []Finding          `json:"findings"`
 	Assumptions   []assumption.Entry `json:"assumptions"`
 	Inclusions    []string           `json:"inclusions"`
@@ -48,7 +49,7 @@ type Job struct {
 	SourceSHA256    string `json:"source_sha256"`
 	JobSHA256       string `json:"job_sha256" doc:"of the frozen job, without its source and build"`
 	DesignBasis     string `json:"design_basis"`
-	Factor          Number `json:"factor"`
+	Factor          Number `json:"factor" doc:"on yield, design basis allowable; 0 in the others"`
 	EstimateClass   int    `json:"estimate_class" minimum:"1" maximum:"5"`
 	Currency        string `json:"currency"`
 	BaseDate        string `json:"base_date"`
@@ -178,6 +179,7 @@ type Member struct {
 	Net             Number     `json:"net_kg"`
 	Passes          bool       `json:"passes"`
 	Governing       string     `json:"governing_check,omitempty"`
+	Combination     string     `json:"combination,omitempty" doc:"of actions, under which the governing check is highest"`
 	Utilisation     Number     `json:"utilisation,omitempty"`
 	TotalLoad       Number     `json:"total_load_kn,omitempty" doc:"permanent, variable and own weight of one piece"`
 	SelfWeight      Number     `json:"self_weight_kn,omitempty"`
@@ -186,6 +188,31 @@ type Member struct {
 	Reactions       []Reaction `json:"reactions,omitempty"`
 	Ratios          []Ratio    `json:"split_ratios,omitempty"`
 	DeflectionLimit Number     `json:"deflection_limit,omitempty"`
+	SameSizeAs      string     `json:"same_size_as,omitempty" doc:"mark of another row that has the same section"`
+	LoadSet         string     `json:"load_set,omitempty" doc:"ready loads that filled blank cells"`
+	Warnings        []string   `json:"warnings,omitempty" doc:"what is doubtful about the section in its grade"`
+}
+
+// SplitSummary sets the sections that the split method would give beside those
+// of the exact envelope, over all members that it would cut or simplify. Members
+// with a given section are not in it. Supports are never sized from the method.
+type SplitSummary struct {
+	Members       []SplitMember `json:"members"`
+	TonnesExact   Number        `json:"exact_t" doc:"net mass of these members as sized"`
+	TonnesSplit   Number        `json:"split_t" doc:"net mass of the same members by the split method"`
+	DifferenceT   Number        `json:"difference_t" doc:"split_t minus exact_t: what the shortcut costs; negative where it saves too much"`
+	UnsafeMembers []string      `json:"unsafe_members" doc:"marks whose section by the split method fails the exact checks"`
+}
+
+// SplitMember is one member sized twice.
+type SplitMember struct {
+	Mark        string `json:"mark"`
+	Exact       string `json:"exact_section"`
+	Split       string `json:"split_section" doc:"empty where nothing passes by the split method; the member then counts as sized exactly"`
+	DifferenceT Number `json:"difference_t" doc:"of all pieces, split minus exact"`
+	Utilisation Number `json:"utilisation" doc:"of the split method's section under the exact envelope"`
+	Check       string `json:"check" doc:"that governs there"`
+	Unsafe      bool   `json:"unsafe"`
 }
 
 // Check is one check of the chosen section, with the inputs that it used.
@@ -200,6 +227,7 @@ type Check struct {
 	PassFail    bool       `json:"pass_fail,omitempty" doc:"a limit that is met or not; it governs only where it is not met"`
 	Inputs      []Quantity `json:"inputs"`
 	Note        string     `json:"note,omitempty"`
+	Combination string     `json:"combination,omitempty" doc:"of actions, under which the check is highest"`
 }
 
 // Quantity is one named input of a check.

@@ -21,7 +21,7 @@ func (r *run) assemble() (document.Document, error) {
 	d := document.Document{
 		EngineVersion: document.EngineVersion, Caution: document.Caution, Job: head,
 		Range: r.rangeOf(), Categories: r.categories(), Items: items(r.items), Lines: r.lines(),
-		Inclusions: r.inclusions(), Exclusions: exclusions(), Notes: r.textNotes(),
+		Inclusions: r.inclusions(), Exclusions: r.exclusions(), Notes: r.textNotes(),
 		Assumptions: r.register.Entries(),
 	}
 	d.Groups = groups(d.Items, d.Lines)
@@ -31,6 +31,7 @@ func (r *run) assemble() (document.Document, error) {
 	if d.Totals, err = r.totals(d); err != nil {
 		return document.Document{}, err
 	}
+	d.Split = r.splitSummary()
 	d.Findings = r.findings(d)
 	for _, f := range d.Findings {
 		if f.Severity == document.Unsafe {
@@ -184,7 +185,8 @@ func (r *run) member(s sizedMember) document.Member {
 	}
 	res := s.result
 	out.Section, out.Grade, out.Passes = res.Section.Designation, m.Grade, res.Passes
-	out.Governing, out.Utilisation = res.Governing, document.Number(res.Utilisation)
+	out.Governing, out.Utilisation, out.Combination = res.Governing, document.Number(res.Utilisation), res.Combination
+	out.SameSizeAs, out.LoadSet, out.Warnings = m.SameSizeAs, m.LoadSet, res.Warnings
 	out.TotalLoad, out.SelfWeight = document.Number(res.TotalLoad/1000), document.Number(res.SelfWeight/1000)
 	out.DeflectionLimit = document.Number(m.DeflectionLimit)
 	out.Checks, out.Ratios, out.Reactions = checks(res), ratios(res.Ratios), reactions(res.Envelope.Reactions)
@@ -194,20 +196,55 @@ func (r *run) member(s sizedMember) document.Member {
 	return out
 }
 
+// splitSummary says what the split method would have chosen, nil where it would
+// have cut or simplified nothing.
+func (r *run) splitSummary() *document.SplitSummary {
+	sum := document.SplitSummary{Members: []document.SplitMember{}, UnsafeMembers: []string{}}
+	for _, s := range r.sized {
+		if s.split == nil {
+			continue
+		}
+		metres := float64(s.member.Quantity) * s.member.Length / 1000
+		exact := metres * s.result.Section.Mass
+		split := exact
+		m := document.SplitMember{Mark: s.member.Mark, Exact: s.result.Section.Designation, Utilisation: document.Number(s.split.utilisation), Check: s.split.check, Unsafe: s.split.unsafe()}
+		if s.split.passes {
+			m.Split, split = s.split.section.Designation, metres*s.split.section.Mass
+		}
+		m.DifferenceT = document.Number(split - exact)
+		if m.Unsafe {
+			sum.UnsafeMembers = append(sum.UnsafeMembers, m.Mark)
+		}
+		sum.Members = append(sum.Members, m)
+		sum.TonnesExact += document.Number(exact)
+		sum.TonnesSplit += document.Number(split)
+	}
+	if len(sum.Members) == 0 {
+		return nil
+	}
+	sum.DifferenceT = sum.TonnesSplit - sum.TonnesExact
+	return &sum
+}
+
 func checks(res *sizing.Result) []document.Check {
 	var out []document.Check
-	for _, c := range res.Checks {
+	for i, c := range res.Checks {
 		if c.Demand == 0 && !c.PassFail {
 			continue // nothing acts that this check is about
 		}
 		d := document.Check{ID: c.ID, Clause: c.Clause, Formula: c.Formula, Demand: document.Number(c.Demand), Resistance: document.Number(c.Resistance),
-			Unit: c.Unit, Utilisation: document.Number(c.Utilisation), PassFail: c.PassFail, Note: c.Note, Inputs: []document.Quantity{}}
+			Unit: c.Unit, Utilisation: document.Number(c.Utilisation), PassFail: c.PassFail, Note: noteOf(res, i), Combination: res.Combinations[i], Inputs: []document.Quantity{}}
 		for _, q := range c.Inputs {
 			d.Inputs = append(d.Inputs, document.Quantity{Symbol: q.Symbol, Value: document.Number(q.Value), Unit: q.Unit})
 		}
 		out = append(out, d)
 	}
 	return out
+}
+
+// noteOf is the note of a check without its combination, which stands by itself.
+func noteOf(res *sizing.Result, i int) string {
+	return strings.TrimSuffix(strings.TrimSuffix(res.Checks[i].Note, "under "+res.Combinations[i]), "; ")
 }
 
 func reactions(in []beam.ReactionEnvelope) []document.Reaction {

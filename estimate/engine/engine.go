@@ -1,6 +1,6 @@
 // Package engine runs a job through every stage; there is no other way.
 //
-//	job → size (members, in parallel) → take-off (items)
+//	job → size (members, in parallel; again by the split method) → take-off (items)
 //	    → pricing (decimal lines, cost model) → ranges (simulation)
 //	    → register and findings of every stage → document
 //

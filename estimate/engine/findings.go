@@ -42,7 +42,10 @@ func memberFindings(s sizedMember) []document.Finding {
 	var out []document.Finding
 	mark := s.member.Mark
 	figures := []string{"member/" + assumption.Segment(mark) + "/net"}
-	if !s.result.Passes {
+	if note := refusal(*s.result); note != "" {
+		out = append(out, document.Finding{Severity: document.Unsafe, Code: "not-covered", Subject: mark, Figures: figures,
+			Message: fmt.Sprintf("The given section %s is not checked, because the design basis does not cover it here: %s. Its tonnage is priced as given.", s.result.Section.Designation, note)})
+	} else if !s.result.Passes {
 		out = append(out, document.Finding{Severity: document.Unsafe, Code: "section-fails", Subject: mark, Figures: figures,
 			Message: fmt.Sprintf("The given section %s fails: %s at %.2f. Its tonnage is priced as given; it will grow.", s.result.Section.Designation, s.result.Governing, s.result.Utilisation)})
 	}
@@ -52,9 +55,13 @@ func memberFindings(s sizedMember) []document.Finding {
 	if f, ok := uplift(s); ok {
 		out = append(out, f)
 	}
-	for _, c := range s.result.Checks {
-		if c.Note != "" && !resistance.Passes(c.Utilisation) {
-			out = append(out, document.Finding{Severity: document.Doubtful, Code: "check-note", Subject: mark, Message: c.Note, Figures: figures})
+	for _, w := range s.result.Warnings {
+		out = append(out, document.Finding{Severity: document.Doubtful, Code: "section-warning", Subject: mark, Message: w + ".", Figures: figures})
+	}
+	for i, c := range s.result.Checks {
+		note := noteOf(s.result, i)
+		if note != "" && c.ID != resistance.NotCovered && !resistance.Passes(c.Utilisation) {
+			out = append(out, document.Finding{Severity: document.Doubtful, Code: "check-note", Subject: mark, Message: note, Figures: figures})
 		}
 	}
 	return out
@@ -154,7 +161,7 @@ func (r *run) totalFindings(d document.Document) []document.Finding {
 	add := func(s document.Severity, code, message string, figures ...string) {
 		out = append(out, document.Finding{Severity: s, Code: code, Subject: "total", Message: message, Figures: figures})
 	}
-	if r.job.Settings.Factor < lowestCombinedFactor {
+	if r.job.Settings.DesignBasis == "allowable" && r.job.Settings.Factor < lowestCombinedFactor {
 		add(document.Doubtful, "low-factor", fmt.Sprintf("The factor on yield is %.4g without explicit combinations; 3 to 4 is usual for a first pass (common practice, no source).", r.job.Settings.Factor))
 	}
 	for _, w := range r.ranged.Warnings {
@@ -174,10 +181,26 @@ func (r *run) totalFindings(d document.Document) []document.Finding {
 	if rho := zeroCorrelation(r.job.Book.Correlation); len(rho) > 0 {
 		add(document.Doubtful, "no-correlation", "Costs of the group "+strings.Join(rho, ", ")+" are taken as uncorrelated (ρ = 0), which narrows the range.", "range")
 	}
+	if d.Split != nil {
+		add(document.Notice, "split-summary", splitWords(*d.Split))
+	}
 	for _, o := range r.job.Omissions {
 		add(document.Notice, "possible-omission", o)
 	}
 	return out
+}
+
+// splitWords puts the summary of the split method into a sentence.
+func splitWords(s document.SplitSummary) string {
+	diff := fmt.Sprintf("%.3f t more", float64(s.DifferenceT))
+	if s.DifferenceT < 0 {
+		diff = fmt.Sprintf("%.3f t less", -float64(s.DifferenceT))
+	}
+	text := fmt.Sprintf("Sized by the split method, %d members would weigh %.3f t net, %s than by the exact envelope", len(s.Members), float64(s.TonnesSplit), diff)
+	if len(s.UnsafeMembers) == 0 {
+		return text + "; none of these sections would fail the exact checks."
+	}
+	return text + "; its sections would fail the exact checks in " + strings.Join(s.UnsafeMembers, ", ") + "."
 }
 
 func zeroCorrelation(c map[string]float64) []string {

@@ -164,16 +164,6 @@ func decimal(tb testing.TB, text string) money.Decimal {
 	return d
 }
 
-// corpusJob is the i-th job of the golden corpus.
-func corpusJob(tb testing.TB, i int) job.Job {
-	tb.Helper()
-	r := rand.New(rand.NewPCG(uint64(i), 2026))
-	book := variedBook(tb, r)
-	t := table("Project", fmt.Sprintf("Corpus %d", i), "Scheme", "one", "Currency", book.Currency, "Estimate class", fmt.Sprint(1+i%5),
-		"Factor", []string{"1.67", "3", "4"}[i%3], "Base date", "2026-06-01", "Confidence", []string{"0.8", "0.5", "0.85"}[i%3])
-	return freeze(tb, readCSV(tb, toCSV(randomRows(r, 3+i%10)), t), book, nil, quick)
-}
-
 // reread parses a job from its stored bytes.
 func reread(tb testing.TB, stored []byte) job.Job {
 	tb.Helper()

@@ -34,6 +34,9 @@ func (r *run) addSchedule() error {
 		}
 	}
 	for _, e := range schedule.InputFeeds() {
+		if e.ID == "input/factor" && r.job.Settings.DesignBasis != "allowable" {
+			continue // the other bases have no such input
+		}
 		if err := r.register.Add(e); err != nil {
 			return err
 		}

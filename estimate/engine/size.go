@@ -6,7 +6,6 @@ import (
 	"fmt"
 	"runtime"
 	"sort"
-	"strings"
 	"sync"
 	"sync/atomic"
 
@@ -16,8 +15,6 @@ import (
 	"spanwright/estimate/takeoff"
 	"spanwright/structural/action"
 	"spanwright/structural/beam"
-	"spanwright/structural/material"
-	"spanwright/structural/resistance"
 	"spanwright/structural/section"
 	"spanwright/structural/sizing"
 )
@@ -29,6 +26,7 @@ const gravity = 9.80665
 type sizedMember struct {
 	member schedule.Member
 	result *sizing.Result
+	split  *shortcut // of members that are sized and that the split method would cut or simplify
 }
 
 func (s sizedMember) piece() takeoff.Piece {
@@ -52,26 +50,27 @@ func (s sizedMember) piece() takeoff.Piece {
 	return p
 }
 
-// sizeAll sizes every member on all cores. Members are independent, so the
-// result does not depend on the number of cores.
+// sizeAll sizes every member on all cores. Members of one size group are sized
+// together, all others are independent, so that the result does not depend on the
+// number of cores.
 func sizeAll(ctx context.Context, j job.Job, progress Progress) ([]sizedMember, error) {
-	basis, err := resistance.Allowable(j.Settings.Factor)
+	rules, err := rulesOf(j.Settings)
 	if err != nil {
 		return nil, fmt.Errorf("design basis: %w", err)
 	}
+	groups, errs := sizeGroups(j.Members)
 	out := make([]sizedMember, len(j.Members))
-	errs := make([]error, len(j.Members))
 	var next, done atomic.Int64
 	var wg sync.WaitGroup
-	for range min(runtime.GOMAXPROCS(0), max(1, len(j.Members))) {
+	for range min(runtime.GOMAXPROCS(0), max(1, len(groups))) {
 		wg.Go(func() {
 			for ctx.Err() == nil {
 				i := int(next.Add(1)) - 1
-				if i >= len(j.Members) {
+				if i >= len(groups) {
 					return
 				}
-				out[i], errs[i] = sizeOne(j.Members[i], basis)
-				progress("sizing", int(done.Add(1)), len(j.Members))
+				rules.size(j.Members, groups[i], out, errs)
+				progress("sizing", int(done.Add(int64(len(groups[i])))), len(j.Members))
 			}
 		})
 	}
@@ -80,6 +79,51 @@ func sizeAll(ctx context.Context, j job.Job, progress Progress) ([]sizedMember, 
 		return nil, err
 	}
 	return out, gather(errs)
+}
+
+// sizeGroups parts the members, by index, into those that get one section; most
+// stand alone. A mark that no member has is that member's error.
+func sizeGroups(members []schedule.Member) (groups [][]int, errs []error) {
+	errs = make([]error, len(members))
+	at := make(map[string]int, len(members))
+	for i := range members {
+		at[members[i].Mark] = i
+	}
+	root := make([]int, len(members))
+	for i := range root {
+		root[i] = i
+	}
+	find := func(i int) int {
+		for root[i] != i {
+			i = root[i]
+		}
+		return i
+	}
+	for i := range members {
+		as := members[i].SameSizeAs
+		if as == "" {
+			continue
+		}
+		k, ok := at[as]
+		if !ok || members[k].Treatment != schedule.SizeFromFamily || members[k].Family != members[i].Family {
+			errs[i] = fault(members[i].Mark, fmt.Sprintf("takes the size of %q, which is no row sized from %s", as, members[i].Family), "name the mark of another row of the same family")
+			continue
+		}
+		a, b := find(i), find(k)
+		root[max(a, b)] = min(a, b)
+	}
+	index := map[int]int{}
+	for i := range members {
+		k := find(i)
+		g, ok := index[k]
+		if !ok {
+			g = len(groups)
+			index[k] = g
+			groups = append(groups, nil)
+		}
+		groups[g] = append(groups[g], i)
+	}
+	return groups, errs
 }
 
 // gather joins the faults of members; any other error goes first.
@@ -110,61 +154,13 @@ func fault(mark, problem, remedy string) error {
 	return &memberFault{Fault{Mark: mark, Problem: problem, Remedy: remedy}}
 }
 
-func sizeOne(m schedule.Member, basis resistance.Basis) (sizedMember, error) {
-	if m.Treatment == schedule.ByMass {
-		return sizedMember{member: m}, nil
-	}
-	grade, err := material.Find(m.Grade)
-	if err != nil {
-		return sizedMember{}, fault(m.Mark, err.Error(), "name a grade that Spanwright knows")
-	}
-	p, err := sizing.Prepare(structuralMember(m), sizing.Setup{
-		Basis: basis, Grade: grade, Combination: action.Characteristic(), Gravity: gravity,
-	})
-	if err != nil {
-		return sizedMember{}, fault(m.Mark, err.Error(), "correct the supports, loads or length of this row")
-	}
-	res, err := choose(m, p)
-	if err != nil {
-		return sizedMember{}, err
-	}
-	return sizedMember{member: m, result: &res}, nil
-}
-
-func choose(m schedule.Member, p *sizing.Prepared) (sizing.Result, error) {
-	if m.Treatment == schedule.CheckSection {
-		sec, err := section.Find(m.Section)
-		if err != nil {
-			return sizing.Result{}, fault(m.Mark, err.Error(), "name a section that Spanwright knows")
-		}
-		res, err := p.Explain(&sec)
-		if err != nil {
-			return sizing.Result{}, fault(m.Mark, err.Error(), "choose another section or grade")
-		}
-		return res, nil
-	}
-	series, err := section.Series(m.Family)
-	if err != nil {
-		return sizing.Result{}, fault(m.Mark, err.Error(), "name a family that Spanwright knows")
-	}
-	res, err := sizing.Lightest(p, series)
-	if err != nil {
-		return sizing.Result{}, fault(m.Mark, err.Error(), "choose another family or grade")
-	}
-	if !res.Passes {
-		return sizing.Result{}, fault(m.Mark,
-			fmt.Sprintf("no size of %s passes; the nearest is %s at %.2f (%s)", m.Family, res.Section.Designation, res.Utilisation, res.Governing),
-			"ways out: "+strings.Join(res.WaysOut, "; "))
-	}
-	return res, nil
-}
-
 // structuralMember hands the row to the structural engine, which knows nothing
 // of schedules.
 func structuralMember(m schedule.Member) sizing.Member {
 	s := sizing.Member{
 		Length: m.Length, Axial: m.Axial, RestraintSpacing: m.Restraint,
-		LengthFactor: m.LengthFactor, DeflectionLimit: m.DeflectionLimit, Upright: m.Upright,
+		LengthFactor: m.LengthFactor, MomentFactor: m.MomentFactor, NetAreaFactor: m.NetAreaFactor,
+		DeflectionLimit: m.DeflectionLimit, FrequencyFloor: m.FrequencyFloor, MaxDepth: m.MaxDepth, Upright: m.Upright,
 	}
 	for _, sp := range m.Supports {
 		kind := beam.Pinned
@@ -174,12 +170,18 @@ func structuralMember(m schedule.Member) sizing.Member {
 		s.Supports = append(s.Supports, beam.Support{X: sp.Position, Kind: kind})
 	}
 	for _, l := range m.Loads {
-		a := action.Action{Free: l.Free, Value: l.Value, Label: l.Label}
+		a := action.Action{Free: l.Free, Value: l.Value, Dynamic: l.Dynamic, Label: l.Label}
 		if l.Nature == "permanent" {
 			a.Nature = action.Permanent
 		}
-		if l.Kind == "point" {
+		if l.Sideways {
+			a.Direction = action.Horizontal
+		}
+		switch l.Kind {
+		case "point":
 			a.Kind, a.From, a.To = action.Point, l.Position, l.Position
+		case "train":
+			a.Kind, a.Train = action.MovingTrain, action.Train{Loads: l.Wheels, Spacings: l.Spacings}
 		}
 		s.Actions = append(s.Actions, a)
 	}

@@ -2,6 +2,7 @@ package engine
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"spanwright/estimate/ratebook"
@@ -37,7 +38,15 @@ func (r *run) inclusions() []string {
 }
 
 // exclusions says what the total does not hold. An empty list would be a fault.
-func exclusions() []string {
+func (r *run) exclusions() []string {
+	horizontal := "Wind and other horizontal actions: not checked, as no row gives any."
+	if r.any(sideways) {
+		horizontal = "Horizontal actions on rows that give none, and the stability of the structure as a whole: not checked."
+	}
+	vibration := "Vibration: not checked, as no frequency floor is asked for."
+	if r.any(floored) {
+		vibration = "Vibration beyond the frequency floors asked for: resonance, damping and comfort are not checked."
+	}
 	return []string{
 		"Foundations, ballast and holding-down.",
 		"Margin of the fabricator.",
@@ -45,12 +54,17 @@ func exclusions() []string {
 		"Taxes and duties.",
 		"Escalation after the base date and exchange risk.",
 		"Equipment, conveyors, piping, electrical work, cladding and roofing.",
-		"Dynamic effects, vibration, fatigue, earthquake and accidental actions: not checked.",
-		"Wind and other horizontal actions: not checked in this version.",
+		"Fatigue, earthquake and accidental actions: not checked; dynamic effects beyond the dynamic factors given neither.",
+		vibration,
+		horizontal,
+		"Torsion, forces put into webs across them, and sway of frames (P-Δ): not checked.",
 		"Design of connections, splices and bearings; they are priced by allowance.",
 		"Discrete risks and management reserve.",
 	}
 }
+
+// any tells whether one of the members is of a kind.
+func (r *run) any(is func(sizedMember) bool) bool { return slices.ContainsFunc(r.sized, is) }
 
 func (r *run) textNotes() []string {
 	out := []string{

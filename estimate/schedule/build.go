@@ -1,6 +1,9 @@
 package schedule
 
-import "fmt"
+import (
+	"fmt"
+	"strings"
+)
 
 // build turns a row into a member. Every fault of the row is reported; the member
 // is of use only where there is none.
@@ -33,11 +36,16 @@ func (r *row) build() Member {
 		r.sized(&m, &f, &d)
 	}
 	r.classify(&m, &f, &d)
+	r.record(&m, &f)
 	m.Defaults = r.defaults.share(d)
+	if _, twice := r.sizes[m.Mark]; !twice && r.layout.at[colSameSize] > 0 {
+		r.sizes[m.Mark] = tied{m.Family, m.Treatment, m.Treatment != ""}
+	}
 	return m
 }
 
 func (r *row) checkMark(mark text) {
+	r.unmarked = r.unmarked || mark.state != given || r.layout.lost[colMark]
 	if mark.state == blank {
 		r.missing(colMark, "the mark is blank", "give the row a name of its own")
 	}
@@ -45,6 +53,7 @@ func (r *row) checkMark(mark text) {
 		return
 	}
 	if first, twice := r.marks[mark.value]; twice {
+		r.unmarked = true
 		r.fault(colMark, mark.value, fmt.Sprintf("is the mark of row %d already", first), "a mark of its own for each row; pieces alike are one row with their quantity")
 		return
 	}
@@ -59,10 +68,14 @@ func (r *row) unsized(m *Member, f *fields) {
 	for _, l := range []struct {
 		id columnID
 		n  number
-	}{{colPermanent, f.permanent}, {colVariable, f.variable}, {colPoint, f.point}, {colAxial, f.axial}, {colAreaLoad, f.areaLoad}} {
+	}{{colPermanent, f.permanent}, {colVariable, f.variable}, {colPoint, f.point}, {colAxial, f.axial}, {colHorizontal, f.horizontal}, {colAreaLoad, f.areaLoad},
+		{colMoving, number{state: f.movingState, value: 1}}, {colLoadSet, number{state: f.loadSet.state, value: 1}}} {
 		if l.n.state == given && l.n.value != 0 {
 			r.fault(l.id, r.cells[l.id].Text, "is a load on a row that is not sized, which carries none", "leave it blank here and put it on the member that carries it")
 		}
+	}
+	if f.sameSize.state == given {
+		r.fault(colSameSize, f.sameSize.value, "stands in a row that is not sized", "leave it blank here")
 	}
 	r.strayOverhang(notSized, f)
 	switch {
@@ -117,7 +130,7 @@ func (r *row) sized(m *Member, f *fields, d *taken) {
 	if hasLength {
 		m.Supports = r.hold(m.Arrangement, f)
 	}
-	m.Loads = r.loads(m.Arrangement, f)
+	m.Loads = r.loads(m, f, d)
 	m.Axial = f.axial.value
 	if m.Arrangement == strut {
 		m.Upright = isUpright(m.Kind)
@@ -132,6 +145,7 @@ func (r *row) sized(m *Member, f *fields, d *taken) {
 		r.givenGrade(f)
 	}
 	r.restrain(m, f, d)
+	r.limitSize(m, f)
 	m.LengthFactor = f.factor.value
 	if f.factor.state == blank {
 		m.LengthFactor = 1
@@ -183,6 +197,35 @@ func (r *row) classify(m *Member, f *fields, d *taken) {
 		m.DeflectionLimit = limitOf(m.Kind)
 		d.take("deflection_limit", r.defaults.limit(m.DeflectionLimit))
 	}
+}
+
+// limitSize takes over what bounds the choice of the section.
+func (r *row) limitSize(m *Member, f *fields) {
+	m.MaxDepth, m.MomentFactor, m.NetAreaFactor = f.depth.value, f.momentFactor.value, f.netArea.value
+	if f.depth.state == given && m.Treatment == CheckSection {
+		r.fault(colDepth, r.cells[colDepth].Text, "bounds a choice, and the section is given", "a family in Section or family, or a blank cell here")
+	}
+	m.FrequencyFloor = r.job.FrequencyFloor
+	if f.frequency.state == given {
+		m.FrequencyFloor = f.frequency.value
+	}
+	if f.sameSize.state == given {
+		m.SameSizeAs = f.sameSize.value
+		r.tie(m, f)
+	}
+}
+
+// record keeps what is recorded and not reckoned with.
+func (r *row) record(m *Member, f *fields) {
+	m.Joints, m.Coating = r.intern(f.joints.value), r.intern(f.coating.value)
+	if f.execution.state != given {
+		return
+	}
+	class, ok := executionClass(f.execution.value)
+	if !ok {
+		r.fault(colExecution, f.execution.value, "is no execution class", "one of "+strings.Join(executionClasses, ", "))
+	}
+	m.ExecutionClass = class
 }
 
 func (r *row) connectionClass(f *fields) string {

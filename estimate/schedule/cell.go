@@ -142,15 +142,24 @@ func (s span) holds(v float64) bool {
 
 // Bounds beyond which a figure is a slip of the pen, whatever the structure.
 var (
-	lengths     = span{0, 1000, false, "a length above 0, up to 1000 m"}
-	positions   = span{0, 1000, true, "a position from 0 to 1000 m"}
-	loads       = span{-1e9, 1e9, true, "a load between -1e9 and 1e9 N, N/m or N/m²"}
-	factors     = span{0.5, 10, true, "a factor from 0.5 to 10"}
-	limits      = span{10, 10000, true, "n from 10 to 10000, such as L/250, or none"}
-	lineMasses  = span{0, 1e5, false, "a mass above 0, up to 100,000 kg/m"}
-	areaMasses  = span{0, 1e4, false, "a mass above 0, up to 10,000 kg/m²"}
-	areas       = span{0, 1e6, false, "an area above 0, up to 1,000,000 m²"}
-	yieldFactor = span{1.5, 10, true, "a factor from 1.5 to 10: 1.5 to 1.67 for known loads, 3 to 4 for a first pass"}
+	lengths       = span{0, 1000, false, "a length above 0, up to 1000 m"}
+	positions     = span{0, 1000, true, "a position from 0 to 1000 m"}
+	loads         = span{-1e9, 1e9, true, "a load between -1e9 and 1e9 N, N/m or N/m²"}
+	factors       = span{0.5, 10, true, "a factor from 0.5 to 10"}
+	limits        = span{10, 10000, true, "n from 10 to 10000, such as L/250, or none"}
+	lineMasses    = span{0, 1e5, false, "a mass above 0, up to 100,000 kg/m"}
+	areaMasses    = span{0, 1e4, false, "a mass above 0, up to 10,000 kg/m²"}
+	momentFactors = span{1, 3, true, "a factor from 1 to 3"}
+	netFactors    = span{0, 1, false, "a factor above 0, up to 1"}
+	depths        = span{0, 10, false, "a depth above 0, up to 10 m"}
+	frequencies   = span{0, 1000, false, "a frequency above 0, up to 1000 Hz, or none"}
+	wheelLoads    = span{0, 1e9, false, "a wheel load above 0, up to 1e9 N"}
+	speeds        = span{0, 250, false, "a speed above 0, up to 250"}
+	snows         = span{0, 50_000, false, "a load above 0, up to 50 kN/m²"}
+	spacings      = span{0, 1000, false, "a distance above 0, up to 1000 m"}
+	dynamic       = span{1, 10, true, "a factor from 1 to 10"}
+	areas         = span{0, 1e6, false, "an area above 0, up to 1,000,000 m²"}
+	yieldFactor   = span{1.5, 10, true, "a factor from 1.5 to 10: 1.5 to 1.67 for known loads, 3 to 4 for a first pass"}
 )
 
 // greatestQuantity is the number of pieces that one row may stand for.

@@ -72,8 +72,15 @@ func limitOf(kind string) float64 {
 }
 
 func gradeOf(family string) string {
-	if family == "PIPE" {
+	switch family {
+	case "PIPE":
 		return defaultPipeGrade
+	case "W":
+		return "A992"
+	case "C":
+		return "A36"
+	case "HSS", "HSS-ROUND":
+		return "A500 C"
 	}
 	return defaultGrade
 }

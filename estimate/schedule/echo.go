@@ -37,18 +37,32 @@ func echo(members []Member) Echo {
 func echoOf(m *Member) EchoMember {
 	out := EchoMember{Mark: m.Mark, Axial: unit.Round(m.Axial/1000, unit.Digits)}
 	for _, l := range m.Loads {
-		total := l.Value / 1000
-		if l.Kind == "uniform" {
-			total *= m.Length
-		}
-		if l.Nature == "permanent" {
+		total := l.total(m.Length) / 1000
+		switch {
+		case l.Sideways:
+			out.Horizontal += total
+		case l.Nature == "permanent":
 			out.Permanent += total
-		} else {
+		default:
 			out.Variable += total
 		}
 	}
-	out.Permanent, out.Variable = unit.Round(out.Permanent, unit.Digits), unit.Round(out.Variable, unit.Digits)
+	for _, sum := range []*float64{&out.Permanent, &out.Variable, &out.Horizontal} {
+		*sum = unit.Round(*sum, unit.Digits)
+	}
 	return out
+}
+
+// total is the whole load on a member of a length in m, N, with its dynamic factor.
+func (l Load) total(length float64) float64 {
+	sum := l.Value
+	if l.Kind == "uniform" {
+		sum *= length
+	}
+	for _, w := range l.Wheels {
+		sum += w
+	}
+	return sum * max(1, l.Dynamic)
 }
 
 // pieceMass is the mass of one piece in kg, 0 where it is not known before sizing.

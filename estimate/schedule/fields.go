@@ -11,15 +11,23 @@ import (
 type fields struct {
 	mark, group, kind, description, remarks text
 	support, product, grade, connection     text
+	joints, coating, execution, loadSet     text
+	sameSize                                text
 
 	quantity      int
 	quantityState state
 
 	length, permanent, variable            number
 	point, pointAt, axial, areaLoad, width number
-	overhang, restraint, factor, limit     number
+	horizontal, overhang, restraint        number
+	factor, limit, frequency, depth        number
+	momentFactor, netArea                  number
 	mass, area                             number
 	massByArea                             bool // mass is per m²
+
+	moving      train
+	movingState state
+	dynamic     dynamics
 
 	supports      []Support // of Support positions
 	supportsState state
@@ -37,6 +45,8 @@ type row struct {
 	number int // of the file
 	cells  [columnCount]sheet.Cell
 	count  int // cells with content
+
+	setFaulty bool // a load set is faulty: what it would have filled is not missed
 }
 
 // fill sorts the cells of a row by what they mean. Content under no header is a
@@ -165,21 +175,30 @@ func (r *row) readFields() fields {
 		description: r.text(colDescription, longestText), remarks: r.text(colRemarks, longestText),
 		support: r.text(colSupport, longestName), product: r.text(colProduct, longestName),
 		grade: r.text(colGrade, longestName), connection: r.text(colConnection, longestName),
-		length:    r.quantity(colLength, unit.Length, lengths),
-		permanent: r.quantity(colPermanent, unit.LineLoad, loads),
-		variable:  r.quantity(colVariable, unit.LineLoad, loads),
-		point:     r.quantity(colPoint, unit.Force, loads),
-		pointAt:   r.quantity(colPointAt, unit.Length, positions),
-		axial:     r.quantity(colAxial, unit.Force, loads),
-		areaLoad:  r.quantity(colAreaLoad, unit.AreaLoad, loads),
-		width:     r.quantity(colWidth, unit.Length, lengths),
-		overhang:  r.quantity(colOverhang, unit.Length, lengths),
-		factor:    r.quantity(colFactor, unit.Number, factors),
-		area:      r.quantity(colArea, unit.Area, areas),
+		joints: r.text(colJoints, longestText), coating: r.text(colCoating, longestText),
+		execution: r.text(colExecution, longestName), loadSet: r.text(colLoadSet, longestName), sameSize: r.text(colSameSize, longestName),
+		length:       r.quantity(colLength, unit.Length, lengths),
+		permanent:    r.quantity(colPermanent, unit.LineLoad, loads),
+		variable:     r.quantity(colVariable, unit.LineLoad, loads),
+		point:        r.quantity(colPoint, unit.Force, loads),
+		pointAt:      r.quantity(colPointAt, unit.Length, positions),
+		axial:        r.quantity(colAxial, unit.Force, loads),
+		areaLoad:     r.quantity(colAreaLoad, unit.AreaLoad, loads),
+		width:        r.quantity(colWidth, unit.Length, lengths),
+		horizontal:   r.quantity(colHorizontal, unit.LineLoad, loads),
+		depth:        r.quantity(colDepth, unit.Length, depths),
+		overhang:     r.quantity(colOverhang, unit.Length, lengths),
+		factor:       r.quantity(colFactor, unit.Number, factors),
+		momentFactor: r.quantity(colMoment, unit.Number, momentFactors),
+		netArea:      r.quantity(colNet, unit.Number, netFactors),
+		area:         r.quantity(colArea, unit.Area, areas),
 	}
 	f.quantity, f.quantityState = r.quantityOfPieces()
 	f.restraint = r.restraint()
 	f.limit = r.limit()
+	f.frequency = r.frequency()
+	f.moving, f.movingState = r.train()
+	f.dynamic = r.dynamics()
 	f.mass, f.massByArea = r.mass()
 	f.supports, f.supportsState = r.positions()
 	return f
@@ -210,6 +229,16 @@ func (r *row) restraint() number {
 	}
 	return r.quantity(colRestraint, unit.Length, lengths)
 }
+
+// frequency reads a floor; "none" is given and zero.
+func (r *row) frequency() number {
+	if isNone(r.cells[colFrequency]) && !r.layout.lost[colFrequency] {
+		return number{state: given}
+	}
+	return r.quantity(colFrequency, unit.Frequency, frequencies)
+}
+
+func isNone(c sheet.Cell) bool { return c.Kind == sheet.Text && fold(c.Text) == "none" }
 
 func isFullSpan(c sheet.Cell) bool { return c.Kind == sheet.Text && fold(c.Text) == "fullspan" }
 

@@ -78,11 +78,6 @@ func cutLast(text, sep string) (head, tail string, ok bool) {
 // unknownHeading names near misses: other words in use first, then spelling.
 func unknownHeading(text, name string, list []definition) heading {
 	key := fold(name)
-	for _, u := range unavailable {
-		if len(list) == int(columnCount) && fold(u) == key {
-			return heading{wrong: &complaint{shorten(text), "is a column that this version does not read yet", "leave it out and state what it said in Remarks"}}
-		}
-	}
 	var names, suggested []string
 	var lost []int
 	for i, d := range list {

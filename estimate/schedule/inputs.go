@@ -1,6 +1,11 @@
 package schedule
 
-import "spanwright/estimate/assumption"
+import (
+	"slices"
+
+	"spanwright/estimate/assumption"
+	"spanwright/structural/resistance"
+)
 
 // Figures that vary with mass: from the row to the total.
 var (
@@ -9,7 +14,9 @@ var (
 		"group/{group}/net", "group/{group}/delivered", "group/{group}/purchased", "group/{group}/amount",
 		"line/{item}/*", "category/*", "base", "range", "contingency",
 	}
-	bendingFigures = checkFigures("bending", "lateral-torsional buckling", "shear", "interaction", "deflection")
+	bendingFigures  = checkFigures(resistance.Bending, resistance.LateralBuckling, resistance.Shear, resistance.WebBuckling, resistance.Interaction, resistance.Deflecting)
+	sideFigures     = checkFigures(resistance.BendingZ, resistance.ShearY, resistance.Interaction, resistance.Deflecting)
+	frequencyFigure = checkFigures(resistance.Vibrating)
 )
 
 func checkFigures(names ...string) []string {
@@ -23,29 +30,44 @@ func checkFigures(names ...string) []string {
 // InputFeeds returns a register entry for each number that a schedule or its Job
 // sheet gives, with the figures that change with it; {mark}, {group} and {item}
 // stand for those of the members concerned, * for any one segment. A member has
-// only some of the checks named: those of its shape and its loads.
+// only some of the checks named: those of its shape and its loads; of a member in
+// tension no length enters the axial check.
 func InputFeeds() []assumption.Entry {
-	list := []assumption.Entry{
-		input("length", "Lengths are as posted.", "m", append(checkFigures("bending", "lateral-torsional buckling", "shear", "axial", "interaction", "deflection"), massFigures...)),
+	join := func(lists ...[]string) []string {
+		all := slices.Concat(lists...)
+		slices.Sort(all)
+		return slices.Compact(all)
+	}
+	axial := checkFigures(resistance.Axial, resistance.Interaction)
+	return []assumption.Entry{
+		input("length", "Lengths are as posted.", "m", join(bendingFigures, sideFigures, frequencyFigure, axial, massFigures)),
 		input("quantity", "Quantities are as posted.", "", massFigures),
-		input("permanent load", "Permanent loads are as posted; own weight is added.", "kN/m", bendingFigures),
+		input("permanent load", "Permanent loads are as posted; own weight is added.", "kN/m", join(bendingFigures, frequencyFigure)),
 		input("variable load", "Variable loads are as posted.", "kN/m", bendingFigures),
 		input("area load", "Area loads are as posted.", "kN/m²", bendingFigures),
 		input("tributary width", "Tributary widths are as posted.", "m", bendingFigures),
 		input("point load", "Point loads are as posted.", "kN", bendingFigures),
 		input("point position", "Point loads stand where posted.", "m", bendingFigures),
-		input("axial load", "Axial loads are as posted.", "kN", checkFigures("axial", "interaction")),
-		input("overhang", "Overhangs are as posted.", "m", bendingFigures),
-		input("support positions", "Supports stand where posted.", "m", bendingFigures),
-		input("restraint spacing", "Lateral restraints are as posted.", "m", checkFigures("lateral-torsional buckling", "interaction")),
-		input("effective length factor", "Effective length factors are as posted.", "", checkFigures("axial", "interaction")),
-		input("deflection limit", "Deflection limits are as posted.", "", checkFigures("deflection")),
+		input("axial load", "Axial loads are as posted.", "kN", axial),
+		input("horizontal load", "Horizontal loads are as posted and bend members about their weak axis.", "kN/m", sideFigures),
+		input("moving load", "Wheels and their distances are as posted; they cross the whole member in both directions.", "kN", bendingFigures),
+		input("dynamic factor", "Dynamic factors of vertical loads are as posted and stand on the static loads that they name.", "", bendingFigures),
+		input("dynamic factor, horizontal", "Dynamic factors of horizontal loads are as posted and stand on the static loads.", "", sideFigures),
+		input("overhang", "Overhangs are as posted.", "m", join(bendingFigures, sideFigures, frequencyFigure)),
+		input("support positions", "Supports stand where posted.", "m", join(bendingFigures, sideFigures, frequencyFigure)),
+		input("restraint spacing", "Lateral restraints are as posted.", "m", checkFigures(resistance.LateralBuckling, resistance.Interaction)),
+		input("effective length factor", "Effective length factors are as posted.", "", axial),
+		input("moment factor", "Moment factors C1 or Cb are as posted.", "", checkFigures(resistance.LateralBuckling, resistance.Interaction)),
+		input("net area factor", "Net area factors of members in tension are as posted.", "", axial),
+		input("deflection limit", "Deflection limits are as posted.", "", checkFigures(resistance.Deflecting)),
+		input("frequency floor", "Frequency floors are as posted.", "Hz", frequencyFigure),
+		input("max depth", "Sections are no deeper than posted; the limit bounds the choice and enters no figure.", "mm", nil),
+		input("same size as", "Rows of one size get the section that the most heavily used of them needs.", "", nil),
 		input("mass if not sized", "Masses of rows that are not sized are as posted.", "kg/m or kg/m²", massFigures),
 		input("area", "Areas of rows that are not sized are as posted.", "m²", massFigures),
-		input("factor", "The factor on yield is as posted.", "", checkFigures("bending", "lateral-torsional buckling", "shear", "axial", "interaction")),
+		input("factor", "The factor on yield is as posted.", "", checkFigures(resistance.Bending, resistance.BendingZ, resistance.LateralBuckling, resistance.Shear, resistance.ShearY, resistance.Axial, resistance.Interaction)),
 		input("confidence", "The confidence is as posted.", "", []string{"contingency"}),
 	}
-	return list
 }
 
 func input(name, statement, unit string, feeds []string) assumption.Entry {

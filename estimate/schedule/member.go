@@ -21,14 +21,18 @@ type Support struct {
 	Kind     string  `json:"kind" enum:"pinned,fixed"`
 }
 
-// Load is one action of a member besides its uniform line loads.
+// Load is one action of a member at its static value.
 type Load struct {
-	Nature   string  `json:"nature" enum:"permanent,variable"`
-	Kind     string  `json:"kind" enum:"uniform,point"`
-	Value    float64 `json:"value"` // N/m or N, down positive
-	Position float64 `json:"position_m"`
-	Free     bool    `json:"free"` // placed span by span for the worst effect
-	Label    string  `json:"label"`
+	Nature   string    `json:"nature" enum:"permanent,variable"`
+	Kind     string    `json:"kind" enum:"uniform,point,train"`
+	Value    float64   `json:"value"` // N/m or N, down positive, horizontal ones to one side; 0 for a train
+	Position float64   `json:"position_m"`
+	Free     bool      `json:"free"`                 // placed span by span for the worst effect
+	Sideways bool      `json:"horizontal,omitempty"` // bends about the weak axis
+	Wheels   []float64 `json:"wheels_n,omitempty"`   // N, of a train, from the first to the last
+	Spacings []float64 `json:"spacings_m,omitempty"` // m, one fewer than wheels
+	Dynamic  float64   `json:"dynamic,omitempty"`    // dynamic factor on the static value; 0 = 1
+	Label    string    `json:"label"`
 }
 
 // Member is one normalised row: SI units, ten significant digits, every default
@@ -50,13 +54,22 @@ type Member struct {
 	Family          string    `json:"family,omitempty"`  // the family to size from, or of the section
 	Section         string    `json:"section,omitempty"` // the given section
 	Grade           string    `json:"grade,omitempty"`
-	Restraint       float64   `json:"restraint_m,omitempty"`      // lateral restraint spacing; 0 = full span
-	LengthFactor    float64   `json:"length_factor,omitempty"`    // effective length factor K
-	DeflectionLimit float64   `json:"deflection_limit,omitempty"` // n of length / n; 0 = no limit
-	LineMass        float64   `json:"line_mass_kg_m,omitempty"`   // rows that are not sized
+	Restraint       float64   `json:"restraint_m,omitempty"`        // lateral restraint spacing; 0 = full span
+	LengthFactor    float64   `json:"length_factor,omitempty"`      // effective length factor K
+	DeflectionLimit float64   `json:"deflection_limit,omitempty"`   // n of length / n; 0 = no limit
+	MomentFactor    float64   `json:"moment_factor,omitempty"`      // C1 or Cb; 0 = 1
+	NetAreaFactor   float64   `json:"net_area_factor,omitempty"`    // net over gross area in tension; 0 = 1
+	FrequencyFloor  float64   `json:"frequency_floor_hz,omitempty"` // 0 = no check
+	MaxDepth        float64   `json:"max_depth_m,omitempty"`        // of the section; 0 = no limit
+	SameSizeAs      string    `json:"same_size_as,omitempty"`       // mark of another row that gets the same section
+	LoadSet         string    `json:"load_set,omitempty"`           // ready loads that filled blank cells
+	LineMass        float64   `json:"line_mass_kg_m,omitempty"`     // rows that are not sized
 	AreaMass        float64   `json:"area_mass_kg_m2,omitempty"`
 	Area            float64   `json:"area_m2,omitempty"` // of one piece
+	Joints          string    `json:"joints,omitempty"`  // recorded
 	ConnectionClass string    `json:"connection_class"`
+	Coating         string    `json:"coating,omitempty"`         // recorded, where not that of the job
+	ExecutionClass  string    `json:"execution_class,omitempty"` // recorded, where not that of the job
 	Remarks         string    `json:"remarks,omitempty"`
 
 	// Defaults names the register entries whose value this row took, by field.
@@ -70,11 +83,12 @@ type Member struct {
 type Settings struct {
 	Project         string  `json:"project"`
 	Scheme          string  `json:"scheme"`
-	DesignBasis     string  `json:"design_basis" enum:"allowable"`
-	Factor          float64 `json:"factor"` // on yield, design basis allowable
+	DesignBasis     string  `json:"design_basis" enum:"allowable,en1993,aisc-asd,aisc-lrfd"`
+	Factor          float64 `json:"factor"` // on yield, design basis allowable; 0 in the others
 	Grade           string  `json:"grade"`
-	DeflectionLimit float64 `json:"deflection_limit"` // n of length / n
-	Restraint       float64 `json:"restraint_m"`      // 0 = full span
+	DeflectionLimit float64 `json:"deflection_limit"`             // n of length / n
+	FrequencyFloor  float64 `json:"frequency_floor_hz,omitempty"` // 0 = no check
+	Restraint       float64 `json:"restraint_m"`                  // 0 = full span
 	ConnectionClass string  `json:"connection_class,omitempty"`
 	Coating         string  `json:"coating,omitempty"`         // recorded; the ratio book prices coating as one multiple
 	ExecutionClass  string  `json:"execution_class,omitempty"` // recorded; the ratio book prices inspection as one multiple
@@ -83,6 +97,9 @@ type Settings struct {
 	Currency        string  `json:"currency"`
 	BaseDate        string  `json:"base_date"` // yyyy-mm-dd
 	Confidence      float64 `json:"confidence"`
+	WindSpeed       float64 `json:"wind_speed_m_s,omitempty"`   // of the site, for ready loads
+	Terrain         string  `json:"terrain,omitempty"`          // category or exposure, for ready loads
+	GroundSnow      float64 `json:"ground_snow_n_m2,omitempty"` // for ready loads
 }
 
 // Echo is what a posted schedule says in total, shown before it is accepted.
@@ -93,10 +110,11 @@ type Echo struct {
 
 // EchoMember is the load of one member as read, without its own weight.
 type EchoMember struct {
-	Mark      string  `json:"mark"`
-	Permanent float64 `json:"permanent_kn"`
-	Variable  float64 `json:"variable_kn"`
-	Axial     float64 `json:"axial_kn"`
+	Mark       string  `json:"mark"`
+	Permanent  float64 `json:"permanent_kn"`
+	Variable   float64 `json:"variable_kn"` // vertical, with dynamic factors, the wheels of a train included
+	Horizontal float64 `json:"horizontal_kn,omitempty"`
+	Axial      float64 `json:"axial_kn"`
 }
 
 // EchoGroup is the tonnage of one group. Sized members are counted when their

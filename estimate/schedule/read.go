@@ -45,8 +45,12 @@ type reader struct {
 	members    []Member
 	rows       int
 	maxMembers int
-	marks      map[string]int // row by mark
-	headless   map[int]bool   // columns without a header whose content is reported
+	marks      map[string]int  // row by mark
+	sizes      map[string]tied // by mark
+	unmarked   bool            // a mark is faulty, so that one may seem missing
+	ties       []tie
+	siteLacks  map[string]bool // what the Job sheet does not say for load sets and is reported
+	headless   map[int]bool    // columns without a header whose content is reported
 	ranges     map[string]bool
 	products   memory[string, product]
 	grades     memory[string, grade]
@@ -58,7 +62,7 @@ type reader struct {
 func newReader(o Options) *reader {
 	r := &reader{
 		classes: o.ConnectionClasses, maxMembers: o.MaxMembers, defaults: newDefaults(),
-		marks: map[string]int{}, headless: map[int]bool{}, ranges: map[string]bool{},
+		marks: map[string]int{}, sizes: map[string]tied{}, siteLacks: map[string]bool{}, headless: map[int]bool{}, ranges: map[string]bool{},
 		products: memory[string, product]{}, grades: memory[string, grade]{}, verdicts: memory[[2]string, material.Verdict]{},
 		unsuited: map[string][]int{}, texts: memory[string, string]{},
 	}
@@ -216,6 +220,7 @@ func (r *reader) finish(err error) (Schedule, error) {
 		return Schedule{}, fmt.Errorf("reading the schedule: %w", err)
 	}
 	r.reportUnsuited()
+	r.reportTies()
 	if r.layout.row == 0 {
 		r.report(r.address(0, 0), "", "", "the schedule is empty", "a header row with at least "+strings.Join(obligatory(), ", ")+", and rows under it")
 	} else if r.rows == 0 && !r.hopeless {

@@ -18,6 +18,9 @@ type jobSettings struct {
 	entries [jobCount]jobEntry
 }
 
+// lost tells whether a fault of the key or its value is reported.
+func (j *jobSettings) lost(id jobID) bool { return j.entries[id].cell.Kind == lostKind }
+
 // jobEntry is the value of one key.
 type jobEntry struct {
 	cell    sheet.Cell

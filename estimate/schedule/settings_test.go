@@ -11,9 +11,12 @@ const oneBeam = "Mark,Quantity,Length (m),Section or family,Permanent load (kN/m
 
 func TestFaultsOfSettings(t *testing.T) {
 	for _, c := range []struct{ key, value, at, problem, remedy string }{
-		{"Standard", "aisc-lrfd", "Job!B1", "not available yet", "allowable"},
-		{"Standard", "AISC ASD", "Job!B1", "not available yet", "allowable"},
-		{"Standard", "en1993", "Job!B1", "not available yet", "allowable"},
+		{"Standard", "AISC 360", "Job!B1", "no design basis", "AISC 360 LRFD"},
+		{"Standard", "BS 5950", "Job!B1", "no design basis", "en1993"},
+		{"Standard", "en1994", "Job!B1", "no design basis", "en1993"},
+		{"Frequency floor (Hz)", "0", "Job!B1", "out of bounds", "none"},
+		{"Frequency floor", "4", "Job!B1", "no unit", "Hz"},
+		{"Execution class", "EXC9", "Job!B1", "no execution class", "EXC2"},
 		{"Standard", "alowable", "Job!B1", "no design basis", "allowable"},
 		{"Grade", "S999", "Job!B1", "no steel grade", "S"},
 		{"Grade", "A53 B", "Job!B1", "does not suit IPE of row 2", "name a grade"},

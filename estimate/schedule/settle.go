@@ -46,41 +46,25 @@ func (r *reader) jobText(id jobID) string {
 func (r *reader) settle() {
 	s := &r.job.Settings
 	s.Project, s.Scheme = r.jobText(jobProject), r.jobText(jobScheme)
-	s.Coating, s.ExecutionClass, s.StockLengths = r.jobText(jobCoating), r.jobText(jobExecution), r.jobText(jobStock)
+	s.Coating, s.ExecutionClass, s.StockLengths = r.jobText(jobCoating), r.jobExecution(), r.jobText(jobStock)
 	s.DesignBasis = r.designBasis()
 	s.Factor = r.jobFactor()
 	s.Grade = r.jobGrade()
 	s.DeflectionLimit = r.jobLimit()
+	s.FrequencyFloor = r.jobFrequency()
 	s.Restraint = r.jobRestraint()
 	s.ConnectionClass = r.jobConnection()
 	s.EstimateClass = r.estimateClass()
 	s.Currency = r.currency()
 	s.BaseDate = r.baseDate()
 	s.Confidence = r.confidence()
+	s.WindSpeed, s.Terrain = r.windSpeed(), r.terrain()
+	s.GroundSnow = r.siteQuantity(jobGroundSnow, unit.AreaLoad, snows)
 }
 
 // setting enters the default of a setting left blank.
 func (r *reader) setting(id, value, statement string, c assumption.Confidence, feeds ...string) {
 	r.defaults.enter(assumption.Entry{ID: id, Statement: statement, Value: value, Confidence: c, Feeds: feeds})
-}
-
-// bases are the design bases by the words that name them; only the first is
-// available.
-var bases = []string{defaultBasis, "en1993", "aisc-asd", "aisc-lrfd"}
-
-func (r *reader) designBasis() string {
-	found := r.jobText(jobStandard)
-	key := fold(found)
-	switch {
-	case found == "" && !r.job.given[jobStandard]:
-		r.setting(basisEntry, defaultBasis, "Members are checked by allowable stress, yield over one factor.", assumption.Medium)
-	case found == "" || key == defaultBasis:
-	case strings.Contains(key, "1993"), strings.Contains(key, "eurocode"), strings.Contains(key, "aisc"):
-		r.jobFault(jobStandard, &complaint{shorten(found), "is a design basis that is not available yet", "allowable"})
-	default:
-		r.jobFault(jobStandard, &complaint{shorten(found), "is no design basis", didYouMean(near(found, bases[:1]), "allowable")})
-	}
-	return defaultBasis
 }
 
 // jobQuantity reads a plain number within bounds.
@@ -105,6 +89,14 @@ func (r *reader) jobQuantity(id jobID, d unit.Dimension, s span) number {
 
 func (r *reader) jobFactor() float64 {
 	n := r.jobQuantity(jobFactor, unit.Number, yieldFactor)
+	switch basis := r.job.DesignBasis; {
+	case r.job.entries[jobStandard].cell.Kind == lostKind: // the factor may belong to what was meant
+	case basis != defaultBasis && n.state == given:
+		r.jobFault(jobFactor, &complaint{shorten(r.job.entries[jobFactor].cell.Text), "is a factor of design basis allowable, and Standard says " + basis, "leave it blank: " + basis + " has its own factors"})
+		return 0
+	case basis != defaultBasis:
+		return 0
+	}
 	if n.state == blank {
 		r.setting(factorEntry, fixedText(defaultFactor), "The factor on yield is 3, a comfortable first pass where loads are rough.", assumption.Low)
 		return defaultFactor
@@ -148,6 +140,36 @@ func (r *reader) jobRestraint() float64 {
 		return 0
 	}
 	return r.jobQuantity(jobRestraint, unit.Length, lengths).value
+}
+
+func (r *reader) jobFrequency() float64 {
+	if isNone(r.job.entries[jobFrequency].cell) {
+		return 0
+	}
+	return r.jobQuantity(jobFrequency, unit.Frequency, frequencies).value
+}
+
+// executionClasses are those of EN 1090-2:2018, annex A and EN 1993-1-1 annex C.
+var executionClasses = []string{"EXC1", "EXC2", "EXC3", "EXC4"}
+
+func executionClass(found string) (string, bool) {
+	i := slices.IndexFunc(executionClasses, func(c string) bool { return fold(c) == fold(found) })
+	if i < 0 {
+		return "", false
+	}
+	return executionClasses[i], true
+}
+
+func (r *reader) jobExecution() string {
+	found := r.jobText(jobExecution)
+	if found == "" {
+		return ""
+	}
+	class, ok := executionClass(found)
+	if !ok {
+		r.jobFault(jobExecution, &complaint{shorten(found), "is no execution class", "one of " + strings.Join(executionClasses, ", ")})
+	}
+	return class
 }
 
 func (r *reader) jobConnection() string {

@@ -40,13 +40,15 @@ var arrangements = []struct {
 	{atPlaces, []string{"support positions"}},
 }
 
-func supportWords() string {
+func supportNames() []string {
 	var words []string
 	for _, a := range arrangements {
 		words = append(words, a.word)
 	}
-	return strings.Join(words, ", ")
+	return words
 }
+
+func supportWords() string { return strings.Join(supportNames(), ", ") }
 
 // arrangement settles how the member is held: the word of Support, or the given
 // positions. The second result tells whether "simple" is a default.

@@ -131,7 +131,7 @@ func TestFourteenPlantedFaults(t *testing.T) {
 		check(f.MergeCell("Schedule", "F6", "G6"))               // G6 covered
 		check(f.SetCellStr("Schedule", "R8", "0 fixed; 28; 43")) // support outside
 		check(f.SetCellStr("Schedule", "W10", "25 ton/m2"))      // bare ton
-		check(f.SetCellStr("Job", "B5", "EN 1993-1-1"))          // not available yet
+		check(f.SetCellStr("Job", "B5", "EN 1994-1-1"))          // composite structures: no basis
 		check(f.SetCellStr("Job", "A8", "Fcator"))               // misspelt key
 		set("Job", "B14", 6)                                     // no such class
 	})

@@ -1,12 +1,14 @@
-// Package action holds what loads a member: single actions, and the factors with
-// which they are combined.
+// Package action holds what loads a member: single actions, the factors with which
+// they are combined, and ready loads for usual uses.
 //
 // Data's way: the schedule reads a row's loads (an area load goes through
-// Tributary) into Actions; Validate refuses what does not fit the member; sizing
-// sorts them by Nature and Free into load cases for the beam analysis, and the
-// Combination gives each case its factor.
+// Tributary; an empty cell may be filled from Ready) into Actions; Validate refuses
+// what does not fit the member; sizing sorts them by Direction, Nature and Free into
+// load cases for the beam analysis; Sets names the Combinations of the design basis,
+// which give each case its factor.
 //
-// Values are characteristic values, SI, vertical, down positive.
+// Values are characteristic values, SI: vertical ones down positive, horizontal ones
+// to one side positive.
 package action
 
 import (
@@ -35,101 +37,116 @@ func (n Nature) String() string {
 	return fmt.Sprintf("nature %d", uint8(n))
 }
 
+// Direction is the plane in which an action bends the member. The zero value is
+// Vertical.
+type Direction uint8
+
+// The directions of an action.
+const (
+	Vertical   Direction = iota // in the depth: bends about the strong axis
+	Horizontal                  // along the width: bends about the weak axis
+)
+
+// String returns "vertical" or "horizontal".
+func (d Direction) String() string {
+	switch d {
+	case Vertical:
+		return "vertical"
+	case Horizontal:
+		return "horizontal"
+	}
+	return fmt.Sprintf("direction %d", uint8(d))
+}
+
 // Kind is the form of an action along the member.
 type Kind uint8
 
 // The kinds of action.
 const (
-	Uniform Kind = iota // force per length over an extent
-	Point               // force at one position
+	Uniform     Kind = iota // force per length over an extent
+	Point                   // force at one position
+	Moment                  // couple at one position
+	Linear                  // force per length that runs straight from one value to another
+	MovingTrain             // wheels that cross the member; vertical and variable
 )
 
-// String returns "uniform" or "point".
+var kindNames = [...]string{
+	Uniform: "uniform", Point: "point", Moment: "moment", Linear: "linear", MovingTrain: "moving train",
+}
+
+// String returns "uniform", "point", "moment", "linear" or "moving train".
 func (k Kind) String() string {
-	switch k {
-	case Uniform:
-		return "uniform"
-	case Point:
-		return "point"
+	if int(k) < len(kindNames) {
+		return kindNames[k]
 	}
 	return fmt.Sprintf("kind %d", uint8(k))
 }
 
-// Action is one load on one member, at its characteristic value.
-type Action struct {
-	Nature Nature
-	Free   bool // placed span by span for the worst effect (EN 1990:2002 1.5.3.8); only for a variable action
-	Kind   Kind
-	From   float64 // m from the member's left end: start of a uniform action, position of a point action
-	To     float64 // m: end of a uniform action; To ≤ 0 with From 0 means the whole member; unused for a point action
-	Value  float64 // N/m (Uniform) or N (Point), down +
-	Label  string  // what the user calls it; used in errors and explanations
+// distributed tells whether the kind has an extent.
+func (k Kind) distributed() bool { return k == Uniform || k == Linear }
+
+// Train is a row of wheels at constant spacing that crosses the member in both
+// directions. Wheels off the member carry nothing.
+type Train struct {
+	Loads    []float64 // N, down +, 0 or more, from the leading wheel backwards
+	Spacings []float64 // m, above 0, one fewer than Loads
 }
 
-// Extent returns where the action starts and ends on a member of the given
-// length, both in m. A point action starts and ends at its position.
+// Action is one load on one member, at its characteristic value.
+type Action struct {
+	Nature    Nature
+	Free      bool // placed span by span for the worst effect (EN 1990:2002 1.5.3.8); only for a variable action
+	Direction Direction
+	Kind      Kind
+	From      float64 // m from the member's left end: start of a distributed action, position of a point action or couple
+	To        float64 // m: end of a distributed action; To ≤ 0 with From 0 means the whole member; unused for the others
+	Value     float64 // N/m (Uniform; Linear at From), N (Point), N·m (Moment, clockwise +); unused for a train
+	End       float64 // N/m at To; of a Linear action only
+	Dynamic   float64 // dynamic factor on the static value, 1 or more; 0 stands for 1
+	Train     Train   // of a MovingTrain only
+	Label     string  // what the user calls it; used in errors and explanations
+}
+
+// Extent returns where the action starts and ends on a member of the given length,
+// both in m. A point action or couple starts and ends at its position; a train may
+// stand anywhere.
 func (a Action) Extent(length float64) (from, to float64) {
 	switch {
-	case a.Kind == Point:
+	case a.Kind == Point || a.Kind == Moment:
 		return a.From, a.From
-	case a.From == 0 && a.To <= 0:
+	case a.Kind == MovingTrain || a.From == 0 && a.To <= 0:
 		return 0, length
 	}
 	return a.From, a.To
 }
 
-// Total returns the sum of the action on a member of the given length (m), in N.
+// Factor returns the dynamic factor, 1 where none is stated.
+func (a Action) Factor() float64 {
+	if a.Dynamic == 0 {
+		return 1
+	}
+	return a.Dynamic
+}
+
+// Total returns the sum of the action on a member of the given length (m), in N,
+// with its dynamic factor. A couple has none; a train counts all its wheels, whether
+// they fit on the member or not.
 func (a Action) Total(length float64) float64 {
-	if a.Kind == Point {
-		return a.Value
-	}
 	from, to := a.Extent(length)
-	return a.Value * (to - from)
-}
-
-// Validate refuses an action that does not fit a member of the given length (m):
-// an unknown nature or kind, a permanent action marked free, a value that is not
-// finite, or a position off the member. The error names the action by its label,
-// says what was found and what would be accepted.
-func (a Action) Validate(length float64) error {
-	if !(length > 0 && length <= math.MaxFloat64) {
-		return fmt.Errorf("%s: the member's length is %v m; accepted is a length above 0", a.name(), length)
-	}
-	if a.Nature > Permanent {
-		return fmt.Errorf("%s: unknown nature %d; accepted are variable and permanent", a.name(), a.Nature)
-	}
-	if a.Free && a.Nature == Permanent {
-		return fmt.Errorf("%s: a permanent action is marked free; only a variable action can be placed span by span", a.name())
-	}
-	if !(math.Abs(a.Value) <= math.MaxFloat64) {
-		return fmt.Errorf("%s: value %v; accepted is a finite number", a.name(), a.Value)
-	}
-	return a.validateExtent(length)
-}
-
-func (a Action) validateExtent(length float64) error {
-	from, to := a.Extent(length)
+	sum := 0.0
 	switch a.Kind {
 	case Uniform:
-		if !(0 <= from && from < to && to <= length) {
-			return fmt.Errorf("%s: runs from %v m to %v m; accepted is 0 ≤ from < to ≤ %v m, or 0 and 0 for the whole member",
-				a.name(), a.From, a.To, length)
-		}
+		sum = a.Value * (to - from)
+	case Linear:
+		sum = (a.Value + a.End) / 2 * (to - from)
 	case Point:
-		if !(0 <= from && from <= length) {
-			return fmt.Errorf("%s: stands at %v m; accepted is a position from 0 to %v m", a.name(), a.From, length)
+		sum = a.Value
+	case MovingTrain:
+		for _, p := range a.Train.Loads {
+			sum += p
 		}
-	default:
-		return fmt.Errorf("%s: unknown kind %d; accepted are uniform and point", a.name(), a.Kind)
 	}
-	return nil
-}
-
-func (a Action) name() string {
-	if a.Label == "" {
-		return fmt.Sprintf("%v %v action", a.Nature, a.Kind)
-	}
-	return fmt.Sprintf("action %q", a.Label)
+	return sum * a.Factor()
 }
 
 // Tributary turns an area load (N/m², down +) over a tributary width (m) into a

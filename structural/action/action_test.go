@@ -31,6 +31,10 @@ func TestTotal(t *testing.T) {
 		{"from the start to a point", Action{Value: 4000, To: 3}, 12000},
 		{"uplift", Action{Value: -4000, To: 3}, -12000},
 		{"point", Action{Kind: Point, Value: 4000, From: 2}, 4000},
+		{"linear", Action{Kind: Linear, Value: 2000, End: 4000, From: 1, To: 5}, 12000},
+		{"couple", Action{Kind: Moment, Value: 4000, From: 2}, 0},
+		{"train", Action{Kind: MovingTrain, Train: Train{Loads: []float64{3000, 5000}, Spacings: []float64{1}}}, 8000},
+		{"with a dynamic factor", Action{Kind: Point, Value: 4000, From: 2, Dynamic: 1.25}, 5000},
 	} {
 		if got := tc.a.Total(7.5); got != tc.want {
 			t.Errorf("%s: total %v N, want %v N", tc.name, got, tc.want)
@@ -45,6 +49,9 @@ func TestValidateAccepts(t *testing.T) {
 		{Nature: Permanent, Value: 3000, From: 1, To: 6},
 		{Kind: Point, Value: 5000},
 		{Kind: Point, Value: 5000, From: 6},
+		{Kind: Moment, Value: -5000, From: 3, Direction: Horizontal},
+		{Kind: Linear, Value: 0, End: 3000, From: 1, To: 6, Free: true},
+		{Kind: MovingTrain, Dynamic: 1.4, Train: Train{Loads: []float64{1, 0, 2}, Spacings: []float64{9, 0.5}}},
 	} {
 		if err := a.Validate(6); err != nil {
 			t.Errorf("%+v refused: %v", a, err)
@@ -62,7 +69,7 @@ func TestValidateRefusesByName(t *testing.T) {
 	}{
 		{"free permanent", Action{Nature: Permanent, Free: true, Label: "grating"}, 6, []string{`"grating"`, "permanent", "free"}},
 		{"nature", Action{Nature: 7}, 6, []string{"nature 7", "variable and permanent"}},
-		{"kind", Action{Kind: 9}, 6, []string{"kind 9", "uniform and point"}},
+		{"kind", Action{Kind: 9}, 6, []string{"kind 9", "uniform, point"}},
 		{"value not a number", Action{Value: nan}, 6, []string{"value NaN", "finite"}},
 		{"value infinite", Action{Value: -inf}, 6, []string{"value -Inf"}},
 		{"runs past the end", Action{From: 2, To: 7}, 6, []string{"2 m to 7 m", "≤ 6 m"}},
@@ -73,6 +80,21 @@ func TestValidateRefusesByName(t *testing.T) {
 		{"end not a number", Action{To: nan}, 6, []string{"NaN"}},
 		{"point off the member", Action{Kind: Point, From: 6.1}, 6, []string{"6.1 m", "0 to 6 m"}},
 		{"point position not a number", Action{Kind: Point, From: nan}, 6, []string{"NaN"}},
+		{"direction", Action{Direction: 4}, 6, []string{"direction 4", "vertical and horizontal"}},
+		{"dynamic below 1", Action{Dynamic: 0.9}, 6, []string{"dynamic factor 0.9", "1 to 10"}},
+		{"dynamic not a number", Action{Dynamic: nan}, 6, []string{"dynamic factor NaN"}},
+		{"end value of a uniform action", Action{Value: 1, End: 2}, 6, []string{"end value 2"}},
+		{"end value not a number", Action{Kind: Linear, End: nan}, 6, []string{"end value NaN"}},
+		{"couple off the member", Action{Kind: Moment, From: 7}, 6, []string{"7 m", "0 to 6 m"}},
+		{"linear runs backwards", Action{Kind: Linear, From: 4, To: 3}, 6, []string{"4 m to 3 m"}},
+		{"wheels on a point action", Action{Kind: Point, Train: Train{Loads: []float64{1}}}, 6, []string{"has wheels"}},
+		{"train without wheels", Action{Kind: MovingTrain}, 6, []string{"0 wheels"}},
+		{"train with a spacing too many", Action{Kind: MovingTrain, Train: Train{Loads: []float64{1}, Spacings: []float64{1}}}, 6, []string{"1 wheels with 1 spacings"}},
+		{"wheel pulls up", Action{Kind: MovingTrain, Train: Train{Loads: []float64{-1}}}, 6, []string{"wheel 1 weighs -1"}},
+		{"spacing not a number", Action{Kind: MovingTrain, Train: Train{Loads: []float64{1, 1}, Spacings: []float64{nan}}}, 6, []string{"spacing 1 is NaN"}},
+		{"permanent train", Action{Kind: MovingTrain, Nature: Permanent, Train: Train{Loads: []float64{1}}}, 6, []string{"permanent vertical train"}},
+		{"sideways train", Action{Kind: MovingTrain, Direction: Horizontal, Train: Train{Loads: []float64{1}}}, 6, []string{"variable horizontal train"}},
+		{"train with a value", Action{Kind: MovingTrain, Value: 3, Train: Train{Loads: []float64{1}}}, 6, []string{"value 3"}},
 		{"member without length", Action{}, 0, []string{"length is 0 m"}},
 		{"member length not a number", Action{}, nan, []string{"NaN"}},
 		{"member length infinite", Action{}, inf, []string{"+Inf"}},
@@ -94,7 +116,7 @@ func TestValidExtentLiesOnTheMember(t *testing.T) {
 	rapid.Check(t, func(t *rapid.T) {
 		length := rapid.Float64Range(0.1, 100).Draw(t, "length")
 		a := Action{
-			Kind:  Kind(rapid.IntRange(0, 1).Draw(t, "kind")),
+			Kind:  Kind(rapid.SampledFrom([]int{int(Uniform), int(Point), int(Moment), int(Linear)}).Draw(t, "kind")),
 			From:  rapid.Float64Range(-10, 110).Draw(t, "from"),
 			To:    rapid.Float64Range(-10, 110).Draw(t, "to"),
 			Value: rapid.Float64Range(-1e6, 1e6).Draw(t, "value"),
@@ -106,8 +128,8 @@ func TestValidExtentLiesOnTheMember(t *testing.T) {
 		if !(0 <= from && from <= to && to <= length) {
 			t.Fatalf("%+v on %v m extends from %v to %v", a, length, from, to)
 		}
-		if a.Kind == Uniform && from == to {
-			t.Fatalf("%+v is a uniform action without extent", a)
+		if a.Kind.distributed() && from == to {
+			t.Fatalf("%+v is a distributed action without extent", a)
 		}
 	})
 }
@@ -130,48 +152,12 @@ func TestTributary(t *testing.T) {
 	}
 }
 
-func TestCharacteristicCombination(t *testing.T) {
-	// EN 1990:2002 6.5.3 (6.14b): partial factors are 1.0 in serviceability combinations.
-	c := Characteristic()
-	if err := c.Validate(); err != nil {
-		t.Fatal(err)
-	}
-	if c.Factor(Permanent) != 1 || c.Factor(Variable) != 1 {
-		t.Errorf("factors %v and %v, want 1 and 1", c.Factor(Permanent), c.Factor(Variable))
-	}
-	if !strings.Contains(c.Clause, "6.14b") {
-		t.Errorf("clause %q lacks the expression", c.Clause)
-	}
-}
-
-func TestCombinationFactorFollowsNature(t *testing.T) {
-	c := Combination{Permanent: 1.35, Variable: 1.5}
-	if c.Factor(Permanent) != 1.35 || c.Factor(Variable) != 1.5 {
-		t.Errorf("factors %v and %v, want 1.35 and 1.5", c.Factor(Permanent), c.Factor(Variable))
-	}
-}
-
-func TestCombinationRefuses(t *testing.T) {
-	for _, tc := range []struct {
-		c    Combination
-		want string
-	}{
-		{Combination{Name: "a"}, "nothing would act"},
-		{Combination{Name: "a", Permanent: -1, Variable: 1}, "permanent actions is -1"},
-		{Combination{Name: "a", Permanent: 1, Variable: math.NaN()}, "variable actions is NaN"},
-		{Combination{Name: "a", Permanent: math.Inf(1), Variable: 1}, "+Inf"},
-	} {
-		err := tc.c.Validate()
-		if err == nil || !strings.Contains(err.Error(), tc.want) {
-			t.Errorf("%+v: error %v, want one with %q", tc.c, err, tc.want)
-		}
-	}
-}
-
 func TestNames(t *testing.T) {
 	for _, tc := range []struct{ got, want string }{
 		{Variable.String(), "variable"}, {Permanent.String(), "permanent"}, {Nature(5).String(), "nature 5"},
 		{Uniform.String(), "uniform"}, {Point.String(), "point"}, {Kind(5).String(), "kind 5"},
+		{Moment.String(), "moment"}, {Linear.String(), "linear"}, {MovingTrain.String(), "moving train"},
+		{Vertical.String(), "vertical"}, {Horizontal.String(), "horizontal"}, {Direction(5).String(), "direction 5"},
 	} {
 		if tc.got != tc.want {
 			t.Errorf("got %q, want %q", tc.got, tc.want)

@@ -80,7 +80,7 @@ func TestFrequencyFile(t *testing.T) {
 			masses = append(masses, Mass{s.X0, s.X1, s.A * 7850})
 		}
 		want := f.Cases[i].Out.F1
-		closer(t, b.ID, frequency(t, model, masses...), want, want, 1.6e-5)
+		closer(t, b.ID, frequency(t, model, masses...), want, want, 1e-5)
 	}
 }
 

@@ -71,34 +71,35 @@ func (p *Passage) Extremes() PassageExtremes {
 // the response tell where to look, golden section finds the place.
 func (p *Passage) polish(kind int, x, sign float64) Placed {
 	length := p.moving.lines.mesh.length
-	best := Placed{Value: math.Inf(-1)}
-	look := func(x float64) float64 {
-		for _, side := range [2]Side{Left, Right} {
-			var b [lineKinds]PlacedBounds
-			b[lineMoment], b[lineShear], b[lineDown] = p.At(x, side)
-			v := b[kind].Max
-			if sign < 0 {
-				v = b[kind].Min
-			}
-			if v.Value *= sign; v.Value > best.Value {
-				best = v
-			}
-		}
-		return -best.Value
-	}
-	look(x)
+	best := p.extreme(kind, x, sign)
 	reach := 1e-4 * length
 	golden(func(x float64) float64 {
-		b := best
-		best.Value = math.Inf(-1)
-		v := look(x)
-		if b.Value+noise*math.Abs(b.Value) >= best.Value {
-			best = b
+		v := p.extreme(kind, x, sign)
+		if v.Value > best.Value+noise*math.Abs(best.Value) {
+			best = v
 		}
-		return v
+		return -v.Value
 	}, max(0, x-reach), min(length, x+reach), 1e-9*length)
 	best.Value *= sign
 	return best
+}
+
+// extreme returns the extreme at x from either side, its value times sign.
+func (p *Passage) extreme(kind int, x, sign float64) Placed {
+	var out Placed
+	for _, side := range [2]Side{Left, Right} {
+		var b [lineKinds]PlacedBounds
+		b[lineMoment], b[lineShear], b[lineDown] = p.At(x, side)
+		v := b[kind].Max
+		if sign < 0 {
+			v = b[kind].Min
+		}
+		v.Value *= sign
+		if side == Left || v.Value > out.Value {
+			out = v
+		}
+	}
+	return out
 }
 
 // golden returns where f is least between a and b, to within tol (golden-section

@@ -33,8 +33,9 @@ type span struct {
 }
 
 // Response holds the shears, moments, slopes and deflections of every case, as
-// polynomials on common pieces, and the reactions. It is never changed after
-// Analyse: any number of goroutines may read it.
+// polynomials on common pieces, and the reactions; of trains their bounds. It is
+// never changed after Analyse or AnalyseTrains: any number of goroutines may read
+// it. That of an Analyser belongs to it.
 type Response struct {
 	x          []float64 // stations, m
 	curved     []bool    // per piece: some case has a load that varies there

@@ -114,19 +114,7 @@ func (s *sweep) piece(p, kind int, hi, lo *Extreme, first bool) (start, end Boun
 		w.open(start, first)
 	} else {
 		var up, down poly
-		single := s.begin(tracks, deg, &up, &down)
-		for i := range s.terms {
-			t := &s.terms[i]
-			if train := t.Case - r.solved; train >= 0 {
-				single = false
-				hi, lo := &tracks[t.Case].c, &r.lower[kind][p*r.trains+train]
-				if t.Factor < 0 {
-					hi, lo = lo, hi
-				}
-				up.add(deg, t.Factor, hi)
-				down.add(deg, t.Factor, lo)
-			}
-		}
+		single := s.begin(p, kind, deg, &up, &down)
 		start = Bounds{up[0], down[0]}
 		w.open(start, first)
 		from := 0.0
@@ -156,37 +144,52 @@ func (s *sweep) straight(tracks []track) (start, end Bounds) {
 }
 
 // begin sets up the two polynomials at the start of a piece and lists the
-// events in it, in order. single tells that no free term acts in the piece.
-func (s *sweep) begin(tracks []track, deg int, up, down *poly) (single bool) {
+// events in it, in order. single tells that no free term and no train acts in
+// the piece: the polynomials are one.
+func (s *sweep) begin(p, kind, deg int, up, down *poly) (single bool) {
+	r := s.r
+	tracks := r.tracks[kind][p*r.cases : (p+1)*r.cases]
 	s.events = s.events[:0]
 	single = true
 	for i := range s.terms {
+		if t := &s.terms[i]; !t.Free && t.Case < r.solved {
+			up.add(deg, t.Factor, &tracks[t.Case].c)
+		}
+	}
+	*down = *up
+	for i := range s.terms {
 		t := &s.terms[i]
-		tr := &tracks[t.Case]
-		if t.Factor == 0 || t.Case >= s.r.solved {
-			continue
-		}
-		if !t.Free {
-			up.add(deg, t.Factor, &tr.c)
-			down.add(deg, t.Factor, &tr.c)
-			continue
-		}
-		if tr.first == 0 {
-			continue
-		}
-		above := (tr.first > 0) == (t.Factor > 0)
-		if above {
-			up.add(deg, t.Factor, &tr.c)
-		} else {
-			down.add(deg, t.Factor, &tr.c)
-		}
-		single = false
-		for k := range tr.n {
-			above = !above
-			s.insert(event{tr.roots[k], int32(i), above})
+		switch {
+		case t.Case >= r.solved:
+			single = false
+			hi, lo := &tracks[t.Case].c, &r.lower[kind][p*r.trains+t.Case-r.solved]
+			if t.Factor < 0 {
+				hi, lo = lo, hi
+			}
+			up.add(deg, t.Factor, hi)
+			down.add(deg, t.Factor, lo)
+		case t.Free && t.Factor != 0 && tracks[t.Case].first != 0:
+			single = false
+			s.free(i, &tracks[t.Case], deg, up, down)
 		}
 	}
 	return single
+}
+
+// free adds free term i to the polynomial that it starts in and lists where it
+// changes over.
+func (s *sweep) free(i int, tr *track, deg int, up, down *poly) {
+	f := s.terms[i].Factor
+	above := (tr.first > 0) == (f > 0)
+	if above {
+		up.add(deg, f, &tr.c)
+	} else {
+		down.add(deg, f, &tr.c)
+	}
+	for k := range tr.n {
+		above = !above
+		s.insert(event{tr.roots[k], int32(i), above})
+	}
 }
 
 // insert keeps the few events in order.

@@ -6,7 +6,7 @@ import (
 )
 
 // largestTrain bounds the wheels of a train: the work grows with their square.
-const largestTrain = 200
+const largestTrain = 32
 
 // Train is a row of wheels that crosses the member at constant spacing, in both
 // directions. Wheel k stands at lead - direction × (spacing 1 + … + spacing k):

@@ -158,6 +158,7 @@ func TestNearMisses(t *testing.T) {
 		"A572":    "A572 42",
 		"A500":    "A500 A",
 		"304":     "1.4301",
+		"SA106 C": "A106 B",
 		"S355Q":   "S355",
 		"St 37-2": "S235",
 		"St52-3":  "S355",
@@ -168,6 +169,10 @@ func TestNearMisses(t *testing.T) {
 		if !errors.As(err, &unknown) || len(unknown.Near) == 0 || unknown.Near[0] != want {
 			t.Errorf("Find(%q): %v; want a suggestion of %s first", found, err, want)
 		}
+	}
+	var unknown *UnknownError
+	if _, err := Find("S999"); !errors.As(err, &unknown) || len(unknown.Near) != 0 {
+		t.Errorf("Find(S999): %v; want no suggestion", err)
 	}
 	_, err := Find("St 52-3")
 	if want := `unknown steel grade "St 52-3"; did you mean S355?`; err == nil || err.Error() != want {

@@ -62,9 +62,13 @@ func canonical(name string) string {
 	return c
 }
 
-// near returns up to three grades whose spelling is close to name.
+// near returns up to three grades whose spelling is close to name and that begin
+// with the same letter or digit: S999 is a slip of no ASTM grade.
 func (d *data) near(name string) []string {
 	c := compact(name)
+	if after, ok := strings.CutPrefix(c, "S"); ok && strings.HasPrefix(after, "A") {
+		c = after // ASME's SA-106
+	}
 	if n, ok := withdrawn[c]; ok {
 		return []string{n}
 	}
@@ -75,6 +79,9 @@ func (d *data) near(name string) []string {
 	var found []candidate
 	for _, n := range d.names {
 		k := compact(n)
+		if c == "" || c[0] != k[0] {
+			continue
+		}
 		dist := editDistance(c, k)
 		if dist <= max(1, len(k)/2) || len(c) >= 3 && (strings.HasPrefix(k, c) || strings.HasPrefix(c, k)) {
 			found = append(found, candidate{n, dist})

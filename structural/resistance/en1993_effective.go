@@ -68,7 +68,7 @@ func (x *enCase) effectiveTips() float64 {
 	area := s.A - lost
 	shift := lost * at / area
 	inertia := s.Iz - lost*(at*at+hole*hole/12) - area*shift*shift
-	return min(s.Welz, inertia/(s.B/2+shift))
+	return min(s.Welz, inertia/max(s.B/2-hole+shift, s.B/2-shift))
 }
 
 // internal returns ρ of an internal part of c/t with stress ratio ψ from −3 to 1,

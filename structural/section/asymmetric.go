@@ -80,7 +80,8 @@ type channelSize struct{ h, b, tw, tf, r, toe, slope, at float64 }
 //   - A, I, W, Wpl: from the outline with fillets, exact;
 //   - J: ⅔b tf³ + ⅓(h − 2tf)tw³ + 2αD⁴ − 0.420 tf⁴ (El Darwish and Johnston
 //     1965; tapered flanges by their mean thickness), within 2.5 % of a
-//     finite-element model for UPE and UPN, 6 to 12 % under the tables for C;
+//     finite-element model for UPE and UPN; at the steep slope of C it lies 5 to
+//     12 % low, so that catalogue rows carry the printed J;
 //   - shear centre and Iw: thin-walled on the middle line, the taper included; Iw
 //     is within 5 % of the model, low where it differs most; the American tables
 //     leave the taper out and print 20 to 24 % more for C;
@@ -149,6 +150,7 @@ func (d channelSize) warping() (e, iw float64) {
 //     within 2.5 % of a finite-element model;
 //   - the shear centre is where the legs' middle lines meet, Iw = t³(b'³ + h'³)/36
 //     about it (Bleich, Buckling Strength of Metal Structures, table 3);
+//   - Wagner about u: AISC 360-22 F10.2, βw of its commentary;
 //   - shear areas ⅔ht and ⅔bt: elastic, because EN 1993-1-1 6.2.6(3) names none.
 func angle(h, b, t, r, toe float64) (Section, error) {
 	if err := sizes(part{"leg", h}, part{"leg", b}, part{"thickness", t}); err != nil {
@@ -157,18 +159,28 @@ func angle(h, b, t, r, toe float64) (Section, error) {
 	if !(r >= 0 && toe >= 0 && toe <= t && 2*t <= b && t+r+toe <= b && b <= h) {
 		return Section{}, misfit("leg", "root", t, t, r, h, b)
 	}
+	corners := []corner{{0, 0, 0}, {b, 0, 0}, {b, t, toe}, {t, t, r}, {t, h, toe}, {0, h, 0}}
 	s, err := measured(Section{
 		Shape: Angle, Making: HotRolled, H: h, B: b, Tw: t, Tf: t, R: r, ToeR: toe,
 		J:   b*t*t*t/3 + (h-t)*t*t*t/3 + junctionL(t, t, r) - 0.21*t*t*t*t,
 		Iw:  t * t * t * (math.Pow(b-t/2, 3) + math.Pow(h-t/2, 3)) / 36,
 		Avz: 2 * h * t / 3, Avy: 2 * b * t / 3,
 		WebSlender: h / t, FlangeSlender: b / t,
-	}, []corner{{0, 0, 0}, {b, 0, 0}, {b, t, toe}, {t, t, r}, {t, h, toe}, {0, h, 0}})
+	}, corners)
 	if err != nil {
 		return Section{}, err
 	}
-	s = s.sheared(t/2-s.Yc, t/2-s.Zc)
-	return complete(s), nil
+	y0, z0 := t/2-s.Yc, t/2-s.Zc
+	s = complete(s.sheared(y0, z0))
+	// About the principal axis u, as AISC 360-22 F10 asks for it.
+	sin, cos := math.Sincos(s.Alpha)
+	o, err := outlineOf(corners)
+	if err != nil {
+		return Section{}, err
+	}
+	m := o.moved(-s.Yc, -s.Zc).rotated(cos, sin, s.Alpha).integrals()
+	s.Wagner = m.wagner/m.zz - 2*(z0*cos-y0*sin)
+	return s, nil
 }
 
 // tee returns a T with its flange on top; r = 0 is welded from plates.

@@ -109,6 +109,7 @@ func TestFindRefuses(t *testing.T) {
 		"":                            {"no such family or size", nil},
 		"300":                         {"no such family or size", nil},
 		"W18x51":                      {"W has no such size", []string{"W18x50"}},
+		"W 18":                        {"W has no such size", []string{"W18x106", "W18x119", "W18x130"}},
 		"HE 310 M":                    {"HEM has no such size", []string{"HEM 320", "HEM 300"}},
 		"UPN 210":                     {"UPN has no such size", []string{"UPN 220", "UPN 200"}},
 		"C10x19":                      {"C has no such size", []string{"C10x20"}},

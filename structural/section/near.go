@@ -75,6 +75,8 @@ func (c *catalogue) nearIn(family, rest string) []string {
 		have := numbers(key(s.Designation))
 		if measured {
 			have = measures(s, len(want))
+		} else if len(have) > len(want) {
+			have = have[:len(want)] // "W 18": the depth alone
 		}
 		if off := ratio(have, want); off <= math.Ln2 {
 			list = append(list, candidate{s.Designation, off})

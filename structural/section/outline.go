@@ -127,14 +127,18 @@ func (o outline) moved(dy, dz float64) outline {
 	return out
 }
 
-// turned returns the outline turned clockwise by a right angle: y becomes −z.
-func (o outline) turned() outline {
+// turned returns the outline turned clockwise by a right angle: z becomes −y.
+func (o outline) turned() outline { return o.rotated(0, 1, math.Pi/2) }
+
+// rotated returns the outline turned clockwise by an angle of the given cosine
+// and sine.
+func (o outline) rotated(cos, sin, angle float64) outline {
 	out := make(outline, len(o))
 	for i, s := range o {
 		for _, p := range []*place{&s.a, &s.b, &s.c} {
-			p.y, p.z = p.z, -p.y
+			p.y, p.z = p.y*cos+p.z*sin, p.z*cos-p.y*sin
 		}
-		s.from -= math.Pi / 2
+		s.from -= angle
 		out[i] = s
 	}
 	return out

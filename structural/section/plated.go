@@ -11,8 +11,8 @@ import (
 //   - A, I, W, Wpl: from the plates, exact;
 //   - J: ⅓Σbt³ less the free ends, with El Darwish and Johnston's junctions;
 //   - shear centre: the flanges' middle lines parted inversely to their second
-//     moments; Iw = I₁I₂/(I₁ + I₂)·hs² (AISC 360-22 commentary F4, EN 1993-1-1
-//     via Vlasov's theory); Wagner exact by integration;
+//     moments; Iw = I₁I₂/(I₁ + I₂)·hs² (Vlasov, Thin-Walled Elastic
+//     Beams; the same in AISC 360-22 commentary F4); Wagner exact by integration;
 //   - Avz: EN 1993-1-1 6.2.6(3)d, η = 1.0; Avy: 6.2.6(3)e.
 func unequalI(h, b, tw, tf, lowerB, lowerTf float64) (Section, error) {
 	if err := sizes(part{"depth", h}, part{"upper width", b}, part{"web", tw}, part{"upper flange", tf},
@@ -92,24 +92,9 @@ func misfit(web, flange string, tw, tf, r, h, b float64) error {
 //
 // The chord's own mass is billed n times: lacing and battens are not in it.
 func Chords(chord Section, n int, spacingZ, spacingY float64) (Section, error) {
-	if n != 2 && n != 4 {
-		return Section{}, fmt.Errorf("a set of %d chords; want 2 or 4", n)
-	}
-	if !(chord.A > 0) || chord.Shape == ChordSet {
-		return Section{}, fmt.Errorf("a chord without area or itself a set of chords; want a section of Find")
-	}
-	if err := sizes(part{"spacing in the depth", spacingZ}); err != nil {
-		return Section{}, err
-	}
 	outZ, outY := max(chord.Zc, chord.H-chord.Zc), max(chord.Yc, chord.B-chord.Yc)
-	if !(spacingZ >= 2*outZ) {
-		return Section{}, fmt.Errorf("chords %s mm apart in the depth overlap; want %s mm or more", mm(spacingZ), mm(2*outZ))
-	}
-	switch {
-	case n == 2 && spacingY != 0:
-		return Section{}, fmt.Errorf("two chords with a spacing of %s mm in the width; want one spacing, or four chords", mm(spacingY))
-	case n == 4 && !(spacingY >= 2*outY && spacingY <= greatestPart):
-		return Section{}, fmt.Errorf("chords %s mm apart in the width; want %s to %s mm", mm(spacingY), mm(2*outY), mm(greatestPart))
+	if err := checkChords(chord, n, spacingZ, spacingY, outZ, outY); err != nil {
+		return Section{}, err
 	}
 	k := float64(n)
 	s := chord
@@ -132,4 +117,28 @@ func Chords(chord Section, n int, spacingZ, spacingY float64) (Section, error) {
 	}
 	s.Thickness, s.Mass = thickness, k*chord.Mass
 	return s, nil
+}
+
+// checkChords refuses chords that overlap; outZ and outY are their farthest faces
+// from the own centroid.
+func checkChords(chord Section, n int, spacingZ, spacingY, outZ, outY float64) error {
+	if n != 2 && n != 4 {
+		return fmt.Errorf("a set of %d chords; want 2 or 4", n)
+	}
+	if !(chord.A > 0) || chord.Shape == ChordSet {
+		return fmt.Errorf("a chord without area or itself a set of chords; want a section of Find")
+	}
+	if err := sizes(part{"spacing in the depth", spacingZ}); err != nil {
+		return err
+	}
+	if !(spacingZ >= 2*outZ) {
+		return fmt.Errorf("chords %s mm apart in the depth overlap; want %s mm or more", mm(spacingZ), mm(2*outZ))
+	}
+	switch {
+	case n == 2 && spacingY != 0:
+		return fmt.Errorf("two chords with a spacing of %s mm in the width; want one spacing, or four chords", mm(spacingY))
+	case n == 4 && !(spacingY >= 2*outY && spacingY <= greatestPart):
+		return fmt.Errorf("chords %s mm apart in the width; want %s to %s mm", mm(spacingY), mm(2*outY), mm(greatestPart))
+	}
+	return nil
 }

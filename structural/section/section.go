@@ -15,7 +15,7 @@ const (
 	SolidRound
 	Flat
 	Channel   // rolled, parallel or tapered flanges
-	Angle     // equal or unequal legs, toe down-left: heel at the lower left corner
+	Angle     // equal or unequal legs, the heel at the lower left
 	Tee       // flange on top, stem down
 	UnequalI  // welded, flanges of different size: singly symmetric about z
 	WeldedBox // four plates, webs between the flanges
@@ -107,7 +107,7 @@ type Section struct {
 	WelzRight  float64 // m³, elastic modulus about z at the right face
 	Y0         float64 // m, shear centre from the centroid, to the right
 	Z0         float64 // m, shear centre from the centroid, up
-	Wagner     float64 // m, monosymmetry ∫z(y²+z²)dA/Iy − 2Z0, z up; below 0 where the upper flange is the greater; EN zj = −Wagner/2 with the top compressed
+	Wagner     float64 // m, monosymmetry ∫z(y²+z²)dA/Iy − 2Z0, z up; below 0 where the upper flange is the greater; EN zj = −Wagner/2 with the top compressed; of angles about u
 
 	Iyz   float64 // m⁴, product of inertia; 0 if y and z are principal axes
 	Iu    float64 // m⁴, greater principal second moment

@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"encoding/csv"
 	"fmt"
+	"math"
 	"strconv"
 	"strings"
 )
@@ -13,6 +14,7 @@ import (
 //	# family, title, standard, source, making, shape: of all rows
 //	# units: "mm kg/m" or "in lb/ft"; the column slope has none
 //	# corners: of rectangular tubes, the standard whose corner radii hold
+//	designation … j: the printed torsion constant, where no formula is near enough
 //	# torsion: "El Darwish" where J of I sections is by that formula
 //	designation, the shape's dimensions, mass[, aliases parted by |]
 //
@@ -162,6 +164,8 @@ func readRow(header, record []string, scale [2]float64) (row, error) {
 				r.mass = x * scale[1]
 			case "slope":
 				r.value[name] = x
+			case "j":
+				r.value[name] = x * math.Pow(scale[0], 4)
 			default:
 				r.value[name] = x * scale[0]
 			}
@@ -190,6 +194,9 @@ func (t table) section(r row) (Section, error) {
 	}
 	if t.head["torsion"] == elDarwish {
 		s.J = torsionI(s.H, s.B, s.Tw, s.Tf, s.R)
+	}
+	if printed, ok := r.value["j"]; ok {
+		s.J = printed
 	}
 	s.Designation, s.Family, s.Source, s.Mass = r.designation, t.head["family"], t.head["source"], r.mass
 	if s.Making, ok = makings[t.head["making"]]; !ok {

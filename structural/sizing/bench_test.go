@@ -59,6 +59,23 @@ func BenchmarkSizeTenThousand(b *testing.B) {
 	b.ReportMetric(float64(passed), "passed")
 }
 
+// The same through a Sizer, with every explanation.
+func BenchmarkSizerTenThousand(b *testing.B) {
+	candidates, members, s := fourHundred(b), tenThousand(), setup(b, 1.5, "S355")
+	b.ReportAllocs()
+	for b.Loop() {
+		z, err := NewSizer(s, candidates)
+		if err != nil {
+			b.Fatal(err)
+		}
+		for _, m := range members {
+			if _, err := z.Lightest(m); err != nil {
+				b.Fatal(err)
+			}
+		}
+	}
+}
+
 func BenchmarkPrepare(b *testing.B) {
 	members, s := tenThousand(), setup(b, 1.5, "S355")
 	b.ReportAllocs()

@@ -23,7 +23,7 @@ func setup(t testing.TB, factor float64, grade string) Setup {
 	if err != nil {
 		t.Fatal(err)
 	}
-	return Setup{Basis: b, Grade: g, Combination: action.Characteristic(), Gravity: gravity}
+	return Setup{Basis: b, Grade: g, Strength: []action.Combination{action.Characteristic()}, Service: action.Characteristic(), Gravity: gravity}
 }
 
 func series(t testing.TB, families ...string) []section.Section {
@@ -36,11 +36,9 @@ func series(t testing.TB, families ...string) []section.Section {
 		}
 		all = append(all, s...)
 	}
-	slices.SortFunc(all, func(a, b section.Section) int { return order(&a, &b, mass) })
+	slices.SortFunc(all, func(a, b section.Section) int { return order(&a, &b, massOf) })
 	return all
 }
-
-func mass(s *section.Section) float64 { return s.Mass }
 
 func prepare(t testing.TB, m Member, s Setup) *Prepared {
 	t.Helper()
@@ -87,3 +85,39 @@ func check(t testing.TB, r Result, id string) resistance.Check {
 	t.Fatalf("no %s check among %v", id, r.Checks)
 	return resistance.Check{}
 }
+
+// basisOf returns a design basis by the name of its job.
+func basisOf(t testing.TB, name string) resistance.Basis {
+	t.Helper()
+	var b resistance.Basis
+	var err error
+	switch name {
+	case "allowable":
+		b, err = resistance.Allowable(1.67)
+	case "en1993":
+		b, err = resistance.EN1993(resistance.Partial{})
+	default:
+		b, err = resistance.AISC(name)
+	}
+	if err != nil {
+		t.Fatal(err)
+	}
+	return b
+}
+
+// bases are the four design bases.
+var bases = []string{"allowable", "en1993", resistance.ASD, resistance.LRFD}
+
+// setupOf returns a design basis with its own combinations.
+func setupOf(t testing.TB, basis, grade string) Setup {
+	t.Helper()
+	s := setup(t, 1.5, grade)
+	var err error
+	s.Basis = basisOf(t, basis)
+	if s.Strength, s.Service, err = action.Sets(basis); err != nil {
+		t.Fatal(err)
+	}
+	return s
+}
+
+func enSetup(t testing.TB, grade string) Setup { return setupOf(t, "en1993", grade) }

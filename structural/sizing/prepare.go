@@ -6,7 +6,6 @@ import (
 
 	"spanwright/structural/action"
 	"spanwright/structural/beam"
-	"spanwright/structural/material"
 	"spanwright/structural/resistance"
 	"spanwright/structural/section"
 )
@@ -14,19 +13,54 @@ import (
 // Prepared is a member analysed once, ready to be tried with any section. It keeps
 // scratch space: one goroutine at a time.
 type Prepared struct {
-	member   Member
-	setup    Setup
-	beam     beam.Beam // EI = 1
-	cases    []beam.Case
-	terms    []beam.Term // the last is the member's own weight
-	response *beam.Response
-	envelope beam.Envelope
-	demand   resistance.Demand
+	member Member
+	setup  Setup
+	beam   beam.Beam // EI = 1
 
-	exact         effects // of the section tried last
-	bound         effects // scratch of the lower bound
-	none, lighter effects // under no weight and under that of the lightest candidate
-	verdicts      []verdict
+	down, side plane
+	analysed   bool // a simple span under uniform actions is analysed only for its explanation
+	spans      []span
+
+	strength, service []variant
+	sags              []float64 // m·N·m², sideways, at EI = 1: the greatest of all service variants
+	vibration         vibration
+
+	demand      resistance.Demand
+	deflections []resistance.Deflection // vertical ones, then sideways ones
+	design      section.Section         // scratch: the section with the design wall
+	designWall  bool                    // the basis is of AISC 360
+	verdicts    []verdict
+}
+
+// plane is the bending of the member in its depth, or along its width.
+type plane struct {
+	actions  []int // indices of the member's actions
+	loads    []loaded
+	cases    []beam.Case
+	trains   []beam.Train
+	response *beam.Response
+	envelope beam.Envelope // scratch
+}
+
+// loaded says what a beam case stands for.
+type loaded struct {
+	group  int     // index of the action, or one of the groups below
+	factor float64 // dynamic factor
+	train  bool
+}
+
+// Groups that are no action of their own.
+const (
+	permanents = -1 // every permanent action
+	ownWeight  = -2 // 1 N/m along the whole member
+	everything = -3 // all variable actions lead
+)
+
+// span is a stretch between supports or an overhang.
+type span struct {
+	name     string
+	length   float64 // m
+	overhang bool
 }
 
 // near is the part of the length within which two places are the same.
@@ -35,71 +69,156 @@ const near = 1e-9
 // Prepare checks the member and the setup and analyses the member with EI = 1.
 //
 // Permanent actions make one case that is always there; every variable action makes
-// a case of its own that may be absent, and a free uniform one a case for each span
-// that it covers. So actions that pull against each other never cancel.
+// a case of its own that may be absent, and a free distributed one a case for each
+// span that it covers. So actions that pull against each other never cancel. A train
+// counts at each place in its worst position. Horizontal actions bend the member
+// about its weak axis between the same supports: lateral restraints are not counted
+// on for that.
 //
 // The error of a member that cannot be analysed wraps a *beam.Fault.
 func Prepare(m Member, s Setup) (*Prepared, error) {
 	if err := s.Validate(); err != nil {
 		return nil, fmt.Errorf("sizing: %w", err)
 	}
-	if err := m.Validate(); err != nil {
+	p := new(Prepared)
+	p.setUp(s)
+	if err := p.prepare(m); err != nil {
 		return nil, fmt.Errorf("sizing: %w", err)
+	}
+	return p, nil
+}
+
+// setUp takes a setup that is known to be good.
+func (p *Prepared) setUp(s Setup) {
+	p.setup = s
+	p.designWall = s.Basis.Name() == resistance.ASD || s.Basis.Name() == resistance.LRFD
+}
+
+// prepare is Prepare in the memory of p after setUp.
+func (p *Prepared) prepare(m Member) error {
+	if err := m.Validate(); err != nil {
+		return err
 	}
 	supports := m.Supports
 	if len(supports) == 0 {
 		supports = []beam.Support{{X: 0, Kind: beam.Pinned}, {X: m.Length, Kind: beam.Pinned}}
 	}
-	p := &Prepared{member: m, setup: s, beam: beam.Prismatic(m.Length, 1, supports...)}
-	p.load()
-	response, err := beam.Analyse(p.beam, p.cases)
-	if err != nil {
-		return nil, fmt.Errorf("sizing: %w", err)
+	p.member, p.analysed = m, false
+	p.beam.Length, p.beam.Supports, p.beam.Segments = m.Length, supports, append(p.beam.Segments[:0], beam.Segment{To: m.Length, EI: 1})
+	p.sort()
+	p.expand()
+	if !p.handbook() {
+		if err := p.analyse(); err != nil {
+			return err
+		}
+		p.follow()
 	}
-	p.response = response
-	p.response.EnvelopeInto(&p.envelope, p.terms)
-	p.demand.Deflections = p.limits()
-	p.setLengths()
-	return p, nil
+	p.prune()
+	p.setDemand()
+	return p.prepareVibration()
 }
 
-// load fills cases and terms.
-func (p *Prepared) load() {
-	var permanent beam.Case
-	add := func(c beam.Case, factor float64, free bool) {
-		p.terms = append(p.terms, beam.Term{Case: len(p.cases), Factor: factor, Free: free})
-		p.cases = append(p.cases, c)
-	}
-	for _, a := range p.member.Actions {
+// sort parts the actions by plane; those without value are left out.
+func (p *Prepared) sort() {
+	p.down.reset()
+	p.side.reset()
+	for i, a := range p.member.Actions {
 		switch {
-		case a.Value == 0:
+		case a.Value == 0 && a.End == 0 && a.Kind != action.MovingTrain:
+		case a.Direction == action.Horizontal:
+			p.side.actions = append(p.side.actions, i)
+		default:
+			p.down.actions = append(p.down.actions, i)
+		}
+	}
+}
+
+func (pl *plane) reset() {
+	pl.actions, pl.loads, pl.cases, pl.trains, pl.response = pl.actions[:0], pl.loads[:0], pl.cases[:0], pl.trains[:0], nil
+}
+
+// analyse makes the load cases and solves both planes, and names the spans.
+func (p *Prepared) analyse() error {
+	p.load(&p.down, true)
+	if err := p.down.solve(p.beam); err != nil {
+		return err
+	}
+	if len(p.side.actions) > 0 {
+		p.load(&p.side, false)
+		if err := p.side.solve(p.beam); err != nil {
+			return err
+		}
+	}
+	for _, list := range [][]variant{p.strength, p.service} {
+		for i := range list {
+			list[i].terms, list[i].aside = p.terms(&p.down, &list[i]), p.terms(&p.side, &list[i])
+		}
+	}
+	p.analysed = true
+	return nil
+}
+
+func (pl *plane) solve(b beam.Beam) error {
+	response, err := beam.AnalyseTrains(b, pl.cases, pl.trains)
+	if err != nil {
+		return err
+	}
+	pl.response = response
+	return nil
+}
+
+// load fills the cases and trains of a plane; self-weight, where it acts, is the
+// last case.
+func (p *Prepared) load(pl *plane, weighs bool) {
+	pl.loads, pl.cases, pl.trains = pl.loads[:0], pl.cases[:0], pl.trains[:0]
+	var permanent beam.Case
+	var moving []loaded
+	add := func(c beam.Case, l loaded) {
+		pl.loads, pl.cases = append(pl.loads, l), append(pl.cases, c)
+	}
+	for _, i := range pl.actions {
+		a := p.member.Actions[i]
+		l := p.loadOf(a)
+		switch {
+		case a.Kind == action.MovingTrain:
+			pl.trains = append(pl.trains, beam.Train{Loads: a.Train.Loads, Spacings: a.Train.Spacings})
+			moving = append(moving, loaded{i, a.Factor(), true})
 		case a.Nature == action.Permanent:
-			permanent = append(permanent, p.loadOf(a))
-		case a.Free && a.Kind == action.Uniform:
-			for _, c := range p.bySpan(a) {
-				add(c, p.setup.Combination.Variable, true)
+			l.Start *= a.Factor()
+			l.End *= a.Factor()
+			permanent = append(permanent, l)
+		case a.Free && a.Kind != action.Point && a.Kind != action.Moment:
+			for _, c := range p.bySpan(l) {
+				add(c, loaded{i, a.Factor(), false})
 			}
 		default:
-			add(beam.Case{p.loadOf(a)}, p.setup.Combination.Variable, true)
+			add(beam.Case{l}, loaded{i, a.Factor(), false})
 		}
 	}
 	if len(permanent) > 0 {
-		add(permanent, p.setup.Combination.Permanent, false)
+		add(permanent, loaded{permanents, 1, false})
 	}
-	add(beam.Case{{Kind: beam.Uniform, From: 0, To: p.member.Length, Start: 1}}, 0, false)
+	if weighs {
+		add(beam.Case{{Kind: beam.Uniform, From: 0, To: p.member.Length, Start: 1}}, loaded{ownWeight, 1, false})
+	}
+	pl.loads = append(pl.loads, moving...) // trains are the cases after all others
 }
 
 func (p *Prepared) loadOf(a action.Action) beam.Load {
 	from, to := a.Extent(p.member.Length)
-	if a.Kind == action.Point {
+	switch a.Kind {
+	case action.Point:
 		return beam.Load{Kind: beam.Point, From: from, Start: a.Value}
+	case action.Moment:
+		return beam.Load{Kind: beam.Moment, From: from, Start: a.Value}
+	case action.Linear:
+		return beam.Load{Kind: beam.Linear, From: from, To: to, Start: a.Value, End: a.End}
 	}
 	return beam.Load{Kind: beam.Uniform, From: from, To: to, Start: a.Value}
 }
 
-// bySpan cuts a uniform action at the supports, one case a span.
-func (p *Prepared) bySpan(a action.Action) []beam.Case {
-	whole := p.loadOf(a)
+// bySpan cuts a distributed load at the supports, one case a span.
+func (p *Prepared) bySpan(whole beam.Load) []beam.Case {
 	least := near * p.member.Length
 	cuts := []float64{whole.From}
 	for _, s := range p.beam.Supports {
@@ -109,45 +228,36 @@ func (p *Prepared) bySpan(a action.Action) []beam.Case {
 	}
 	slices.Sort(cuts)
 	cuts = append(cuts, whole.To)
+	rise := 0.0
+	if whole.Kind == beam.Linear {
+		rise = (whole.End - whole.Start) / (whole.To - whole.From)
+	}
 	var cases []beam.Case
 	for i := range len(cuts) - 1 {
 		part := whole
 		part.From, part.To = cuts[i], cuts[i+1]
+		if part.Kind == beam.Linear {
+			part.Start, part.End = whole.Start+rise*(cuts[i]-whole.From), whole.Start+rise*(cuts[i+1]-whole.From)
+		}
 		cases = append(cases, beam.Case{part})
 	}
 	return cases
 }
 
-// limits returns a deflection for each span and overhang, with its limit, or
-// nothing where the member has none.
-func (p *Prepared) limits() []resistance.Deflection {
-	if p.member.DeflectionLimit == 0 {
-		return nil
-	}
-	var limits []resistance.Deflection
-	for i, s := range p.envelope.Spans {
-		d := resistance.Deflection{Where: p.name(i), Span: s.To - s.From, Overhang: s.Overhang}
-		d.Limit = d.Span / p.member.DeflectionLimit
-		if s.Overhang {
-			d.Limit *= 2
+// setSpans names the spans as a reader would: "span 2", "left overhang".
+func (p *Prepared) setSpans() {
+	p.spans = p.spans[:0]
+	number := 0
+	for i, s := range p.down.envelope.Spans {
+		n := "right overhang"
+		if !s.Overhang {
+			number++
+			n = fmt.Sprintf("span %d", number)
+		} else if i == 0 && !p.heldAt(0) {
+			n = "left overhang"
 		}
-		limits = append(limits, d)
+		p.spans = append(p.spans, span{n, s.To - s.From, s.Overhang})
 	}
-	return limits
-}
-
-// name calls span i what a reader would: "span 2", "left overhang".
-func (p *Prepared) name(i int) string {
-	spans := p.envelope.Spans
-	switch {
-	case spans[i].Overhang && i == 0 && !p.heldAt(0):
-		return "left overhang"
-	case spans[i].Overhang:
-		return "right overhang"
-	case spans[0].Overhang && !p.heldAt(0):
-		return fmt.Sprintf("span %d", i)
-	}
-	return fmt.Sprintf("span %d", i+1)
 }
 
 func (p *Prepared) heldAt(x float64) bool {
@@ -156,67 +266,46 @@ func (p *Prepared) heldAt(x float64) bool {
 	})
 }
 
-// setLengths fills the lateral spacing and the buckling lengths. Lateral restraints
-// hold the weak axis too.
-func (p *Prepared) setLengths() {
+// setDemand fills what the demand has whatever the section: deflection limits,
+// lateral spacing and buckling lengths. Lateral restraints hold the weak axis too.
+func (p *Prepared) setDemand() {
+	m := &p.member
+	p.deflections = p.deflections[:0]
+	if m.DeflectionLimit > 0 {
+		for _, s := range p.spans {
+			p.deflections = append(p.deflections, s.deflection(m.DeflectionLimit, s.name))
+		}
+		if len(p.side.actions) > 0 {
+			for _, s := range p.spans {
+				p.deflections = append(p.deflections, s.deflection(m.DeflectionLimit, s.name+", sideways"))
+			}
+		}
+	}
 	longest, buckling := 0.0, 0.0
-	for _, s := range p.envelope.Spans {
-		length := s.To - s.From
-		longest = max(longest, length)
-		factor := p.member.LengthFactor
+	for _, s := range p.spans {
+		longest = max(longest, s.length)
+		factor := m.LengthFactor
 		if factor == 0 {
 			factor = 1
-			if s.Overhang {
+			if s.overhang {
 				factor = 2
 			}
 		}
-		buckling = max(buckling, factor*length)
+		buckling = max(buckling, factor*s.length)
 	}
-	d := &p.demand
-	d.LateralSpacing, d.LengthY, d.LengthZ = longest, buckling, buckling
-	if spacing := p.member.RestraintSpacing; spacing > 0 {
-		d.LateralSpacing, d.LengthZ = spacing, min(buckling, spacing)
+	p.demand = resistance.Demand{
+		LateralSpacing: longest, LengthY: buckling, LengthZ: buckling,
+		MomentFactor: m.MomentFactor, NetAreaFactor: m.NetAreaFactor,
+	}
+	if spacing := m.RestraintSpacing; spacing > 0 {
+		p.demand.LateralSpacing, p.demand.LengthZ = spacing, min(buckling, spacing)
 	}
 }
 
-// steel returns the material of a section, or the reason why there is none.
-func (p *Prepared) steel(s *section.Section) (resistance.Material, error) {
-	if v := p.suits(s.Family); v.Level == material.Refused {
-		return resistance.Material{}, fmt.Errorf("%s: %s; take %s", s.Designation, v.Reason, v.Remedy)
+func (s span) deflection(n float64, where string) resistance.Deflection {
+	d := resistance.Deflection{Where: where, Span: s.length, Overhang: s.overhang, Limit: s.length / n}
+	if s.overhang {
+		d.Limit *= 2
 	}
-	g := &p.setup.Grade
-	fy, fu, err := g.Strength(s.Thickness)
-	if err != nil {
-		return resistance.Material{}, fmt.Errorf("%s: %w", s.Designation, err)
-	}
-	return resistance.Material{Yield: fy, Ultimate: fu, E: g.E, G: g.G}, nil
-}
-
-// available is steel without the reason: what is surely too thick is sorted out
-// before Grade.Strength puts its refusal into words that the search does not read.
-func (p *Prepared) available(s *section.Section) (resistance.Material, bool) {
-	bands := p.setup.Grade.Bands
-	if s.Thickness > bands[len(bands)-1].UpTo*1.001 {
-		return resistance.Material{}, false
-	}
-	m, err := p.steel(s)
-	return m, err == nil
-}
-
-// verdict is what material.Suits says of a family in the setup's grade.
-type verdict struct {
-	family string
-	material.Verdict
-}
-
-// suits asks material.Suits once for each family: it reads spellings, which takes
-// longer than all checks of a section.
-func (p *Prepared) suits(family string) *verdict {
-	for i := range p.verdicts {
-		if p.verdicts[i].family == family {
-			return &p.verdicts[i]
-		}
-	}
-	p.verdicts = append(p.verdicts, verdict{family, material.Suits(family, p.setup.Grade.Name)})
-	return &p.verdicts[len(p.verdicts)-1]
+	return d
 }

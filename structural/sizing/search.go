@@ -19,57 +19,96 @@ const reported = 3
 const margin = 1e-6
 
 // Utilisation returns the highest utilisation of a section in the member, own weight
-// included, and the governing check. An error means that the section cannot be had
-// in the grade. It allocates nothing.
+// included, over all combinations, and the governing check. An error means that the
+// section cannot be had in the grade or is too deep or wide. It allocates nothing.
 func (p *Prepared) Utilisation(s *section.Section) (float64, string, error) {
 	m, err := p.steel(s)
 	if err != nil {
 		return 0, "", fmt.Errorf("sizing: %w", err)
 	}
-	u, id := p.use(s, m)
+	u, id := p.use(s, p.checked(s), m)
 	return u, id, nil
 }
 
-func (p *Prepared) use(s *section.Section, m resistance.Material) (float64, string) {
-	p.find(&p.exact, p.across(p.weight(s)))
-	return p.setup.Basis.Utilisation(s, m, p.ask(s, &p.exact))
+// use returns the highest utilisation over the variants and the governing check; of
+// equal ones the first variant's. d is the section that the basis reckons with.
+func (p *Prepared) use(s, d *section.Section, m resistance.Material) (float64, string) {
+	p.sag(d, false)
+	top, id := 0.0, ""
+	for i := range p.strength {
+		v := &p.strength[i]
+		u, check := p.setup.Basis.Utilisation(d, m, p.ask(d, v, p.forces(v, p.across(p.weight(s, v))), i == 0))
+		if id == "" || u > top {
+			top, id = u, check
+		}
+	}
+	return top, id
 }
 
 // hopeless tells whether the section fails already under a lower bound of its
-// demand. Local slenderness is no such proof in compression: a web's limit eases as
-// the moment grows.
-func (p *Prepared) hopeless(s *section.Section, m resistance.Material) bool {
-	weight := p.across(p.weight(s))
-	if weight < p.lighter.weight {
-		return false
+// demand in a variant; that of a straight variant is its demand itself. Local
+// slenderness is no such proof in compression: a web's limit eases as the moment
+// grows.
+func (p *Prepared) hopeless(s, d *section.Section, m resistance.Material) bool {
+	p.sag(d, true)
+	for i := range p.strength {
+		v := &p.strength[i]
+		weight := p.across(p.weight(s, v))
+		var f forces
+		if v.line.straight {
+			f = p.forces(v, weight)
+		} else {
+			f = v.line.beyond(weight)
+		}
+		u, id := p.setup.Basis.Utilisation(d, m, p.ask(d, v, f, i == 0))
+		if u > 1+margin && (id != resistance.LocalBuckling || p.demand.Axial <= 0) {
+			return true
+		}
 	}
-	e := &p.lighter
-	if weight > p.lighter.weight {
-		p.bound.beyond(&p.none, &p.lighter, weight)
-		e = &p.bound
-	}
-	u, id := p.setup.Basis.Utilisation(s, m, p.ask(s, e))
-	return u > 1+margin && (id != resistance.LocalBuckling || p.demand.Axial <= 0)
+	return false
 }
 
-// start finds the effects that the lower bounds are drawn from.
-func (p *Prepared) start(candidates []section.Section) {
+// bounded tells whether lower bounds save anything: whether an effect is not
+// straight, so that its exact value takes an envelope.
+func (p *Prepared) bounded() bool {
+	for i := range p.strength {
+		if !p.strength[i].line.straight {
+			return true
+		}
+	}
+	for i := range p.service {
+		if len(p.deflections) > 0 && len(p.service[i].slope) == 0 {
+			return true
+		}
+	}
+	return false
+}
+
+// lightestOf returns the mass of the lightest candidate, kg/m.
+func (p *Prepared) lightestOf(candidates []section.Section) float64 {
 	lightest := math.Inf(1)
 	for i := range candidates {
-		lightest = min(lightest, p.across(p.weight(&candidates[i])))
+		lightest = min(lightest, p.massOf(&candidates[i]))
 	}
-	p.find(&p.none, 0)
-	if lightest > 0 {
-		p.find(&p.lighter, lightest)
-	} else {
-		p.lighter.copy(&p.none)
-	}
+	return lightest
 }
 
-func (e *effects) copy(from *effects) {
-	sags := append(e.sags[:0], from.sags...)
-	*e = *from
-	e.sags = sags
+// start finds the effects that the lower bounds are drawn from, under the mass of the
+// lightest candidate, kg/m.
+func (p *Prepared) start(mass float64) {
+	lightest := p.across(mass)
+	for i := range p.strength {
+		if v := &p.strength[i]; !v.line.straight {
+			v.line.light = lightest * p.setup.Gravity * v.permanent
+			v.line.lighter = p.exactForces(v, v.line.light)
+		}
+	}
+	for i := range p.service {
+		if v := &p.service[i]; len(p.deflections) > 0 && len(v.slope) == 0 {
+			v.line.light = lightest * p.setup.Gravity * v.permanent
+			v.lighter = p.exactSags(v.lighter[:0], v, v.line.light)
+		}
+	}
 }
 
 // Lightest returns the lightest candidate that passes every check; equal masses are
@@ -90,7 +129,7 @@ func Lightest(p *Prepared, candidates []section.Section) (Result, error) {
 				i+1, candidates[i].Designation, candidates[i].Mass, candidates[i-1].Designation, candidates[i-1].Mass)
 		}
 	}
-	p.start(candidates)
+	p.start(p.lightestOf(candidates))
 	best := -1
 	for i := range candidates {
 		s := &candidates[i]
@@ -102,7 +141,7 @@ func Lightest(p *Prepared, candidates []section.Section) (Result, error) {
 			best = i
 		}
 	}
-	return p.answer(candidates, best, func(s *section.Section) float64 { return s.Mass })
+	return p.answer(candidates, best, massOf)
 }
 
 // Best returns the candidate with the smallest objective that passes every check;
@@ -112,7 +151,7 @@ func Best(p *Prepared, candidates []section.Section, objective func(*section.Sec
 	if err := checkMasses(candidates); err != nil {
 		return Result{}, err
 	}
-	p.start(candidates)
+	p.start(p.lightestOf(candidates))
 	best := -1
 	for i := range candidates {
 		s := &candidates[i]
@@ -155,10 +194,14 @@ func order(a, b *section.Section, objective func(*section.Section) float64) int 
 // passes tells whether a section can be had and passes every check.
 func (p *Prepared) passes(s *section.Section) bool {
 	m, ok := p.available(s)
-	if !ok || p.hopeless(s, m) {
+	if !ok {
 		return false
 	}
-	u, _ := p.use(s, m)
+	d := p.checked(s)
+	if p.bounded() && p.hopeless(s, d, m) {
+		return false
+	}
+	u, _ := p.use(s, d, m)
 	return resistance.Passes(u)
 }
 

@@ -35,7 +35,17 @@ func TestPrepareRefuses(t *testing.T) {
 		{want: "outside the member", member: func(m *Member) { m.Supports = pinned(0, 7) }},
 		{want: "no design basis", setup: func(s *Setup) { s.Basis = nil }},
 		{want: "0 strength bands", setup: func(s *Setup) { s.Grade = material.Grade{} }},
-		{want: "combination", setup: func(s *Setup) { s.Combination = action.Combination{} }},
+		{want: "no combination for strength", setup: func(s *Setup) { s.Strength = nil }},
+		{want: "strength: combination", setup: func(s *Setup) { s.Strength = []action.Combination{{}} }},
+		{want: "service: combination", setup: func(s *Setup) { s.Service = action.Combination{} }},
+		{want: "moment factor C1 or Cb is 11", member: func(m *Member) { m.MomentFactor = 11 }},
+		{want: "net area factor is 1.1", member: func(m *Member) { m.NetAreaFactor = 1.1 }},
+		{want: "frequency floor (Hz) is NaN", member: func(m *Member) { m.FrequencyFloor = math.NaN() }},
+		{want: "mass is 2", member: func(m *Member) { m.MassShare = 2 }},
+		{want: "greatest depth (m) is -0.1", member: func(m *Member) { m.MaxDepth = -0.1 }},
+		{want: "greatest width (m) is NaN", member: func(m *Member) { m.MaxWidth = math.NaN() }},
+		{want: "stock length (m) is +Inf", member: func(m *Member) { m.StockLength = math.Inf(1) }},
+		{want: "permanent NaN N", member: func(m *Member) { m.PermanentAxial = math.NaN() }},
 		{want: "gravity 0", setup: func(s *Setup) { s.Gravity = 0 }},
 	} {
 		m, c := good, s
@@ -73,7 +83,7 @@ func TestSearchRefuses(t *testing.T) {
 			t.Errorf("error %v, want one with %q", err, want)
 		}
 	}
-	if _, err := Best(p, nil, mass); err == nil {
+	if _, err := Best(p, nil, massOf); err == nil {
 		t.Error("Best without candidates is accepted")
 	}
 }

@@ -31,12 +31,27 @@ func (p *Prepared) waysOut(s *section.Section, r Result) []string {
 	if !p.member.Upright {
 		ways = append(ways, "another support, so that the longest span gets shorter")
 	}
+	if d := p.member.MaxDepth; d > 0 {
+		ways = append(ways, fmt.Sprintf("room for more than %.4g mm of depth", d*1e3))
+	}
+	if b := p.member.MaxWidth; b > 0 {
+		ways = append(ways, fmt.Sprintf("room for more than %.4g mm of width", b*1e3))
+	}
 	return unique(append(ways, "a heavier or deeper family than "+s.Family))
 }
 
 // wayOut names what would help against one failing check.
 func (p *Prepared) wayOut(s *section.Section, c resistance.Check) []string {
 	switch c.ID {
+	case resistance.BendingZ, resistance.ShearY:
+		return append(p.strongerGrade(s, c.Utilisation), "a wider section or a tube against the horizontal actions, or horizontal supports for them")
+	case resistance.Vibrating:
+		return []string{fmt.Sprintf("a section with a second moment Iy of at least %.0f cm⁴ at the same mass (%s has %.0f cm⁴); a stronger grade does not help",
+			math.Ceil(s.Iy*c.Utilisation*c.Utilisation*1e8), s.Designation, s.Iy*1e8)}
+	case resistance.WebBuckling:
+		return []string{"a thicker web, or stiffeners (which this basis does not count)"}
+	case resistance.NotCovered:
+		return []string{"another family or design basis: " + c.Note}
 	case resistance.Bending:
 		return append(p.strongerGrade(s, c.Utilisation),
 			fmt.Sprintf("a section with a modulus Wel of at least %.0f cm³ (%s has %.0f cm³)", math.Ceil(s.Wely*c.Utilisation*1e6), s.Designation, s.Wely*1e6))
@@ -46,7 +61,7 @@ func (p *Prepared) wayOut(s *section.Section, c resistance.Check) []string {
 	case resistance.LateralBuckling:
 		return []string{"a closed tube, which does not buckle sideways"}
 	case resistance.Axial:
-		if c.Demand > 0 && p.demand.Axial < 0 {
+		if p.member.Axial <= 0 && p.member.PermanentAxial <= 0 && !p.member.Upright || p.tension(c) {
 			return p.strongerGrade(s, c.Utilisation)
 		}
 		return []string{"supports or restraints that shorten the buckling length", "a closed tube, which has no weak axis or less of one"}
@@ -63,9 +78,19 @@ func (p *Prepared) wayOut(s *section.Section, c resistance.Check) []string {
 	return nil
 }
 
+// tension tells whether an axial check stands under tension in every variant.
+func (p *Prepared) tension(c resistance.Check) bool {
+	for i := range p.strength {
+		if p.strength[i].axial >= 0 {
+			return false
+		}
+	}
+	return c.ID == resistance.Axial
+}
+
 // strongerGrade names the yield strength needed, where a usual grade has it.
 func (p *Prepared) strongerGrade(s *section.Section, utilisation float64) []string {
-	fy, _, err := p.setup.Grade.Strength(s.Thickness)
+	fy, _, err := p.suits(s.Family).grade.Strength(s.Thickness)
 	if err != nil || !(fy*utilisation <= strongest) {
 		return nil
 	}
@@ -83,16 +108,17 @@ func (p *Prepared) closerRestraint(s *section.Section, r Result) []string {
 	d := &p.demand
 	spacing, weak := d.LateralSpacing, d.LengthZ
 	defer func() { d.LateralSpacing, d.LengthZ = spacing, weak }()
-	p.find(&p.exact, p.across(p.weight(s)))
 	for parts := 2; parts <= closest; parts++ {
 		d.LateralSpacing = spacing / float64(parts)
 		d.LengthZ = min(weak, d.LateralSpacing)
-		checks := p.setup.Basis.Explain(s, m, p.ask(s, &p.exact))
+		var tried Result
+		p.explain(&tried, s, m)
+		checks := tried.Checks
 		if slices.ContainsFunc(checks, func(c resistance.Check) bool { return helped(c) && !c.Passes() }) {
 			continue
 		}
 		way := fmt.Sprintf("lateral restraint every %.2f m", math.Floor(d.LateralSpacing*100)/100)
-		if u, _ := resistance.Governing(checks); resistance.Passes(u) {
+		if u := tried.Utilisation; resistance.Passes(u) {
 			return []string{fmt.Sprintf("%s: %s then passes at %.2f", way, s.Designation, u)}
 		}
 		return []string{way + ", together with what the other failing checks need"}

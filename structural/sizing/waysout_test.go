@@ -12,14 +12,14 @@ import (
 )
 
 func TestNearestMissNamesWaysOut(t *testing.T) {
-	m := Member{Length: 12, Supports: pinned(0, 12), Actions: []action.Action{{Value: 40e3}}, DeflectionLimit: 500}
+	m := Member{Length: 12, Supports: pinned(0, 12), Actions: []action.Action{{Value: 40e3}}, DeflectionLimit: 500, MaxDepth: 0.9, MaxWidth: 0.4}
 	s := setup(t, 1.5, "S235")
 	r := lightest(t, m, s, series(t, "IPE"))
 	if r.Passes {
 		t.Fatalf("%s passes", r.Section.Designation)
 	}
 	text := strings.Join(r.WaysOut, "\n")
-	for _, want := range []string{"closed tube", "another support", "Wel of at least", "Iy of at least", "instead of L/500"} {
+	for _, want := range []string{"closed tube", "another support", "Wel of at least", "Iy of at least", "instead of L/500", "more than 900 mm of depth", "more than 400 mm of width"} {
 		if !strings.Contains(text, want) {
 			t.Errorf("ways out lack %q:\n%s", want, text)
 		}

@@ -93,7 +93,7 @@ func TestOverhangLimitIsTwiceItsLength(t *testing.T) {
 	m := Member{Length: 12, Supports: pinned(2, 9), Actions: []action.Action{{Value: 3000, Free: true}}, DeflectionLimit: 300}
 	p := prepare(t, m, setup(t, 1.5, "S355"))
 	got := map[string]float64{}
-	for _, d := range p.demand.Deflections {
+	for _, d := range p.deflections {
 		got[d.Where] = d.Limit
 	}
 	want := map[string]float64{"left overhang": 4.0 / 300, "span 1": 7.0 / 300, "right overhang": 6.0 / 300}
@@ -108,7 +108,7 @@ func TestFreeActionIsPlacedSpanBySpan(t *testing.T) {
 	// (AISC Manual table 3-22c, 3-23).
 	m := Member{Length: 20, Supports: pinned(0, 10, 20), RestraintSpacing: 1}
 	s := setup(t, 1.5, "S355")
-	s.Combination.Permanent = 0 // leaves the variable action alone
+	s.Service.Permanent = 0 // leaves the variable action alone in the envelope
 	for _, tc := range []struct {
 		free bool
 		want float64
