@@ -38,9 +38,7 @@ func read[T any](ctx context.Context, s *Service, a Actor, o auth.Operation, fn 
 // list is read for one page of a list; an empty page is [] and not null.
 func list[T any](ctx context.Context, s *Service, a Actor, o auth.Operation, fn func(Tx) (List[T], error)) (List[T], error) {
 	l, err := read(ctx, s, a, o, fn)
-	if l.Items == nil {
-		l.Items = []T{}
-	}
+	l.Items = orEmpty(l.Items)
 	return l, err
 }
 

@@ -12,6 +12,7 @@ import (
 	"github.com/google/uuid"
 
 	"spanwright/api/auth"
+	"spanwright/estimate/assumption"
 	"spanwright/estimate/schedule"
 	"spanwright/estimate/sheet"
 )
@@ -88,6 +89,35 @@ func (s *Service) PostSchedule(ctx context.Context, a Actor, scheme uuid.UUID, p
 	return once(ctx, s, a, "post schedule "+scheme.String(), key, r.ID,
 		func(tx Tx, id uuid.UUID) (Revision, error) { return tx.Revision(ctx, id) },
 		func(tx Tx) (Revision, error) { return s.insertRevision(ctx, tx, a, r) })
+}
+
+// Reading is what a schedule says, before anything is sized, priced or stored.
+type Reading struct {
+	Settings  schedule.Settings  `json:"settings"`
+	Echo      schedule.Echo      `json:"echo" doc:"load of each member and tonnes of each group, as read"`
+	Defaults  []assumption.Entry `json:"defaults" doc:"what was taken because it was left blank"`
+	Omissions []string           `json:"omissions" doc:"kinds that one would expect and that are absent"`
+}
+
+// CheckSchedule reads a schedule and stores nothing: errors as those of
+// PostSchedule.
+func (s *Service) CheckSchedule(ctx context.Context, a Actor, p Posting) (Reading, error) {
+	if err := s.allow(a, auth.PostSchedules); err != nil {
+		return Reading{}, err
+	}
+	sch, err := s.readPosting(ctx, p, "", "")
+	if err != nil {
+		return Reading{}, err
+	}
+	return Reading{Settings: sch.Settings, Echo: sch.Echo, Defaults: orEmpty(sch.Defaults), Omissions: orEmpty(sch.Omissions)}, nil
+}
+
+// orEmpty makes a list print as [] and not as null.
+func orEmpty[T any](l []T) []T {
+	if l == nil {
+		return []T{}
+	}
+	return l
 }
 
 func (s *Service) revision(a Actor, scheme uuid.UUID, p Posting, sch schedule.Schedule) (Revision, error) {
