@@ -59,7 +59,7 @@ func (s *Service) CreateEstimate(ctx context.Context, a Actor, scheme uuid.UUID,
 	if err != nil {
 		return Estimate{}, err
 	}
-	sch, err := s.readPosting(ctx, b.revision.posting(), b.project.Name, b.scheme.Name)
+	sch, err := s.readPosting(ctx, b.revision.posting(), b.book, b.project.Name, b.scheme.Name)
 	if err != nil {
 		return Estimate{}, err
 	}
@@ -100,13 +100,7 @@ func (s *Service) basis(ctx context.Context, tx Tx, scheme uuid.UUID, n NewEstim
 
 // rates fills in the rate book and the multipliers in force.
 func (s *Service) rates(ctx context.Context, tx Tx, b *basis, book *uuid.UUID) error {
-	var stored RateBook
-	var err error
-	if book == nil {
-		stored, err = tx.RateBookByName(ctx, StartingBook)
-	} else {
-		stored, err = tx.RateBook(ctx, *book)
-	}
+	stored, err := bookOf(ctx, tx, book)
 	if err != nil {
 		return err
 	}
@@ -119,6 +113,14 @@ func (s *Service) rates(ctx context.Context, tx Tx, b *basis, book *uuid.UUID) e
 		b.multipliers = append(b.multipliers, m.inForce())
 	}
 	return nil
+}
+
+// bookOf reads a rate book, the starting one when none is named: NotFound.
+func bookOf(ctx context.Context, tx Tx, id *uuid.UUID) (RateBook, error) {
+	if id == nil {
+		return tx.RateBookByName(ctx, StartingBook)
+	}
+	return tx.RateBook(ctx, *id)
 }
 
 func (n NewEstimate) sampling(limit int) (job.Sampling, error) {
@@ -169,6 +171,11 @@ func (s *Service) compute(ctx context.Context, a Actor, b basis, sch schedule.Sc
 
 // fromEngine turns members that cannot be sized into faults by row.
 func fromEngine(err error, sch schedule.Schedule) error {
+	var rates *engine.RatesError
+	if errors.As(err, &rates) {
+		return &Error{Kind: Invalid, Message: rates.Error(), Faults: []Fault{{Found: "the rate book and the multipliers in force", Problem: rates.Err.Error(),
+			Remedy: "fewer digits in rates and multipliers, or multipliers that fit the rate book"}}, Err: err}
+	}
 	var f *engine.FaultsError
 	if !errors.As(err, &f) {
 		return err

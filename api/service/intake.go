@@ -29,7 +29,11 @@ func (s *Service) Intake(ctx context.Context, a Actor, in Intake, key Idempotenc
 	if t, found, err := s.takenBefore(ctx, a, key); err != nil || found {
 		return t, err
 	}
-	sch, err := s.readPosting(ctx, in.Posting, in.Project, in.Scheme)
+	book, err := read(ctx, s, a, auth.MakeEstimates, func(tx Tx) (RateBook, error) { return bookOf(ctx, tx, in.RateBook) })
+	if err != nil {
+		return Taken{}, err
+	}
+	sch, err := s.readPosting(ctx, in.Posting, book.Content, in.Project, in.Scheme)
 	if err != nil {
 		return Taken{}, err
 	}

@@ -75,11 +75,6 @@ func checkedMultiplier(v ratebook.Multiplier, scheme *uuid.UUID, a Actor) (rateb
 	if v.Scope == ratebook.ProjectScope && scheme != nil {
 		return v, invalid("/multiplier/scope", string(v.Scope), "the whole project, but scheme_id names one scheme", "scope scheme, or no scheme_id")
 	}
-	if v.Group != "" {
-		if _, ok := ratebook.Ratio().Correlation[v.Group]; !ok {
-			return v, invalid("/multiplier/group", v.Group, "unknown correlation group", "labour, supply or none")
-		}
-	}
 	return v, nil
 }
 

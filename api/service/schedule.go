@@ -7,32 +7,44 @@ import (
 	"encoding/hex"
 	"errors"
 	"path"
+	"strconv"
 	"strings"
 
 	"github.com/google/uuid"
 
 	"spanwright/api/auth"
 	"spanwright/estimate/assumption"
+	"spanwright/estimate/ratebook"
 	"spanwright/estimate/schedule"
 	"spanwright/estimate/sheet"
 )
 
 // readPosting reads a schedule from what was posted, with every fault at once.
-func (s *Service) readPosting(ctx context.Context, p Posting, project, scheme string) (schedule.Schedule, error) {
-	o := schedule.Options{MaxMembers: s.limits.Members, Project: project, Scheme: scheme, JobTable: p.JobTable}
+func (s *Service) readPosting(ctx context.Context, p Posting, book ratebook.Book, project, scheme string) (schedule.Schedule, error) {
+	o := schedule.Options{MaxMembers: s.limits.Members, Project: project, Scheme: scheme, JobTable: p.JobTable, ConnectionClasses: book.ConnectionClasses()}
 	if int64(len(p.Data)) > s.limits.Sheet.Bytes {
 		return schedule.Schedule{}, &Error{Kind: TooLarge, Message: "the schedule is larger than the limit"}
 	}
 	if strings.HasPrefix(p.ContentType, "application/json") {
 		sch, err := schedule.ReadJSON(ctx, p.Data, o)
-		return sch, fromJSON(fromReading(err))
+		return sch, s.checkGroups(sch, fromJSON(fromReading(err)))
 	}
-	book, err := sheet.Open(p.Data, p.Name, p.ContentType, s.limits.Sheet)
+	cells, err := sheet.Open(p.Data, p.Name, p.ContentType, s.limits.Sheet)
 	if err != nil {
 		return schedule.Schedule{}, fromReading(err)
 	}
-	sch, err := schedule.Read(ctx, book, o)
-	return sch, fromReading(err)
+	sch, err := schedule.Read(ctx, cells, o)
+	return sch, s.checkGroups(sch, fromReading(err))
+}
+
+// checkGroups refuses a schedule of more groups than the limit, because a
+// document grows with them; err goes first.
+func (s *Service) checkGroups(sch schedule.Schedule, err error) error {
+	if n := len(sch.Echo.Groups); err == nil && n > s.limits.Groups {
+		return &Error{Kind: Invalid, Message: "the schedule has too many groups", Faults: []Fault{{Header: "Group", Found: strconv.Itoa(n) + " groups",
+			Problem: "more than can be priced apart", Remedy: "at most " + strconv.Itoa(s.limits.Groups) + " groups"}}}
+	}
+	return err
 }
 
 // fromReading classifies what reading a spreadsheet reports.
@@ -68,17 +80,22 @@ func (s *Service) PostSchedule(ctx context.Context, a Actor, scheme uuid.UUID, p
 		return Revision{}, err
 	}
 	var project Project
-	sc, err := read(ctx, s, a, auth.ReadProjects, func(tx Tx) (Scheme, error) {
+	var book RateBook
+	sc, err := read(ctx, s, a, auth.PostSchedules, func(tx Tx) (Scheme, error) {
 		sc, err := tx.Scheme(ctx, scheme)
-		if err == nil {
-			project, err = tx.Project(ctx, sc.Project)
+		if err != nil {
+			return sc, err
 		}
+		if project, err = tx.Project(ctx, sc.Project); err != nil {
+			return sc, err
+		}
+		book, err = bookOf(ctx, tx, nil)
 		return sc, err
 	})
 	if err != nil {
 		return Revision{}, err
 	}
-	sch, err := s.readPosting(ctx, p, project.Name, sc.Name)
+	sch, err := s.readPosting(ctx, p, book.Content, project.Name, sc.Name)
 	if err != nil {
 		return Revision{}, err
 	}
@@ -102,10 +119,11 @@ type Reading struct {
 // CheckSchedule reads a schedule and stores nothing: errors as those of
 // PostSchedule.
 func (s *Service) CheckSchedule(ctx context.Context, a Actor, p Posting) (Reading, error) {
-	if err := s.allow(a, auth.PostSchedules); err != nil {
+	book, err := read(ctx, s, a, auth.PostSchedules, func(tx Tx) (RateBook, error) { return bookOf(ctx, tx, nil) })
+	if err != nil {
 		return Reading{}, err
 	}
-	sch, err := s.readPosting(ctx, p, "", "")
+	sch, err := s.readPosting(ctx, p, book.Content, "", "")
 	if err != nil {
 		return Reading{}, err
 	}

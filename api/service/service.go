@@ -40,6 +40,7 @@ type RunFunc func(ctx context.Context, j job.Job, progress engine.Progress) (doc
 type Limits struct {
 	Sheet   sheet.Limits
 	Members int // rows of one schedule
+	Groups  int // groups of members of one schedule
 	Trials  int // replicates × trials of one estimate
 	Heavy   int // estimates computed at the same time; more are answered Busy
 }
@@ -47,7 +48,7 @@ type Limits struct {
 // DefaultLimits are the limits of DEVELOPERS.md: 20 MB, 20,000 members, 1,000,000
 // trials, two heavy requests.
 func DefaultLimits() Limits {
-	l := Limits{Sheet: sheet.DefaultLimits(), Members: 20_000, Trials: 1_000_000, Heavy: 2}
+	l := Limits{Sheet: sheet.DefaultLimits(), Members: 20_000, Groups: 500, Trials: 1_000_000, Heavy: 2}
 	l.Sheet.Rows = l.Members + 100 // heads and notes beside the members
 	return l
 }

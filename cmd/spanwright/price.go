@@ -105,13 +105,25 @@ func renderer(format string) (func(document.Document) ([]byte, error), error) {
 	return nil, fmt.Errorf("format: found %q; accepted: table, json, xlsx, csv", format)
 }
 
+// readBook reads the rate book of a file, or the starting one.
+func readBook(file string) (ratebook.Book, error) {
+	if file == "" {
+		return ratebook.Ratio(), nil
+	}
+	raw, err := os.ReadFile(file)
+	if err != nil {
+		return ratebook.Book{}, err
+	}
+	return ratebook.Parse(raw)
+}
+
 // read reads a schedule and the hash of its bytes.
-func (p *program) read(ctx context.Context, path string, o priceOptions) (schedule.Schedule, job.Source, error) {
+func (p *program) read(ctx context.Context, path string, book ratebook.Book, o priceOptions) (schedule.Schedule, job.Source, error) {
 	data, err := p.readInput(path)
 	if err != nil {
 		return schedule.Schedule{}, job.Source{}, err
 	}
-	options := schedule.Options{MaxMembers: offlineMembers, Project: o.project, Scheme: o.scheme}
+	options := schedule.Options{MaxMembers: offlineMembers, Project: o.project, Scheme: o.scheme, ConnectionClasses: book.ConnectionClasses()}
 	if o.jobTable != "" {
 		if options.JobTable, err = os.ReadFile(o.jobTable); err != nil {
 			return schedule.Schedule{}, job.Source{}, err
@@ -124,19 +136,13 @@ func (p *program) read(ctx context.Context, path string, o priceOptions) (schedu
 
 // estimate takes a file through the same stages as the service does.
 func (p *program) estimate(ctx context.Context, path string, o priceOptions) (document.Document, error) {
-	sch, source, err := p.read(ctx, path, o)
+	book, err := readBook(o.rateBook)
 	if err != nil {
 		return document.Document{}, err
 	}
-	book := ratebook.Ratio()
-	if o.rateBook != "" {
-		raw, err := os.ReadFile(o.rateBook)
-		if err != nil {
-			return document.Document{}, err
-		}
-		if book, err = ratebook.Parse(raw); err != nil {
-			return document.Document{}, err
-		}
+	sch, source, err := p.read(ctx, path, book, o)
+	if err != nil {
+		return document.Document{}, err
 	}
 	j, err := job.Freeze(sch, source, book, nil,
 		job.Sampling{Seed: o.seed, Replicates: o.replicates, Trials: o.trials})
@@ -150,7 +156,11 @@ func (p *program) estimate(ctx context.Context, path string, o priceOptions) (do
 
 // checkSchedule prints what was read, in tables for a terminal.
 func (p *program) checkSchedule(ctx context.Context, path string, o priceOptions) error {
-	sch, _, err := p.read(ctx, path, o)
+	book, err := readBook(o.rateBook)
+	if err != nil {
+		return err
+	}
+	sch, _, err := p.read(ctx, path, book, o)
 	if err != nil {
 		return err
 	}

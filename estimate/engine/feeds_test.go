@@ -29,6 +29,7 @@ B4,Bridge,beam,700,9,,1,2,,,,,,,0; 4; 9,,,,HEB,S275,,
 B5,Bridge,post,900,4,strut,,,,,80,,,,,,0.9,,CHS,S275,,
 B6,Bridge,beam,800,5,simple,0.5,0.7,,,30,,,,,,0.95,,RHS,S355,,
 B7,Bridge,beam,600,6,simple,1,2,,,,,,,,,,,IPE 300,S275,,
+B8,Bridge,beam,500,6,simple,1,1,,,60,,,,,,,,IPE 400,S355,,
 G1,Gallery,grating,1000,8,not sized,,,,,,,,,,,,,,,28.5 kg/m²,12
 H1,Gallery,handrail,2000,10,not sized,,,,,,,,,,,,,,,14.5,
 `
@@ -137,6 +138,8 @@ func bookLeaves(j job.Job) []leaf {
 		{id: "allowance/growth/class 5", move: func(j *job.Job) { move(j.Book.Growth, "5") }},
 		{id: "systemic/class 5", move: func(j *job.Job) { j.Book.Systemic["5"] *= 1.01 }},
 		{id: "setting/reference price", move: func(j *job.Job) { j.Book.ReferencePrice = j.Book.ReferencePrice.Add(money.FromInt(9)) }},
+		{id: "setting/correlation/labour", move: func(j *job.Job) { j.Book.Correlation["labour"] *= 1.01 }},
+		{id: "setting/correlation/supply", move: func(j *job.Job) { j.Book.Correlation["supply"] *= 1.01 }},
 		{id: "setting/confidence", move: func(j *job.Job) { j.Settings.Confidence *= 1.01 }},
 	}
 	for c := range j.Book.Ratios {

@@ -53,12 +53,17 @@ func memberFindings(s sizedMember) []document.Finding {
 		out = append(out, f)
 	}
 	for _, c := range s.result.Checks {
-		if c.Note != "" && !resistance.Passes(c.Utilisation) {
-			out = append(out, document.Finding{Severity: document.Doubtful, Code: "check-note", Subject: mark, Message: c.Note, Figures: figures})
+		slender := c.ID == resistance.Axial
+		failing := !resistance.Passes(c.Utilisation) && c.ID != resistance.Deflecting
+		if c.Note != "" && (slender || failing) {
+			out = append(out, document.Finding{Severity: document.Doubtful, Code: "check-note", Subject: mark, Message: sentence(c.ID + ": " + c.Note), Figures: figures})
 		}
 	}
 	return out
 }
+
+// sentence ends a note with a full stop.
+func sentence(s string) string { return strings.TrimSuffix(s, ".") + "." }
 
 // unsafeShortcut names the ratios of the split method that are too low. The
 // sizing itself uses the exact envelope, so the finding warns against the
@@ -173,6 +178,15 @@ func (r *run) totalFindings(d document.Document) []document.Finding {
 	}
 	if rho := zeroCorrelation(r.job.Book.Correlation); len(rho) > 0 {
 		add(document.Doubtful, "no-correlation", "Costs of the group "+strings.Join(rho, ", ")+" are taken as uncorrelated (ρ = 0), which narrows the range.", "range")
+	}
+	for _, it := range r.items {
+		if it.Net.Sign() == 0 || it.Delivered.Sign() == 0 || it.Purchased.Sign() == 0 {
+			out = append(out, document.Finding{Severity: document.Doubtful, Code: "too-light", Subject: it.Group, Figures: []string{"item/" + it.ID + "/net"},
+				Message: fmt.Sprintf("The pieces %s together weigh less than half a kilogram and are priced at nothing.", strings.Join(it.Marks, ", "))})
+		}
+	}
+	if s := r.job.Settings; s.Coating+s.ExecutionClass+s.StockLengths != "" {
+		add(document.Notice, "recorded-only", "Coating, execution class and stock lengths are recorded with the job; the ratio book does not price them apart.")
 	}
 	for _, o := range r.job.Omissions {
 		add(document.Notice, "possible-omission", o)

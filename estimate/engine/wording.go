@@ -45,6 +45,7 @@ func exclusions() []string {
 		"Taxes and duties.",
 		"Escalation after the base date and exchange risk.",
 		"Equipment, conveyors, piping, electrical work, cladding and roofing.",
+		"Corrosion allowance, least wall thickness and durability.",
 		"Dynamic effects, vibration, fatigue, earthquake and accidental actions: not checked.",
 		"Wind and other horizontal actions: not checked in this version.",
 		"Design of connections, splices and bearings; they are priced by allowance.",
@@ -55,6 +56,7 @@ func exclusions() []string {
 func (r *run) textNotes() []string {
 	out := []string{
 		"Concept sizes follow the exact envelope; the split method is shown beside it and never used for reactions.",
+		"What an assumption feeds is stated for sections as chosen; entries marked so may also choose other sections, and then move masses and costs in steps.",
 		"Percentiles of lines, groups or projects do not add up.",
 		"Labour, coating, freight and erection follow delivered mass; material follows purchased mass.",
 	}
