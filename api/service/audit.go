@@ -3,6 +3,7 @@ package service
 import (
 	"context"
 	"strings"
+	"unicode"
 
 	"github.com/google/uuid"
 
@@ -54,7 +55,11 @@ func checkName(pointer, name string, most int) error {
 		return invalid(pointer, name, "empty", "a name")
 	case len([]rune(name)) > most:
 		return invalid(pointer, string([]rune(name)[:40])+"…", "too long", "a shorter name")
-	case strings.ContainsFunc(name, func(r rune) bool { return r < 0x20 || r == 0x7f || r == 0xfffd }):
+	case name != strings.TrimSpace(name):
+		return invalid(pointer, name, "begins or ends with a blank", "the name without it")
+	case strings.ContainsFunc(name, func(r rune) bool {
+		return r < 0x20 || r == 0x7f || r == 0xfffd || unicode.Is(unicode.Bidi_Control, r)
+	}):
 		return invalid(pointer, name, "holds a control character", "plain text")
 	}
 	return nil

@@ -59,7 +59,7 @@ func (s *Service) CreateEstimate(ctx context.Context, a Actor, scheme uuid.UUID,
 	if err != nil {
 		return Estimate{}, err
 	}
-	sch, err := s.readPosting(ctx, b.revision.posting(), b.book, b.project.Name, b.scheme.Name)
+	sch, err := s.readPosting(ctx, b.revision.posting(), b.book.ConnectionClasses(), b.project.Name, b.scheme.Name)
 	if err != nil {
 		return Estimate{}, err
 	}
@@ -134,11 +134,16 @@ func (n NewEstimate) sampling(limit int) (job.Sampling, error) {
 	if n.Trials != 0 {
 		sampling.Trials = n.Trials
 	}
-	if err := sampling.Validate(); err != nil {
-		return sampling, invalid("/trials", fmt.Sprintf("%d × %d", sampling.Replicates, sampling.Trials), err.Error(), "32 or more replicates of 64 or more trials")
+	field := "/trials"
+	if sampling.Replicates < job.MinReplicates || sampling.Replicates > limit {
+		field = "/replicates"
 	}
-	if sampling.Replicates > limit/sampling.Trials {
-		return sampling, &Error{Kind: TooLarge, Message: fmt.Sprintf("%d × %d trials are over the limit of %d", sampling.Replicates, sampling.Trials, limit)}
+	found := fmt.Sprintf("%d × %d", sampling.Replicates, sampling.Trials)
+	if sampling.Trials > 0 && sampling.Replicates > limit/sampling.Trials {
+		return sampling, invalid(field, found, "more trials than this server runs", fmt.Sprintf("%d in all", limit))
+	}
+	if err := sampling.Validate(); err != nil {
+		return sampling, invalid(field, found, err.Error(), "32 or more replicates of 64 or more trials")
 	}
 	return sampling, nil
 }
@@ -151,6 +156,9 @@ type computed struct {
 
 // compute runs the engine; no transaction is open meanwhile.
 func (s *Service) compute(ctx context.Context, a Actor, b basis, sch schedule.Schedule, sampling job.Sampling) (computed, error) {
+	if err := sameCurrency(b.project, sch); err != nil {
+		return computed{}, err
+	}
 	select {
 	case s.heavy <- struct{}{}:
 		defer func() { <-s.heavy }()
@@ -192,6 +200,18 @@ func fromEngine(err error, sch schedule.Schedule) error {
 	return out
 }
 
+// sameCurrency refuses a schedule in another currency than its project's.
+func sameCurrency(p Project, sch schedule.Schedule) error {
+	if p.Currency == sch.Settings.Currency {
+		return nil
+	}
+	return &Error{Kind: Invalid, Message: fmt.Sprintf("the project is in %s, the schedule in %s", p.Currency, sch.Settings.Currency),
+		Faults: []Fault{{Sheet: "Job", Header: "Currency", Found: sch.Settings.Currency, Problem: "differs from the project's currency", Remedy: p.Currency + ", or another project"}}}
+}
+
+// largestDocument is the size in bytes beyond which an estimate is not stored.
+const largestDocument = 128 << 20
+
 // seal writes the canonical bytes and the head that lists and pages read.
 func (s *Service) seal(a Actor, b basis, j job.Job, d document.Document) (computed, error) {
 	var c computed
@@ -202,6 +222,9 @@ func (s *Service) seal(a Actor, b basis, j job.Job, d document.Document) (comput
 	}
 	if c.document, docSum, err = d.Canonical(); err != nil {
 		return c, err
+	}
+	if n := len(c.document); n > largestDocument {
+		return c, &Error{Kind: Invalid, Message: fmt.Sprintf("the estimate would be %d MB, more than the %d MB that are stored; split the schedule", n>>20, largestDocument>>20)}
 	}
 	id, err := s.newID()
 	if err != nil {

@@ -6,7 +6,9 @@ import (
 	"crypto/sha256"
 	"encoding/hex"
 	"errors"
+	"maps"
 	"path"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -14,16 +16,22 @@ import (
 
 	"spanwright/api/auth"
 	"spanwright/estimate/assumption"
-	"spanwright/estimate/ratebook"
 	"spanwright/estimate/schedule"
 	"spanwright/estimate/sheet"
 )
 
 // readPosting reads a schedule from what was posted, with every fault at once.
-func (s *Service) readPosting(ctx context.Context, p Posting, book ratebook.Book, project, scheme string) (schedule.Schedule, error) {
-	o := schedule.Options{MaxMembers: s.limits.Members, Project: project, Scheme: scheme, JobTable: p.JobTable, ConnectionClasses: book.ConnectionClasses()}
+func (s *Service) readPosting(ctx context.Context, p Posting, classes []string, project, scheme string) (schedule.Schedule, error) {
+	o := schedule.Options{MaxMembers: s.limits.Members, Project: project, Scheme: scheme, JobTable: p.JobTable, ConnectionClasses: classes}
 	if int64(len(p.Data)) > s.limits.Sheet.Bytes {
 		return schedule.Schedule{}, &Error{Kind: TooLarge, Message: "the schedule is larger than the limit"}
+	}
+	if len(p.Data) > largePosting {
+		release, err := s.place(ctx)
+		if err != nil {
+			return schedule.Schedule{}, err
+		}
+		defer release()
 	}
 	if strings.HasPrefix(p.ContentType, "application/json") {
 		sch, err := schedule.ReadJSON(ctx, p.Data, o)
@@ -35,6 +43,22 @@ func (s *Service) readPosting(ctx context.Context, p Posting, book ratebook.Book
 	}
 	sch, err := schedule.Read(ctx, cells, o)
 	return sch, s.checkGroups(sch, fromReading(err))
+}
+
+// classesOf are the connection classes of every rate book of the organisation: a
+// schedule may be priced with any of them.
+func classesOf(ctx context.Context, tx Tx) ([]string, error) {
+	books, err := tx.RateBooks(ctx, Page{Limit: 200})
+	if err != nil {
+		return nil, err
+	}
+	known := map[string]bool{}
+	for _, b := range books.Items {
+		for _, c := range b.Content.ConnectionClasses() {
+			known[c] = true
+		}
+	}
+	return slices.Sorted(maps.Keys(known)), nil
 }
 
 // checkGroups refuses a schedule of more groups than the limit, because a
@@ -80,7 +104,7 @@ func (s *Service) PostSchedule(ctx context.Context, a Actor, scheme uuid.UUID, p
 		return Revision{}, err
 	}
 	var project Project
-	var book RateBook
+	var classes []string
 	sc, err := read(ctx, s, a, auth.PostSchedules, func(tx Tx) (Scheme, error) {
 		sc, err := tx.Scheme(ctx, scheme)
 		if err != nil {
@@ -89,14 +113,17 @@ func (s *Service) PostSchedule(ctx context.Context, a Actor, scheme uuid.UUID, p
 		if project, err = tx.Project(ctx, sc.Project); err != nil {
 			return sc, err
 		}
-		book, err = bookOf(ctx, tx, nil)
+		classes, err = classesOf(ctx, tx)
 		return sc, err
 	})
 	if err != nil {
 		return Revision{}, err
 	}
-	sch, err := s.readPosting(ctx, p, book.Content, project.Name, sc.Name)
+	sch, err := s.readPosting(ctx, p, classes, project.Name, sc.Name)
 	if err != nil {
+		return Revision{}, err
+	}
+	if err := sameCurrency(project, sch); err != nil {
 		return Revision{}, err
 	}
 	r, err := s.revision(a, sc.ID, p, sch)
@@ -119,11 +146,11 @@ type Reading struct {
 // CheckSchedule reads a schedule and stores nothing: errors as those of
 // PostSchedule.
 func (s *Service) CheckSchedule(ctx context.Context, a Actor, p Posting) (Reading, error) {
-	book, err := read(ctx, s, a, auth.PostSchedules, func(tx Tx) (RateBook, error) { return bookOf(ctx, tx, nil) })
+	classes, err := read(ctx, s, a, auth.PostSchedules, func(tx Tx) ([]string, error) { return classesOf(ctx, tx) })
 	if err != nil {
 		return Reading{}, err
 	}
-	sch, err := s.readPosting(ctx, p, book.Content, "", "")
+	sch, err := s.readPosting(ctx, p, classes, "", "")
 	if err != nil {
 		return Reading{}, err
 	}

@@ -44,7 +44,7 @@ func newServer(t *testing.T) *server {
 	}
 	t.Cleanup(a.Close)
 	log := slog.New(slog.DiscardHandler)
-	svc := newService(st, log)
+	svc := newService(st, service.DefaultLimits(), log)
 	pages, err := dashboard.New(dashboard.Config{Service: svc, Logger: log})
 	if err != nil {
 		t.Fatal(err)

@@ -146,6 +146,14 @@ func (c *checker) spread(field string, s spread.Spread, low, high float64) {
 	c.want(lo >= low && hi <= high, field, fmt.Sprintf("%g to %g", lo, hi), fmt.Sprintf("values from %g to %g", low, high))
 }
 
+// short is the beginning of a text, for a message.
+func short(text string) string {
+	if r := []rune(text); len(r) > 60 {
+		return string(r[:60]) + "…"
+	}
+	return text
+}
+
 func (c *checker) correlation(b Book) {
 	for g, rho := range b.Correlation {
 		c.want(rho >= 0 && rho < 1, "/correlation/"+g, strconv.FormatFloat(rho, 'g', -1, 64), "a rank correlation from 0 to below 1")
@@ -186,5 +194,6 @@ func (c *checker) multiplier(field string, m Multiplier) {
 		c.want(slices.Contains(Categories(), cat), fmt.Sprintf("%s/categories/%d", field, i), cat, strings.Join(Categories(), ", "))
 	}
 	c.spread(field+"/spread", m.Spread, 0, maxFactor)
-	c.want(m.Reason != "", field+"/reason", m.Reason, "why it is so")
+	c.want(m.Reason != "" && len([]rune(m.Reason)) <= 2000, field+"/reason", short(m.Reason), "why it is so, in 1 to 2000 characters")
+	c.want(len([]rune(m.Subject)) <= 200, field+"/subject", short(m.Subject), "at most 200 characters")
 }
