@@ -91,6 +91,7 @@ func build(c Config) (*api, *echo.Echo) {
 const (
 	headerTimeout = 10 * time.Second
 	readTimeout   = 2 * time.Minute
+	writeTimeout  = 10 * time.Minute // the longest computation and a slow reader
 	idleTimeout   = 2 * time.Minute
 	maxHeader     = 64 << 10 // bytes
 )
@@ -100,5 +101,5 @@ const (
 // longer than any fixed time.
 func Server(addr string, h http.Handler) *http.Server {
 	return &http.Server{Addr: addr, Handler: h, ReadHeaderTimeout: headerTimeout, ReadTimeout: readTimeout,
-		IdleTimeout: idleTimeout, MaxHeaderBytes: maxHeader}
+		WriteTimeout: writeTimeout, IdleTimeout: idleTimeout, MaxHeaderBytes: maxHeader}
 }

@@ -69,7 +69,7 @@ func (a *api) fromDocument(ctx context.Context, r *request, id uuid.UUID, o rend
 	if err != nil {
 		return nil, err
 	}
-	out, err := a.rendered(o, head, canonical)
+	out, err := a.rendered(ctx, o, head, canonical)
 	if err == nil {
 		out.Status = http.StatusOK
 	}

@@ -110,7 +110,7 @@ func TestEstimateRequest(t *testing.T) {
 	path := "/v1/schemes/" + ids["scheme"] + "/estimates"
 	for body, status := range map[string]int{
 		`{}`: 201, `{"seed":18446744073709551615}`: 201, `{"replicates":64,"trials":64}`: 201,
-		`{"seed":-1}`: 422, `{"seed":1.5}`: 422, `{"seed":"1"}`: 422, `{"trials":1}`: 422, `{"replicates":1}`: 422, `{"trials":40000}`: 413, `{"schedule_revision_id":"x"}`: 422,
+		`{"seed":-1}`: 422, `{"seed":1.5}`: 422, `{"seed":"1"}`: 422, `{"trials":1}`: 422, `{"replicates":1}`: 422, `{"trials":40000}`: 422, `{"schedule_revision_id":"x"}`: 422,
 		`{"rate_book_id":"` + exampleID.String() + `"}`: 201,
 	} {
 		rec, body2 := w.want(status, call{method: "POST", path: path, body: body})

@@ -16,6 +16,7 @@ import (
 	"spanwright/estimate/document"
 	"spanwright/estimate/money"
 	"spanwright/estimate/ratebook"
+	"spanwright/estimate/schedule"
 	"spanwright/estimate/spread"
 )
 
@@ -64,7 +65,7 @@ func examples() map[string]any {
 	all := map[string]any{
 		"Project": project, "ProjectList": only(project), "NewProject": service.NewProject{Name: project.Name, Currency: "EUR", BaseDate: "2026-06-01", DisplayUnits: "SI"},
 		"Scheme": scheme, "SchemeList": only(scheme), "NewScheme": NewScheme{Name: scheme.Name},
-		"Schedule": revision, "ScheduleList": only(revision),
+		"Reading": exampleReading(), "Schedule": revision, "ScheduleList": only(revision),
 		"Estimate": estimate, "EstimateList": only(estimate), "NewEstimate": service.NewEstimate{Replicates: 32, Trials: 4096},
 		"RateBook": book, "RateBookList": only(book), "RateBookContent": book.Content,
 		"Multiplier": multiplier, "MultiplierList": only(multiplier), "NewMultiplier": NewMultiplier{Value: posted}, "MultiplierChange": MultiplierChange{Value: posted},
@@ -86,6 +87,17 @@ func exampleEstimate() service.Estimate {
 		Currency: "EUR", Base: amount("3240.00"), P10: amount("2890.00"), P50: amount("3410.00"), P80: amount("3980.00"), P90: amount("4330.00"), Mean: amount("3510.00"),
 		Confidence: 0.8, Contingency: amount("740.00"), Net: amount("1.200"), Delivered: amount("1.350"), Purchased: amount("1.450"), Members: 1, Unsafe: 0,
 		CreatedAt: exampleTime, CreatedBy: "estimating desk"}
+}
+
+func exampleReading() service.Reading {
+	return service.Reading{
+		Settings: schedule.Settings{Project: "Brackwater loading quay", Scheme: "Two trestles", DesignBasis: "allowable", Factor: 3, Grade: "S275",
+			DeflectionLimit: 250, EstimateClass: 4, Currency: "EUR", BaseDate: "2026-06-01", Confidence: 0.8},
+		Echo: schedule.Echo{Members: []schedule.EchoMember{{Mark: "B1", Permanent: 12, Variable: 24}}, Groups: []schedule.EchoGroup{{Group: "Beams", Pieces: 4}}},
+		Defaults: []assumption.Entry{{ID: "default/restraint/full span", Kind: assumption.Default, Statement: "The compression flange is restrained at the supports alone.",
+			Value: "full span", Source: "common practice, no source", Owner: "Spanwright", Confidence: assumption.Medium, Feeds: []string{"member/B1/check/lateral-torsional buckling"}}},
+		Omissions: []string{"No stair rows: add them, as rows that are not sized with their mass, or make sure that there are none."},
+	}
 }
 
 func exampleDocument() document.Document {

@@ -34,6 +34,10 @@ var shapeErrors = sync.OnceFunc(func() {
 	}
 })
 
+// mostFaults bounds the faults of one answer to a JSON body: each is looked up in
+// the body, and a hostile body can hold very many.
+const mostFaults = 100
+
 // fromValidation turns what huma found into a problem with faults in a fixed
 // order. A server's fault is told without detail.
 func fromValidation(r *request, status int, message string, errs []error) *Problem {
@@ -47,7 +51,11 @@ func fromValidation(r *request, status int, message string, errs []error) *Probl
 	if len(errs) > 0 && len(r.Body) > 0 {
 		_ = json.Unmarshal(r.Body, &body) // only to place faults; a body that cannot be read has one fault, of the whole
 	}
-	for _, err := range errs {
+	for i, err := range errs {
+		if i == mostFaults {
+			p.Faults = append(p.Faults, service.Fault{Found: fmt.Sprintf("%d faults in all", len(errs)), Problem: "only the first are listed", Remedy: "mend those listed and send it again"})
+			break
+		}
 		var d *huma.ErrorDetail
 		if !errors.As(err, &d) {
 			d = &huma.ErrorDetail{Message: err.Error()}
@@ -151,6 +159,9 @@ func split(path string, body any) []string {
 }
 
 func name(path string, object map[string]any) string {
+	if _, ok := object[path]; ok {
+		return path
+	}
 	longest, ok := "", false
 	for key := range object {
 		rest, fits := strings.CutPrefix(path, key)

@@ -74,7 +74,7 @@ func (a *api) takeIn(ctx context.Context, r *request, in *Keyed) (*content, erro
 	if err != nil {
 		return nil, err
 	}
-	out, err := a.rendered(chosen, t.Estimate, canonical)
+	out, err := a.rendered(ctx, chosen, t.Estimate, canonical)
 	if err != nil {
 		return nil, err
 	}
@@ -113,11 +113,11 @@ func marshal(v any) ([]byte, error) {
 }
 
 // rendered is the document in the form chosen.
-func (a *api) rendered(o rendering, e service.Estimate, canonical []byte) (*content, error) {
+func (a *api) rendered(ctx context.Context, o rendering, e service.Estimate, canonical []byte) (*content, error) {
 	body := canonical
 	if o.write != nil {
 		var err error
-		if body, err = o.write(canonical); err != nil {
+		if body, err = a.service.Export(ctx, func() ([]byte, error) { return o.write(canonical) }); err != nil {
 			return nil, fmt.Errorf("writing estimate %s as %s: %w", e.ID, o.suffix, err)
 		}
 	}

@@ -38,7 +38,7 @@ func (a *api) rateBooks() {
 			return &made[service.RateBook]{Location: "/v1/rate-books/" + b.ID.String(), ETag: etag(b.Version), Body: b}, err
 		})
 	register(a, described(operation(http.MethodGet, "/v1/rate-books/starting", "get-starting-rate-book", tagRates, "Read the starting book"),
-		"The book that an estimate takes where none is named. Its figures are invented and say so; copy it, change it and post it as your own."),
+		"The book named ratio as an organisation begins with it; estimates that name no book take the organisation's own edition of it. Its figures are invented and say so."),
 		func(context.Context, *request, *struct{}) (*plain[ratebook.Book], error) {
 			return &plain[ratebook.Book]{Body: ratebook.Ratio()}, nil
 		})

@@ -33,6 +33,10 @@ func (a *api) schedules() {
 		writing(http.StatusConflict)...),
 		"The body is the workbook, the CSV file or JSON itself, or a form with it. Either every row is taken or none; all faults are answered at once, by cell."),
 		a.limits.Sheet.Bytes+formSlack, body, a.postSchedule)
+	check := described(operation(http.MethodPost, "/v1/schedules/check", "check-schedule", tagSchedules, "Read a schedule without storing it", writing()...),
+		"Answers the load of each member, the tonnes of each group as far as they are known before sizing, every default taken and what may have been forgotten; or all faults, by cell.")
+	check.DefaultStatus = http.StatusOK
+	registerRaw(a, check, a.limits.Sheet.Bytes+formSlack, body, a.checkSchedule)
 	register(a, operation(http.MethodGet, "/v1/schedules/{id}", "get-schedule", tagSchedules, "Read a schedule revision"),
 		func(ctx context.Context, r *request, in *ByID) (*plain[service.Revision], error) {
 			v, err := a.service.Revision(ctx, r.Actor, in.ID)
@@ -43,17 +47,38 @@ func (a *api) schedules() {
 	register(a, o, a.source)
 }
 
-func (a *api) postSchedule(ctx context.Context, r *request, in *newSchedule) (*made[service.Revision], error) {
-	p := service.Posting{Name: r.FileName, ContentType: r.ContentType, Data: r.Body}
-	key := r.attempt(in.Keyed, []byte(r.MediaType), []byte(r.FileName), r.Body)
-	if r.MediaType == mediaMultipart {
-		f, err := readForm(r, "file", "job")
-		if err != nil {
-			return nil, err
-		}
-		p, key = f.posting(), r.attempt(in.Keyed, f.content()...)
+type checkedSchedule struct {
+	XFileName string `header:"X-File-Name" doc:"name of the posted file, for a body that is the file itself" example:"quay.csv"`
+}
+
+func (a *api) checkSchedule(ctx context.Context, r *request, _ *checkedSchedule) (*plain[service.Reading], error) {
+	p, _, err := posting(r)
+	if err != nil {
+		return nil, err
 	}
-	v, err := a.service.PostSchedule(ctx, r.Actor, in.ID, p, key)
+	v, err := a.service.CheckSchedule(ctx, r.Actor, p)
+	return &plain[service.Reading]{Body: v}, err
+}
+
+// posting is the file of a request, sent as the body or in a form, and the form's
+// content for a fingerprint.
+func posting(r *request) (service.Posting, [][]byte, error) {
+	if r.MediaType != mediaMultipart {
+		return service.Posting{Name: r.FileName, ContentType: r.ContentType, Data: r.Body}, [][]byte{[]byte(r.MediaType), []byte(r.FileName), r.Body}, nil
+	}
+	f, err := readForm(r, "file", "job")
+	if err != nil {
+		return service.Posting{}, nil, err
+	}
+	return f.posting(), f.content(), nil
+}
+
+func (a *api) postSchedule(ctx context.Context, r *request, in *newSchedule) (*made[service.Revision], error) {
+	p, parts, err := posting(r)
+	if err != nil {
+		return nil, err
+	}
+	v, err := a.service.PostSchedule(ctx, r.Actor, in.ID, p, r.attempt(in.Keyed, parts...))
 	return &made[service.Revision]{Location: "/v1/schedules/" + v.ID.String(), Body: v}, err
 }
 

@@ -27,6 +27,8 @@ import (
 type Service interface {
 	// SignIn makes a session of a token and returns its secret and its end: Unauthenticated.
 	SignIn(ctx context.Context, token, requestID string) (string, time.Time, error)
+	// Export runs work that holds a whole document in memory: Busy.
+	Export(ctx context.Context, work func() ([]byte, error)) ([]byte, error)
 	// SignOut ends a session; an unknown one is no error.
 	SignOut(ctx context.Context, secret, requestID string) error
 	// Session finds who a session's secret stands for: Unauthenticated.
@@ -101,7 +103,8 @@ func (d *dashboard) routes() *http.ServeMux {
 const requestIDHeader = "X-Request-Id"
 
 // harden sets the headers that every answer has. The request id is the one that
-// the server in front has set on the answer, never one that the client sent.
+// the routes in front have set on the answer: the client's where it is a sane
+// token, else a new one.
 //
 // The referrer goes to the own origin only; “no-referrer” would make browsers
 // post forms with “Origin: null”, which the same-origin check refuses.

@@ -66,11 +66,14 @@ func (d *dashboard) estimateFile(w http.ResponseWriter, r *http.Request, a servi
 	if err != nil {
 		return err
 	}
-	doc, err := document.Parse(stored)
-	if err != nil {
-		return fmt.Errorf("estimate %s: %w", id, err)
-	}
-	data, err := file.write(doc, stored)
+	var doc document.Document
+	data, err := d.service.Export(r.Context(), func() ([]byte, error) {
+		var err error
+		if doc, err = document.Parse(stored); err != nil {
+			return nil, err
+		}
+		return file.write(doc, stored)
+	})
 	if err != nil {
 		return fmt.Errorf("estimate %s: %w", id, err)
 	}

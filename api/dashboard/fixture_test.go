@@ -41,6 +41,10 @@ type fixture struct {
 
 var _ dashboard.Service = (*fixture)(nil)
 
+func (f *fixture) Export(_ context.Context, work func() ([]byte, error)) ([]byte, error) {
+	return work()
+}
+
 func newFixture() *fixture {
 	return &fixture{documents: map[uuid.UUID][]byte{}, sessions: map[string]bool{secret: true}, name: "quay desk"}
 }

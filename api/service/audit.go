@@ -3,6 +3,7 @@ package service
 import (
 	"context"
 	"strings"
+	"unicode"
 
 	"github.com/google/uuid"
 
@@ -38,9 +39,7 @@ func read[T any](ctx context.Context, s *Service, a Actor, o auth.Operation, fn 
 // list is read for one page of a list; an empty page is [] and not null.
 func list[T any](ctx context.Context, s *Service, a Actor, o auth.Operation, fn func(Tx) (List[T], error)) (List[T], error) {
 	l, err := read(ctx, s, a, o, fn)
-	if l.Items == nil {
-		l.Items = []T{}
-	}
+	l.Items = orEmpty(l.Items)
 	return l, err
 }
 
@@ -56,7 +55,11 @@ func checkName(pointer, name string, most int) error {
 		return invalid(pointer, name, "empty", "a name")
 	case len([]rune(name)) > most:
 		return invalid(pointer, string([]rune(name)[:40])+"…", "too long", "a shorter name")
-	case strings.ContainsFunc(name, func(r rune) bool { return r < 0x20 || r == 0x7f || r == 0xfffd }):
+	case name != strings.TrimSpace(name):
+		return invalid(pointer, name, "begins or ends with a blank", "the name without it")
+	case strings.ContainsFunc(name, func(r rune) bool {
+		return r < 0x20 || r == 0x7f || r == 0xfffd || unicode.Is(unicode.Bidi_Control, r)
+	}):
 		return invalid(pointer, name, "holds a control character", "plain text")
 	}
 	return nil

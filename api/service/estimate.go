@@ -59,7 +59,7 @@ func (s *Service) CreateEstimate(ctx context.Context, a Actor, scheme uuid.UUID,
 	if err != nil {
 		return Estimate{}, err
 	}
-	sch, err := s.readPosting(ctx, b.revision.posting(), b.project.Name, b.scheme.Name)
+	sch, err := s.readPosting(ctx, b.revision.posting(), b.book.ConnectionClasses(), b.project.Name, b.scheme.Name)
 	if err != nil {
 		return Estimate{}, err
 	}
@@ -100,13 +100,7 @@ func (s *Service) basis(ctx context.Context, tx Tx, scheme uuid.UUID, n NewEstim
 
 // rates fills in the rate book and the multipliers in force.
 func (s *Service) rates(ctx context.Context, tx Tx, b *basis, book *uuid.UUID) error {
-	var stored RateBook
-	var err error
-	if book == nil {
-		stored, err = tx.RateBookByName(ctx, StartingBook)
-	} else {
-		stored, err = tx.RateBook(ctx, *book)
-	}
+	stored, err := bookOf(ctx, tx, book)
 	if err != nil {
 		return err
 	}
@@ -121,6 +115,14 @@ func (s *Service) rates(ctx context.Context, tx Tx, b *basis, book *uuid.UUID) e
 	return nil
 }
 
+// bookOf reads a rate book, the starting one when none is named: NotFound.
+func bookOf(ctx context.Context, tx Tx, id *uuid.UUID) (RateBook, error) {
+	if id == nil {
+		return tx.RateBookByName(ctx, StartingBook)
+	}
+	return tx.RateBook(ctx, *id)
+}
+
 func (n NewEstimate) sampling(limit int) (job.Sampling, error) {
 	sampling := job.DefaultSampling()
 	if n.Seed != nil {
@@ -132,11 +134,16 @@ func (n NewEstimate) sampling(limit int) (job.Sampling, error) {
 	if n.Trials != 0 {
 		sampling.Trials = n.Trials
 	}
-	if err := sampling.Validate(); err != nil {
-		return sampling, invalid("/trials", fmt.Sprintf("%d × %d", sampling.Replicates, sampling.Trials), err.Error(), "32 or more replicates of 64 or more trials")
+	field := "/trials"
+	if sampling.Replicates < job.MinReplicates || sampling.Replicates > limit {
+		field = "/replicates"
 	}
-	if sampling.Replicates > limit/sampling.Trials {
-		return sampling, &Error{Kind: TooLarge, Message: fmt.Sprintf("%d × %d trials are over the limit of %d", sampling.Replicates, sampling.Trials, limit)}
+	found := fmt.Sprintf("%d × %d", sampling.Replicates, sampling.Trials)
+	if sampling.Trials > 0 && sampling.Replicates > limit/sampling.Trials {
+		return sampling, invalid(field, found, "more trials than this server runs", fmt.Sprintf("%d in all", limit))
+	}
+	if err := sampling.Validate(); err != nil {
+		return sampling, invalid(field, found, err.Error(), "32 or more replicates of 64 or more trials")
 	}
 	return sampling, nil
 }
@@ -149,6 +156,9 @@ type computed struct {
 
 // compute runs the engine; no transaction is open meanwhile.
 func (s *Service) compute(ctx context.Context, a Actor, b basis, sch schedule.Schedule, sampling job.Sampling) (computed, error) {
+	if err := sameCurrency(b.project, sch); err != nil {
+		return computed{}, err
+	}
 	select {
 	case s.heavy <- struct{}{}:
 		defer func() { <-s.heavy }()
@@ -169,6 +179,11 @@ func (s *Service) compute(ctx context.Context, a Actor, b basis, sch schedule.Sc
 
 // fromEngine turns members that cannot be sized into faults by row.
 func fromEngine(err error, sch schedule.Schedule) error {
+	var rates *engine.RatesError
+	if errors.As(err, &rates) {
+		return &Error{Kind: Invalid, Message: rates.Error(), Faults: []Fault{{Found: "the rate book and the multipliers in force", Problem: rates.Err.Error(),
+			Remedy: "fewer digits in rates and multipliers, or multipliers that fit the rate book"}}, Err: err}
+	}
 	var f *engine.FaultsError
 	if !errors.As(err, &f) {
 		return err
@@ -185,6 +200,18 @@ func fromEngine(err error, sch schedule.Schedule) error {
 	return out
 }
 
+// sameCurrency refuses a schedule in another currency than its project's.
+func sameCurrency(p Project, sch schedule.Schedule) error {
+	if p.Currency == sch.Settings.Currency {
+		return nil
+	}
+	return &Error{Kind: Invalid, Message: fmt.Sprintf("the project is in %s, the schedule in %s", p.Currency, sch.Settings.Currency),
+		Faults: []Fault{{Sheet: "Job", Header: "Currency", Found: sch.Settings.Currency, Problem: "differs from the project's currency", Remedy: p.Currency + ", or another project"}}}
+}
+
+// largestDocument is the size in bytes beyond which an estimate is not stored.
+const largestDocument = 128 << 20
+
 // seal writes the canonical bytes and the head that lists and pages read.
 func (s *Service) seal(a Actor, b basis, j job.Job, d document.Document) (computed, error) {
 	var c computed
@@ -195,6 +222,9 @@ func (s *Service) seal(a Actor, b basis, j job.Job, d document.Document) (comput
 	}
 	if c.document, docSum, err = d.Canonical(); err != nil {
 		return c, err
+	}
+	if n := len(c.document); n > largestDocument {
+		return c, &Error{Kind: Invalid, Message: fmt.Sprintf("the estimate would be %d MB, more than the %d MB that are stored; split the schedule", n>>20, largestDocument>>20)}
 	}
 	id, err := s.newID()
 	if err != nil {

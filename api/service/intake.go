@@ -3,7 +3,6 @@ package service
 import (
 	"context"
 	"encoding/json"
-	"fmt"
 
 	"github.com/google/uuid"
 
@@ -29,7 +28,11 @@ func (s *Service) Intake(ctx context.Context, a Actor, in Intake, key Idempotenc
 	if t, found, err := s.takenBefore(ctx, a, key); err != nil || found {
 		return t, err
 	}
-	sch, err := s.readPosting(ctx, in.Posting, in.Project, in.Scheme)
+	book, err := read(ctx, s, a, auth.MakeEstimates, func(tx Tx) (RateBook, error) { return bookOf(ctx, tx, in.RateBook) })
+	if err != nil {
+		return Taken{}, err
+	}
+	sch, err := s.readPosting(ctx, in.Posting, book.Content.ConnectionClasses(), in.Project, in.Scheme)
 	if err != nil {
 		return Taken{}, err
 	}
@@ -102,9 +105,8 @@ func (s *Service) intakeBasis(ctx context.Context, a Actor, in Intake, sch sched
 	if err != nil {
 		return b, f, err
 	}
-	if b.project.Currency != sch.Settings.Currency {
-		return b, f, &Error{Kind: Invalid, Message: fmt.Sprintf("the project is in %s, the schedule in %s", b.project.Currency, sch.Settings.Currency),
-			Faults: []Fault{{Sheet: "Job", Header: "Currency", Found: sch.Settings.Currency, Problem: "differs from the project's currency", Remedy: b.project.Currency + ", or another project name"}}}
+	if err := sameCurrency(b.project, sch); err != nil {
+		return b, f, err
 	}
 	b.revision, err = s.revision(a, b.scheme.ID, in.Posting, sch)
 	return b, f, err

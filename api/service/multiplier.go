@@ -2,6 +2,9 @@ package service
 
 import (
 	"context"
+	"maps"
+	"slices"
+	"strings"
 
 	"github.com/google/uuid"
 
@@ -45,7 +48,32 @@ func (s *Service) CreateMultiplier(ctx context.Context, a Actor, n NewMultiplier
 		})
 }
 
+// checkGroup refuses a correlation group that no rate book of the organisation
+// has, which would stop every later estimate.
+func checkGroup(ctx context.Context, tx Tx, group string) error {
+	if group == "" {
+		return nil
+	}
+	books, err := tx.RateBooks(ctx, Page{Limit: 200})
+	if err != nil {
+		return err
+	}
+	known := map[string]bool{}
+	for _, b := range books.Items {
+		for g := range b.Content.Correlation {
+			known[g] = true
+		}
+	}
+	if known[group] {
+		return nil
+	}
+	return invalid("/multiplier/group", group, "no rate book has this correlation group", strings.Join(slices.Sorted(maps.Keys(known)), ", ")+" or none")
+}
+
 func (s *Service) checkReach(ctx context.Context, tx Tx, n NewMultiplier) error {
+	if err := checkGroup(ctx, tx, n.Value.Group); err != nil {
+		return err
+	}
 	if _, err := tx.Project(ctx, n.Project); err != nil {
 		return err
 	}
@@ -75,11 +103,6 @@ func checkedMultiplier(v ratebook.Multiplier, scheme *uuid.UUID, a Actor) (rateb
 	if v.Scope == ratebook.ProjectScope && scheme != nil {
 		return v, invalid("/multiplier/scope", string(v.Scope), "the whole project, but scheme_id names one scheme", "scope scheme, or no scheme_id")
 	}
-	if v.Group != "" {
-		if _, ok := ratebook.Ratio().Correlation[v.Group]; !ok {
-			return v, invalid("/multiplier/group", v.Group, "unknown correlation group", "labour, supply or none")
-		}
-	}
 	return v, nil
 }
 
@@ -107,6 +130,9 @@ func (s *Service) UpdateMultiplier(ctx context.Context, a Actor, id uuid.UUID, v
 		after := before
 		var err error
 		if after.Value, err = checkedMultiplier(value, before.Scheme, a); err != nil {
+			return after, err
+		}
+		if err := checkGroup(ctx, tx, value.Group); err != nil {
 			return after, err
 		}
 		after.Version, after.UpdatedAt = before.Version+1, s.now()

@@ -60,8 +60,8 @@ func (n NewProject) validate() error {
 		return invalid("/currency", n.Currency, "unknown currency", err.Error())
 	}
 	if n.BaseDate != "" {
-		if _, err := time.Parse(time.DateOnly, n.BaseDate); err != nil {
-			return invalid("/base_date", n.BaseDate, "not a date", "yyyy-mm-dd")
+		if d, err := time.Parse(time.DateOnly, n.BaseDate); err != nil || d.Year() < 1900 || d.Year() > 2200 {
+			return invalid("/base_date", n.BaseDate, "not a date of a job", "yyyy-mm-dd, from 1900 to 2200")
 		}
 	}
 	if n.DisplayUnits != "SI" && n.DisplayUnits != "US" {

@@ -89,6 +89,9 @@ func (s *Service) UpdateRateBook(ctx context.Context, a Actor, id uuid.UUID, ver
 		return RateBook{}, err
 	}
 	return update(ctx, s, a, "rate book", id, version, Tx.RateBook, func(tx Tx, before RateBook) (RateBook, error) {
+		if book.Name != before.Name {
+			return before, invalid("/name", book.Name, "a rate book keeps its name, because estimates ask for it", before.Name+", or a new rate book")
+		}
 		after := RateBook{ID: id, Name: book.Name, Version: before.Version + 1, Number: before.Number + 1, SHA256: sum, Content: book,
 			CreatedAt: before.CreatedAt, UpdatedAt: s.now()}
 		return after, tx.UpdateRateBook(ctx, after, content, a.Token)

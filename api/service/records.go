@@ -119,7 +119,7 @@ type Token struct {
 type AuditEvent struct {
 	ID          uuid.UUID `json:"id"`
 	At          time.Time `json:"at"`
-	ActorToken  uuid.UUID `json:"actor_token_id"`
+	ActorToken  uuid.UUID `json:"actor_token_id,omitzero" doc:"absent where the command line acted"`
 	ActorName   string    `json:"actor_name"`
 	ActorRole   string    `json:"actor_role"`
 	RequestID   string    `json:"request_id"`

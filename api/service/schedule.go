@@ -6,32 +6,69 @@ import (
 	"crypto/sha256"
 	"encoding/hex"
 	"errors"
+	"maps"
 	"path"
+	"slices"
+	"strconv"
 	"strings"
 
 	"github.com/google/uuid"
 
 	"spanwright/api/auth"
+	"spanwright/estimate/assumption"
 	"spanwright/estimate/schedule"
 	"spanwright/estimate/sheet"
 )
 
 // readPosting reads a schedule from what was posted, with every fault at once.
-func (s *Service) readPosting(ctx context.Context, p Posting, project, scheme string) (schedule.Schedule, error) {
-	o := schedule.Options{MaxMembers: s.limits.Members, Project: project, Scheme: scheme, JobTable: p.JobTable}
+func (s *Service) readPosting(ctx context.Context, p Posting, classes []string, project, scheme string) (schedule.Schedule, error) {
+	o := schedule.Options{MaxMembers: s.limits.Members, Project: project, Scheme: scheme, JobTable: p.JobTable, ConnectionClasses: classes}
 	if int64(len(p.Data)) > s.limits.Sheet.Bytes {
 		return schedule.Schedule{}, &Error{Kind: TooLarge, Message: "the schedule is larger than the limit"}
 	}
+	if len(p.Data) > largePosting {
+		release, err := s.place(ctx)
+		if err != nil {
+			return schedule.Schedule{}, err
+		}
+		defer release()
+	}
 	if strings.HasPrefix(p.ContentType, "application/json") {
 		sch, err := schedule.ReadJSON(ctx, p.Data, o)
-		return sch, fromJSON(fromReading(err))
+		return sch, s.checkGroups(sch, fromJSON(fromReading(err)))
 	}
-	book, err := sheet.Open(p.Data, p.Name, p.ContentType, s.limits.Sheet)
+	cells, err := sheet.Open(p.Data, p.Name, p.ContentType, s.limits.Sheet)
 	if err != nil {
 		return schedule.Schedule{}, fromReading(err)
 	}
-	sch, err := schedule.Read(ctx, book, o)
-	return sch, fromReading(err)
+	sch, err := schedule.Read(ctx, cells, o)
+	return sch, s.checkGroups(sch, fromReading(err))
+}
+
+// classesOf are the connection classes of every rate book of the organisation: a
+// schedule may be priced with any of them.
+func classesOf(ctx context.Context, tx Tx) ([]string, error) {
+	books, err := tx.RateBooks(ctx, Page{Limit: 200})
+	if err != nil {
+		return nil, err
+	}
+	known := map[string]bool{}
+	for _, b := range books.Items {
+		for _, c := range b.Content.ConnectionClasses() {
+			known[c] = true
+		}
+	}
+	return slices.Sorted(maps.Keys(known)), nil
+}
+
+// checkGroups refuses a schedule of more groups than the limit, because a
+// document grows with them; err goes first.
+func (s *Service) checkGroups(sch schedule.Schedule, err error) error {
+	if n := len(sch.Echo.Groups); err == nil && n > s.limits.Groups {
+		return &Error{Kind: Invalid, Message: "the schedule has too many groups", Faults: []Fault{{Header: "Group", Found: strconv.Itoa(n) + " groups",
+			Problem: "more than can be priced apart", Remedy: "at most " + strconv.Itoa(s.limits.Groups) + " groups"}}}
+	}
+	return err
 }
 
 // fromReading classifies what reading a spreadsheet reports.
@@ -67,18 +104,26 @@ func (s *Service) PostSchedule(ctx context.Context, a Actor, scheme uuid.UUID, p
 		return Revision{}, err
 	}
 	var project Project
-	sc, err := read(ctx, s, a, auth.ReadProjects, func(tx Tx) (Scheme, error) {
+	var classes []string
+	sc, err := read(ctx, s, a, auth.PostSchedules, func(tx Tx) (Scheme, error) {
 		sc, err := tx.Scheme(ctx, scheme)
-		if err == nil {
-			project, err = tx.Project(ctx, sc.Project)
+		if err != nil {
+			return sc, err
 		}
+		if project, err = tx.Project(ctx, sc.Project); err != nil {
+			return sc, err
+		}
+		classes, err = classesOf(ctx, tx)
 		return sc, err
 	})
 	if err != nil {
 		return Revision{}, err
 	}
-	sch, err := s.readPosting(ctx, p, project.Name, sc.Name)
+	sch, err := s.readPosting(ctx, p, classes, project.Name, sc.Name)
 	if err != nil {
+		return Revision{}, err
+	}
+	if err := sameCurrency(project, sch); err != nil {
 		return Revision{}, err
 	}
 	r, err := s.revision(a, sc.ID, p, sch)
@@ -88,6 +133,36 @@ func (s *Service) PostSchedule(ctx context.Context, a Actor, scheme uuid.UUID, p
 	return once(ctx, s, a, "post schedule "+scheme.String(), key, r.ID,
 		func(tx Tx, id uuid.UUID) (Revision, error) { return tx.Revision(ctx, id) },
 		func(tx Tx) (Revision, error) { return s.insertRevision(ctx, tx, a, r) })
+}
+
+// Reading is what a schedule says, before anything is sized, priced or stored.
+type Reading struct {
+	Settings  schedule.Settings  `json:"settings"`
+	Echo      schedule.Echo      `json:"echo" doc:"load of each member and tonnes of each group, as read"`
+	Defaults  []assumption.Entry `json:"defaults" doc:"what was taken because it was left blank"`
+	Omissions []string           `json:"omissions" doc:"kinds that one would expect and that are absent"`
+}
+
+// CheckSchedule reads a schedule and stores nothing: errors as those of
+// PostSchedule.
+func (s *Service) CheckSchedule(ctx context.Context, a Actor, p Posting) (Reading, error) {
+	classes, err := read(ctx, s, a, auth.PostSchedules, func(tx Tx) ([]string, error) { return classesOf(ctx, tx) })
+	if err != nil {
+		return Reading{}, err
+	}
+	sch, err := s.readPosting(ctx, p, classes, "", "")
+	if err != nil {
+		return Reading{}, err
+	}
+	return Reading{Settings: sch.Settings, Echo: sch.Echo, Defaults: orEmpty(sch.Defaults), Omissions: orEmpty(sch.Omissions)}, nil
+}
+
+// orEmpty makes a list print as [] and not as null.
+func orEmpty[T any](l []T) []T {
+	if l == nil {
+		return []T{}
+	}
+	return l
 }
 
 func (s *Service) revision(a Actor, scheme uuid.UUID, p Posting, sch schedule.Schedule) (Revision, error) {

@@ -40,14 +40,15 @@ type RunFunc func(ctx context.Context, j job.Job, progress engine.Progress) (doc
 type Limits struct {
 	Sheet   sheet.Limits
 	Members int // rows of one schedule
+	Groups  int // groups of members of one schedule
 	Trials  int // replicates × trials of one estimate
 	Heavy   int // estimates computed at the same time; more are answered Busy
 }
 
-// DefaultLimits are the limits of DEVELOPERS.md: 20 MB, 20,000 members, 1,000,000
-// trials, two heavy requests.
+// DefaultLimits are 20 MB, 20,000 members in 500 groups, 1,000,000 trials, two heavy
+// requests.
 func DefaultLimits() Limits {
-	l := Limits{Sheet: sheet.DefaultLimits(), Members: 20_000, Trials: 1_000_000, Heavy: 2}
+	l := Limits{Sheet: sheet.DefaultLimits(), Members: 20_000, Groups: 500, Trials: 1_000_000, Heavy: 2}
 	l.Sheet.Rows = l.Members + 100 // heads and notes beside the members
 	return l
 }
@@ -72,13 +73,14 @@ type Service struct {
 	now    func() time.Time
 	newID  func() (uuid.UUID, error)
 	log    *slog.Logger
-	heavy  chan struct{}
+	heavy  chan struct{} // estimates being computed
+	files  chan struct{} // large files being read or written
 }
 
 // New returns a Service.
 func New(c Config) *Service {
 	return &Service{store: c.Store, run: c.Run, limits: c.Limits, build: c.Build, now: c.Now, newID: c.NewID, log: c.Logger,
-		heavy: make(chan struct{}, max(1, c.Limits.Heavy))}
+		heavy: make(chan struct{}, max(1, c.Limits.Heavy)), files: make(chan struct{}, max(1, c.Limits.Heavy))}
 }
 
 // allow refuses what the actor's role may not do.

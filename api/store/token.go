@@ -53,6 +53,9 @@ where id = $1 returning id`, id, at)
 // InsertSession stores a session of a token with the hash of its secret: NotFound
 // for the token.
 func (t tenant) InsertSession(ctx context.Context, id, token uuid.UUID, secretSHA256 []byte, created, expires time.Time) error {
+	if err := t.write(ctx, "session", "delete from session where expires_at < $1", created); err != nil {
+		return err
+	}
 	return t.write(ctx, "session", `
 insert into session (organisation_id, id, token_id, secret_sha256, created_at, expires_at) values ($1, $2, $3, $4, $5, $6)`,
 		t.organisation, id, token, secretSHA256, created, expires)

@@ -19,10 +19,12 @@ database lacks. Running it again does nothing.
   SPANWRIGHT_ADMIN_URL='postgres://postgres:…@db/spanwright' spanwright migrate`
 	c.run = func(ctx context.Context, p *program, args []string) error {
 		f := p.flags(c)
-		url := f.String("admin-url", p.env("SPANWRIGHT_ADMIN_URL", ""), "`URL` of the database as an administrator ($SPANWRIGHT_ADMIN_URL)")
-		if rest, err := parse(f, args); err != nil {
+		url := f.String("admin-url", "", "`URL` of the database as an administrator ($SPANWRIGHT_ADMIN_URL)")
+		rest, err := parse(f, args)
+		if err != nil {
 			return err
-		} else if len(rest) > 0 || *url == "" {
+		}
+		if *url = p.orEnv(*url, "SPANWRIGHT_ADMIN_URL"); len(rest) > 0 || *url == "" {
 			f.Usage()
 			return errUsage
 		}
@@ -44,14 +46,16 @@ it. It is shown this once; only its hash is stored.
   spanwright token --organisation "Brackwater salt works" --role estimator --name "quay job"`
 	c.run = func(ctx context.Context, p *program, args []string) error {
 		f := p.flags(c)
-		url := f.String("admin-url", p.env("SPANWRIGHT_ADMIN_URL", ""), "`URL` of the database as an administrator ($SPANWRIGHT_ADMIN_URL)")
+		url := f.String("admin-url", "", "`URL` of the database as an administrator ($SPANWRIGHT_ADMIN_URL)")
 		organisation := f.String("organisation", "", "`NAME` of the organisation")
 		role := f.String("role", "administrator", "viewer, estimator, manager or administrator")
 		name := f.String("name", "command line", "`NAME` of the token, shown in audit events")
 		days := f.Int("days", 0, "days until it expires; 0 is never")
-		if rest, err := parse(f, args); err != nil {
+		rest, err := parse(f, args)
+		if err != nil {
 			return err
-		} else if len(rest) > 0 || *url == "" || *organisation == "" || *days < 0 {
+		}
+		if *url = p.orEnv(*url, "SPANWRIGHT_ADMIN_URL"); len(rest) > 0 || *url == "" || *organisation == "" || *days < 0 {
 			f.Usage()
 			return errUsage
 		}

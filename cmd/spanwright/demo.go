@@ -86,7 +86,7 @@ func (p *program) demo(ctx context.Context, dir, listen, level string) error {
 		return err
 	}
 	defer st.Close()
-	return serve(ctx, serving{store: st, listen: listen, log: log, ready: func(address string, s *service.Service) error {
+	return serve(ctx, serving{store: st, listen: listen, limits: service.DefaultLimits(), log: log, ready: func(address string, s *service.Service) error {
 		if err := loadDemo(ctx, s, token); err != nil {
 			return err
 		}
@@ -125,7 +125,11 @@ func prepareDemo(ctx context.Context, pg *localpg.Server, dir string) (string, e
 	if err != nil {
 		return "", err
 	}
-	return token, os.WriteFile(file, []byte(token+"\n"), 0o600)
+	// Written aside and renamed, so that a kill in between leaves no empty file.
+	if err := os.WriteFile(file+".new", []byte(token+"\n"), 0o600); err != nil {
+		return "", err
+	}
+	return token, os.Rename(file+".new", file)
 }
 
 // loadDemo posts the demo's workbooks as a user would. Idempotency keys make a

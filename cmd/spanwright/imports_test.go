@@ -48,7 +48,7 @@ var mayImport = map[string][]string{
 	"api/pgtest":    {"api/localpg", "api/store", "migrations"},
 	"api/dashboard": {"api/service", "api/auth", "estimate/document", "estimate/chart", "estimate/workbook", "estimate/money", "estimate/spread", "estimate/assumption"},
 	"api": {"api/service", "api/auth", "estimate/document", "estimate/sheet", "estimate/workbook", "estimate/money", "estimate/spread",
-		"estimate/assumption", "estimate/ratebook", "estimate/job", "estimate/calculator"},
+		"estimate/assumption", "estimate/ratebook", "estimate/job", "estimate/schedule", "estimate/calculator"},
 
 	"migrations":     {},
 	"testdata":       {},

@@ -8,6 +8,7 @@ import (
 	"net/http"
 	"os"
 	"path/filepath"
+	"strings"
 	"sync"
 	"testing"
 
@@ -15,6 +16,7 @@ import (
 
 	"spanwright/api/auth"
 	"spanwright/estimate/document"
+	"spanwright/estimate/money"
 	"spanwright/estimate/sheet"
 )
 
@@ -68,9 +70,7 @@ func TestTwoPostingsWithOneKeyMakeOneEstimate(t *testing.T) {
 	if asBook.status != http.StatusOK || asBook.header.Get("Content-Type") != sheet.MediaTypeXLSX {
 		t.Fatalf("another Accept under the same key: %d %s %s", asBook.status, asBook.header.Get("Content-Type"), asBook.body[:min(len(asBook.body), 300)])
 	}
-	if base := workbookBase(t, asBook.body); base != first.Estimate.Base {
-		t.Errorf("the workbook's base is %s, the JSON's %s", base, first.Estimate.Base)
-	}
+	sameAmount(t, "the workbook's base", workbookBase(t, asBook.body), first.Estimate.Base)
 	if after := s.rows(t); !maps.Equal(before, after) {
 		t.Errorf("rows were added: %s", cmp.Diff(before, after))
 	}
@@ -105,6 +105,22 @@ func TestSimultaneousPostingsWithOneKeyMakeOneEstimate(t *testing.T) {
 	}
 	if n := s.rows(t)["estimate"]; n != 1 {
 		t.Errorf("%d estimates are stored, want 1", n)
+	}
+}
+
+// sameAmount compares two amounts as numbers: a workbook keeps no trailing zeros.
+func sameAmount(t *testing.T, what, got, want string) {
+	t.Helper()
+	a, err := money.Parse(got)
+	if err != nil {
+		t.Fatalf("%s: %v", what, err)
+	}
+	b, err := money.Parse(want)
+	if err != nil {
+		t.Fatalf("%s: %v", what, err)
+	}
+	if !a.Equal(b) {
+		t.Errorf("%s is %s, want %s", what, got, want)
 	}
 }
 
@@ -179,5 +195,38 @@ func TestPriceWritesEveryFormat(t *testing.T) {
 		if code, _, _ := runProgram(t, nil, args...); code == 0 {
 			t.Errorf("%v was accepted", args)
 		}
+	}
+}
+
+// By hand: LB1 is 42 m with 0.9 and 1.2 kN/m; the platform grating is 148 m² at
+// 31 kg/m² = 4.588 t.
+func TestCheckEchoesLoadsTonnesAndDefaults(t *testing.T) {
+	code, out, errs := runProgram(t, nil, "price", "--check", testFile("brackwater.xlsx"))
+	if code != 0 {
+		t.Fatal(errs)
+	}
+	for _, want := range []string{"37.8          50.4", "Access platforms      99", "restrained at the supports alone"} {
+		if !strings.Contains(out, want) {
+			t.Errorf("the echo lacks %q:\n%s", want, out)
+		}
+	}
+	s := newServer(t)
+	token := s.token(t, "Brackwater", auth.Estimator)
+	before := s.rows(t)
+	a := s.do(t, http.MethodPost, "/v1/schedules/check", token, mustRead(t, "brackwater.xlsx"), "Content-Type", sheet.MediaTypeXLSX)
+	var r struct {
+		Echo struct {
+			Members []struct {
+				Mark      string
+				Permanent float64 `json:"permanent_kn"`
+			}
+		}
+	}
+	a.decode(t, &r)
+	if a.status != http.StatusOK || len(r.Echo.Members) != 48 {
+		t.Errorf("check over the API: %d, %d members", a.status, len(r.Echo.Members))
+	}
+	if after := s.rows(t); !maps.Equal(before, after) {
+		t.Errorf("rows were stored: %s", cmp.Diff(before, after))
 	}
 }

@@ -50,6 +50,7 @@ func commands() []command {
 func main() {
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
 	defer stop()
+	context.AfterFunc(ctx, stop) // a second Ctrl-C ends the program at once
 	p := &program{stdin: os.Stdin, stdout: os.Stdout, stderr: os.Stderr, getenv: os.Getenv}
 	os.Exit(p.main(ctx, os.Args[1:]))
 }
@@ -132,6 +133,15 @@ func (p *program) env(name, fallback string) string {
 		return v
 	}
 	return fallback
+}
+
+// orEnv returns the value, or where it is empty the environment variable. Flags
+// that hold secrets are read so: a default would be printed by the help.
+func (p *program) orEnv(value, name string) string {
+	if value != "" {
+		return value
+	}
+	return p.getenv(name)
 }
 
 // logger returns the structured log, on standard error.

@@ -2,15 +2,15 @@ package main
 
 import (
 	"context"
-	"crypto/sha256"
-	"encoding/hex"
 	"errors"
 	"fmt"
 	"io"
 	"os"
 	"path/filepath"
 	"strings"
+	"text/tabwriter"
 
+	"spanwright/api/service"
 	"spanwright/estimate/document"
 	"spanwright/estimate/engine"
 	"spanwright/estimate/job"
@@ -40,6 +40,7 @@ schedule are listed by cell, all at once, and nothing is printed.
 
 type priceOptions struct {
 	rateBook, jobTable, project, scheme, format, out string
+	check                                            bool
 	seed                                             uint64
 	replicates, trials                               int
 }
@@ -53,6 +54,7 @@ func (p *program) price(ctx context.Context, c command, args []string) error {
 	f.StringVar(&o.scheme, "scheme", "", "scheme `NAME`; overrides the Job sheet")
 	f.StringVar(&o.format, "format", "table", "table, json (the estimate document), xlsx (the priced workbook) or csv (its lines)")
 	f.StringVar(&o.out, "out", "-", "`FILE` to write to; - is standard output")
+	f.BoolVar(&o.check, "check", false, "only read the schedule: print the load of each member, tonnes of each group, defaults taken and possible omissions")
 	f.Uint64Var(&o.seed, "seed", 1, "seed of the simulation")
 	f.IntVar(&o.replicates, "replicates", 32, "replicates of the simulation, 32 or more")
 	f.IntVar(&o.trials, "trials", 4096, "trials of each replicate")
@@ -63,6 +65,9 @@ func (p *program) price(ctx context.Context, c command, args []string) error {
 	if len(rest) != 1 {
 		f.Usage()
 		return errUsage
+	}
+	if o.check {
+		return p.checkSchedule(ctx, rest[0], o)
 	}
 	render, err := renderer(o.format)
 	if err != nil {
@@ -100,37 +105,46 @@ func renderer(format string) (func(document.Document) ([]byte, error), error) {
 	return nil, fmt.Errorf("format: found %q; accepted: table, json, xlsx, csv", format)
 }
 
+// readBook reads the rate book of a file, or the starting one.
+func readBook(file string) (ratebook.Book, error) {
+	if file == "" {
+		return ratebook.Ratio(), nil
+	}
+	raw, err := os.ReadFile(file)
+	if err != nil {
+		return ratebook.Book{}, err
+	}
+	return ratebook.Parse(raw)
+}
+
+// read reads a schedule and the hash of its bytes.
+func (p *program) read(ctx context.Context, path string, book ratebook.Book, o priceOptions) (schedule.Schedule, job.Source, error) {
+	data, err := p.readInput(path)
+	if err != nil {
+		return schedule.Schedule{}, job.Source{}, err
+	}
+	options := schedule.Options{MaxMembers: offlineMembers, Project: o.project, Scheme: o.scheme, ConnectionClasses: book.ConnectionClasses()}
+	if o.jobTable != "" {
+		if options.JobTable, err = os.ReadFile(o.jobTable); err != nil {
+			return schedule.Schedule{}, job.Source{}, err
+		}
+	}
+	posted := service.Posting{Name: path, Data: data, JobTable: options.JobTable}
+	sch, err := readSchedule(ctx, data, posted.SourceName(), options)
+	return sch, job.Source{Name: posted.SourceName(), SHA256: posted.SHA256()}, p.explain(err)
+}
+
 // estimate takes a file through the same stages as the service does.
 func (p *program) estimate(ctx context.Context, path string, o priceOptions) (document.Document, error) {
-	data, err := p.readInput(path)
+	book, err := readBook(o.rateBook)
 	if err != nil {
 		return document.Document{}, err
 	}
-	options := schedule.Options{MaxMembers: offlineMembers, Project: o.project, Scheme: o.scheme}
-	if o.jobTable != "" {
-		if options.JobTable, err = os.ReadFile(o.jobTable); err != nil {
-			return document.Document{}, err
-		}
-	}
-	name := filepath.Base(path)
-	sch, err := readSchedule(ctx, data, name, options)
+	sch, source, err := p.read(ctx, path, book, o)
 	if err != nil {
-		return document.Document{}, p.explain(err)
+		return document.Document{}, err
 	}
-	book := ratebook.Ratio()
-	if o.rateBook != "" {
-		raw, err := os.ReadFile(o.rateBook)
-		if err != nil {
-			return document.Document{}, err
-		}
-		if book, err = ratebook.Parse(raw); err != nil {
-			return document.Document{}, err
-		}
-	}
-	h := sha256.New()
-	h.Write(data)
-	h.Write(options.JobTable)
-	j, err := job.Freeze(sch, job.Source{Name: name, SHA256: hex.EncodeToString(h.Sum(nil))}, book, nil,
+	j, err := job.Freeze(sch, source, book, nil,
 		job.Sampling{Seed: o.seed, Replicates: o.replicates, Trials: o.trials})
 	if err != nil {
 		return document.Document{}, err
@@ -138,6 +152,38 @@ func (p *program) estimate(ctx context.Context, path string, o priceOptions) (do
 	j.EngineVersion, j.Data, j.Build = document.EngineVersion, engine.Data(), build()
 	d, err := engine.Run(ctx, j, nil)
 	return d, p.explain(err)
+}
+
+// checkSchedule prints what was read, in tables for a terminal.
+func (p *program) checkSchedule(ctx context.Context, path string, o priceOptions) error {
+	book, err := readBook(o.rateBook)
+	if err != nil {
+		return err
+	}
+	sch, _, err := p.read(ctx, path, book, o)
+	if err != nil {
+		return err
+	}
+	w := tabwriter.NewWriter(p.stdout, 0, 0, 2, ' ', tabwriter.AlignRight)
+	fmt.Fprintln(w, "mark\tpermanent, kN\tvariable, kN\taxial, kN\t")
+	for _, m := range sch.Echo.Members {
+		fmt.Fprintf(w, "%s\t%.4g\t%.4g\t%.4g\t\n", m.Mark, m.Permanent, m.Variable, m.Axial)
+	}
+	fmt.Fprintln(w, "\ngroup\tpieces\tt, known before sizing\t")
+	for _, g := range sch.Echo.Groups {
+		fmt.Fprintf(w, "%s\t%d\t%.3f\t\n", g.Group, g.Pieces, g.Tonnes)
+	}
+	if err := w.Flush(); err != nil {
+		return err
+	}
+	fmt.Fprintln(p.stdout, "\nLoads are those of one piece, without its own weight. Defaults taken:")
+	for _, d := range sch.Defaults {
+		fmt.Fprintf(p.stdout, "  %s: %s %s\n", d.Statement, d.Value, d.Unit)
+	}
+	for _, line := range sch.Omissions {
+		fmt.Fprintln(p.stdout, line)
+	}
+	return nil
 }
 
 func readSchedule(ctx context.Context, data []byte, name string, o schedule.Options) (schedule.Schedule, error) {

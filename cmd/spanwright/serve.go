@@ -7,6 +7,7 @@ import (
 	"log/slog"
 	"net"
 	"net/http"
+	"strconv"
 	"time"
 
 	"github.com/google/uuid"
@@ -32,18 +33,32 @@ that row-level security does not bind.
   SPANWRIGHT_DATABASE_URL='postgres://spanwright_service:…@db/spanwright' spanwright serve`
 	c.run = func(ctx context.Context, p *program, args []string) error {
 		f := p.flags(c)
-		url := f.String("database-url", p.env("SPANWRIGHT_DATABASE_URL", ""), "`URL` of the database, role spanwright_service ($SPANWRIGHT_DATABASE_URL)")
+		url := f.String("database-url", "", "`URL` of the database, role spanwright_service ($SPANWRIGHT_DATABASE_URL)")
 		listen := f.String("listen", p.env("SPANWRIGHT_LISTEN", "127.0.0.1:8080"), "`ADDRESS` to listen on ($SPANWRIGHT_LISTEN)")
-		secure := f.Bool("secure-cookies", p.env("SPANWRIGHT_SECURE_COOKIES", "true") == "true", "cookies for https only ($SPANWRIGHT_SECURE_COOKIES)")
+		secure := f.String("secure-cookies", p.env("SPANWRIGHT_SECURE_COOKIES", "true"), "true or false: cookies for https only ($SPANWRIGHT_SECURE_COOKIES)")
 		format := f.String("log-format", p.env("SPANWRIGHT_LOG_FORMAT", "json"), "text or json ($SPANWRIGHT_LOG_FORMAT)")
 		level := f.String("log-level", p.env("SPANWRIGHT_LOG_LEVEL", "info"), "debug, info, warn or error ($SPANWRIGHT_LOG_LEVEL)")
-		if rest, err := parse(f, args); err != nil {
+		members := f.Int("max-members", 0, "rows of one schedule; 0 is the default of 20,000 ($SPANWRIGHT_MAX_MEMBERS)")
+		megabytes := f.Int("max-megabytes", 0, "size of one posted file; 0 is the default of 20 ($SPANWRIGHT_MAX_MEGABYTES)")
+		heavy := f.Int("max-heavy", 0, "estimates computed, and large files read or written, at the same time; 0 is the default of 2 ($SPANWRIGHT_MAX_HEAVY)")
+		rest, err := parse(f, args)
+		if err != nil {
 			return err
-		} else if len(rest) > 0 || *url == "" {
+		}
+		*url = p.orEnv(*url, "SPANWRIGHT_DATABASE_URL")
+		if len(rest) > 0 || *url == "" {
 			f.Usage()
 			return errUsage
 		}
 		log, err := p.logger(*format, *level)
+		if err != nil {
+			return err
+		}
+		https, err := strconv.ParseBool(*secure)
+		if err != nil {
+			return fmt.Errorf("secure cookies: found %q; accepted: true, false", *secure)
+		}
+		limits, err := p.limits(*members, *megabytes, *heavy)
 		if err != nil {
 			return err
 		}
@@ -52,7 +67,7 @@ that row-level security does not bind.
 			return err
 		}
 		defer st.Close()
-		return serve(ctx, serving{store: st, listen: *listen, secure: *secure, log: log})
+		return serve(ctx, serving{store: st, listen: *listen, secure: https, limits: limits, log: log})
 	}
 	return c
 }
@@ -63,13 +78,44 @@ type serving struct {
 	store  service.Store
 	listen string
 	secure bool
+	limits service.Limits
 	log    *slog.Logger
 	ready  func(address string, s *service.Service) error
 }
 
-func newService(st service.Store, log *slog.Logger) *service.Service {
+// limits are the defaults with what flags or the environment change.
+func (p *program) limits(members, megabytes, heavy int) (service.Limits, error) {
+	l := service.DefaultLimits()
+	for _, c := range []struct {
+		name  string
+		value *int
+	}{{"SPANWRIGHT_MAX_MEMBERS", &members}, {"SPANWRIGHT_MAX_MEGABYTES", &megabytes}, {"SPANWRIGHT_MAX_HEAVY", &heavy}} {
+		if text := p.getenv(c.name); *c.value == 0 && text != "" {
+			n, err := strconv.Atoi(text)
+			if err != nil {
+				return l, fmt.Errorf("%s: found %q; accepted: a whole number", c.name, text)
+			}
+			*c.value = n
+		}
+		if *c.value < 0 || *c.value > 1_000_000 {
+			return l, fmt.Errorf("%s: found %d; accepted: 1 to 1000000", c.name, *c.value)
+		}
+	}
+	if members > 0 {
+		l.Members, l.Sheet.Rows = members, members+100
+	}
+	if megabytes > 0 {
+		l.Sheet.Bytes, l.Sheet.UnzippedBytes = int64(megabytes)<<20, 5*int64(megabytes)<<20
+	}
+	if heavy > 0 {
+		l.Heavy = heavy
+	}
+	return l, nil
+}
+
+func newService(st service.Store, limits service.Limits, log *slog.Logger) *service.Service {
 	return service.New(service.Config{
-		Store: st, Run: engine.Run, Limits: service.DefaultLimits(), Build: build(), Now: now, NewID: uuid.NewV7, Logger: log,
+		Store: st, Run: engine.Run, Limits: limits, Build: build(), Now: now, NewID: uuid.NewV7, Logger: log,
 	})
 }
 
@@ -78,12 +124,12 @@ var exports = api.Exports{Workbook: workbook.XLSX, CSV: workbook.CSV}
 
 // serve listens until the context ends, then lets requests in flight finish.
 func serve(ctx context.Context, c serving) error {
-	s := newService(c.store, c.log)
+	s := newService(c.store, c.limits, c.log)
 	pages, err := dashboard.New(dashboard.Config{Service: s, Logger: c.log, SecureCookies: c.secure})
 	if err != nil {
 		return err
 	}
-	handler, err := api.New(api.Config{Service: s, Logger: c.log, Limits: service.DefaultLimits(), Pages: pages, Version: build(), Exports: exports})
+	handler, err := api.New(api.Config{Service: s, Logger: c.log, Limits: c.limits, Pages: pages, Version: build(), Exports: exports})
 	if err != nil {
 		return err
 	}
@@ -109,7 +155,7 @@ func serve(ctx context.Context, c serving) error {
 	late, cancel := context.WithTimeout(context.WithoutCancel(ctx), drain)
 	defer cancel()
 	if err := server.Shutdown(late); err != nil && !errors.Is(err, http.ErrServerClosed) {
-		return fmt.Errorf("stopping: %w", err)
+		return errors.Join(fmt.Errorf("stopping: %w", err), server.Close())
 	}
 	return nil
 }

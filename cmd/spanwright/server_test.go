@@ -14,6 +14,7 @@ import (
 
 	"spanwright/api"
 	"spanwright/api/auth"
+	"spanwright/api/dashboard"
 	"spanwright/api/pgtest"
 	"spanwright/api/service"
 	"spanwright/api/store"
@@ -43,7 +44,12 @@ func newServer(t *testing.T) *server {
 	}
 	t.Cleanup(a.Close)
 	log := slog.New(slog.DiscardHandler)
-	handler, err := api.New(api.Config{Service: newService(st, log), Logger: log, Limits: service.DefaultLimits(), Exports: exports})
+	svc := newService(st, service.DefaultLimits(), log)
+	pages, err := dashboard.New(dashboard.Config{Service: svc, Logger: log})
+	if err != nil {
+		t.Fatal(err)
+	}
+	handler, err := api.New(api.Config{Service: svc, Logger: log, Limits: service.DefaultLimits(), Exports: exports, Pages: pages})
 	if err != nil {
 		t.Fatal(err)
 	}

@@ -58,7 +58,8 @@ type Entry struct {
 	Clause     string         `json:"clause,omitempty" doc:"standard and clause of a structural note"`
 	Owner      string         `json:"owner" doc:"who set it"`
 	Confidence Confidence     `json:"confidence" enum:"low,medium,high"`
-	Feeds      []string       `json:"feeds" doc:"ids of the figures that change with it; {mark}, {group} and {item} stand for those of each member concerned"`
+	Feeds      []string       `json:"feeds" doc:"ids of the figures that change with it while every section stays as chosen; {mark}, {group} and {item} stand for those of each member concerned"`
+	Resizes    bool           `json:"may_change_sections,omitempty" doc:"a change may also choose other sections, and so move masses and costs in steps"`
 }
 
 // Register collects entries. The zero value is ready to use; it is not safe for

@@ -50,6 +50,9 @@ type Job struct {
 	JobSHA256       string `json:"job_sha256" doc:"of the frozen job, without its source and build"`
 	DesignBasis     string `json:"design_basis"`
 	Factor          Number `json:"factor" doc:"on yield, design basis allowable; 0 in the others"`
+	Coating         string `json:"coating,omitempty"`
+	ExecutionClass  string `json:"execution_class,omitempty"`
+	StockLengths    string `json:"stock_lengths,omitempty"`
 	EstimateClass   int    `json:"estimate_class" minimum:"1" maximum:"5"`
 	Currency        string `json:"currency"`
 	BaseDate        string `json:"base_date"`

@@ -22,6 +22,9 @@ func (d Document) Figures() map[string]string {
 		p := "member/" + assumption.Segment(m.Mark)
 		f[p+"/net"] = num(m.Net)
 		for _, c := range m.Checks {
+			if c.PassFail {
+				continue // a limit that is met or not, no figure that moves by degrees
+			}
 			f[p+"/check/"+assumption.Segment(c.ID)] = num(c.Utilisation)
 		}
 	}

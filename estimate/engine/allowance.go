@@ -18,6 +18,8 @@ const (
 	refPriceID = "setting/reference price"
 )
 
+func correlationID(group string) string { return "setting/correlation/" + assumption.Segment(group) }
+
 func connectionID(class string) string { return "allowance/connections/" + assumption.Segment(class) }
 func wasteID(kind string) string       { return "allowance/waste/" + assumption.Segment(kind) }
 func growthID(class int) string        { return "allowance/growth/class " + strconv.Itoa(class) }

@@ -22,7 +22,7 @@ func (r *run) assemble() (document.Document, error) {
 		EngineVersion: document.EngineVersion, Caution: document.Caution, Job: head,
 		Range: r.rangeOf(), Categories: r.categories(), Items: items(r.items), Lines: r.lines(),
 		Inclusions: r.inclusions(), Exclusions: r.exclusions(), Notes: r.textNotes(),
-		Assumptions: r.register.Entries(),
+		Assumptions: withResizing(r.register.Entries()),
 	}
 	d.Groups = groups(d.Items, d.Lines)
 	for _, s := range r.sized {
@@ -51,6 +51,7 @@ func (r *run) head() (document.Job, error) {
 	}
 	return document.Job{
 		Project: j.Settings.Project, Scheme: j.Settings.Scheme, Source: j.Source.Name, SourceSHA256: j.Source.SHA256, JobSHA256: sum,
+		Coating: j.Settings.Coating, ExecutionClass: j.Settings.ExecutionClass, StockLengths: j.Settings.StockLengths,
 		DesignBasis: j.Settings.DesignBasis, Factor: document.Number(j.Settings.Factor), EstimateClass: j.Settings.EstimateClass,
 		Currency: j.Settings.Currency, BaseDate: j.Settings.BaseDate,
 		Money:    "base-date money of " + j.Settings.BaseDate + ", net of taxes",

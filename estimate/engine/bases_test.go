@@ -173,3 +173,17 @@ func TestWideFlangeInUSUnits(t *testing.T) {
 		t.Errorf("sized %s of %v kg/m in %s, want 40 plf in A992", s.Section, s.LineMass, s.Grade)
 	}
 }
+
+// A column held at its foot alone buckles over twice its length (Euler's case of a
+// free end), also where the schedule leaves the factor blank.
+func TestAFreeEndBucklesOverTwiceItsLength(t *testing.T) {
+	const head = "Mark,Quantity,Length (m),Support,Kind,Permanent load (kN/m),Variable load (kN/m),Axial load (kN),Effective length factor,Section or family,Grade\n"
+	section := func(factor string) string {
+		s := readCSV(t, []byte(head+"C1,1,6,cantilever,column,0,1,100,"+factor+",HEB,S275\n"), table("Project", "P", "Scheme", "S", "Base date", "2026-06-01"))
+		return run(t, freeze(t, s, ratebook.Ratio(), nil, quick)).Members[0].Section
+	}
+	blank, two, one := section(""), section("2"), section("1")
+	if blank != two || blank == one {
+		t.Errorf("blank gives %s, 2 gives %s, 1 gives %s; want blank as 2", blank, two, one)
+	}
+}

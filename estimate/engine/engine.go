@@ -13,6 +13,7 @@ import (
 	"errors"
 	"fmt"
 	"slices"
+	"strings"
 
 	"spanwright/estimate/assumption"
 	"spanwright/estimate/document"
@@ -50,6 +51,15 @@ func (e *FaultsError) Error() string {
 	}
 	return s
 }
+
+// RatesError reports rates or multipliers that cannot be priced together, such as
+// a product of more digits than a workbook can hold.
+type RatesError struct{ Err error }
+
+func (e *RatesError) Error() string { return "the rates cannot be priced: " + e.Err.Error() }
+
+// Unwrap returns the cause.
+func (e *RatesError) Unwrap() error { return e.Err }
 
 // Data returns the hashes of the embedded data that this engine computes with.
 func Data() job.Data {
@@ -109,13 +119,17 @@ func (r *run) finish(ctx context.Context) (document.Document, error) {
 		Book: r.job.Book, Multipliers: r.job.Multipliers, Currency: r.currency, Systemic: r.systemic,
 	})
 	if err != nil {
-		return document.Document{}, fmt.Errorf("pricing: %w", err)
+		return document.Document{}, &RatesError{err}
 	}
 	r.ranged, err = ranges.Simulate(ctx, r.priced.Model, ranges.Settings{
 		Seed: r.job.Sampling.Seed, Replicates: r.job.Sampling.Replicates, Trials: r.job.Sampling.Trials,
 		Percentiles: percentiles(r.job.Settings.Confidence), Correlation: r.job.Book.Correlation,
 	}, func(done, total int) { r.progress("range", done, total) })
-	if err != nil {
+	var faulty *ranges.Error
+	switch {
+	case errors.As(err, &faulty):
+		return document.Document{}, &RatesError{err}
+	case err != nil:
 		return document.Document{}, fmt.Errorf("range: %w", err)
 	}
 	if err := r.fillRegister(); err != nil {
@@ -140,6 +154,9 @@ func (r *run) count() error {
 		pieces[i] = s.piece()
 		pieces[i].Split = r.overrides(pieces[i])
 	}
+	if err := r.knownClasses(); err != nil {
+		return err
+	}
 	items, err := takeoff.Count(pieces, r.allowances)
 	if err != nil {
 		return fmt.Errorf("take-off: %w", err)
@@ -151,6 +168,22 @@ func (r *run) count() error {
 		}
 	}
 	r.progress("take-off", len(pieces), len(pieces))
+	return nil
+}
+
+// knownClasses reports the members whose connection class the rate book lacks.
+func (r *run) knownClasses() error {
+	var f FaultsError
+	for _, s := range r.sized {
+		if _, ok := r.job.Book.Connections[s.member.ConnectionClass]; !ok {
+			f.Faults = append(f.Faults, Fault{Mark: s.member.Mark,
+				Problem: fmt.Sprintf("the rate book %q has no connection class %q", r.job.Book.Name, s.member.ConnectionClass),
+				Remedy:  "one of " + strings.Join(sortedKeys(r.job.Book.Connections), ", ")})
+		}
+	}
+	if len(f.Faults) > 0 {
+		return &f
+	}
 	return nil
 }
 

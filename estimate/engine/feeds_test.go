@@ -33,6 +33,7 @@ B8,Bridge,beam,500,5,simple,1,2,,,,,,,,,,none,HEA,S275,,,0.6,,1.2 horizontal,,,3
 B9,Gallery,beam,300,6,simple,1,0,,,,,,,,,,,HEB,S275,,,,30; 20 @ 1.5,1.15,,,,
 B10,Bridge,beam,400,5,simple,0.4,0.6,,,-130,,,,,,,,RHS,S355,,,,,,,0.5,,
 B11,Gallery,beam,400,5,simple,,,,,,,1.2,,,,,,HEA,S275,,,,,,,,,walkway
+B12,Bridge,beam,500,6,simple,1,1,,,60,,,,,,,,IPE 400,S355,,,,,,,,,
 G1,Gallery,grating,1000,8,not sized,,,,,,,,,,,,,,,28.5 kg/m²,12,,,,,,,
 H1,Gallery,handrail,2000,10,not sized,,,,,,,,,,,,,,,14.5,,,,,,,,
 `
@@ -141,6 +142,8 @@ func bookLeaves(j job.Job) []leaf {
 		{id: "allowance/growth/class 5", move: func(j *job.Job) { move(j.Book.Growth, "5") }},
 		{id: "systemic/class 5", move: func(j *job.Job) { j.Book.Systemic["5"] *= 1.01 }},
 		{id: "setting/reference price", move: func(j *job.Job) { j.Book.ReferencePrice = j.Book.ReferencePrice.Add(money.FromInt(9)) }},
+		{id: "setting/correlation/labour", move: func(j *job.Job) { j.Book.Correlation["labour"] *= 1.01 }},
+		{id: "setting/correlation/supply", move: func(j *job.Job) { j.Book.Correlation["supply"] *= 1.01 }},
 		{id: "setting/confidence", move: func(j *job.Job) { j.Settings.Confidence *= 1.01 }},
 	}
 	for c := range j.Book.Ratios {

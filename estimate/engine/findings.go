@@ -56,16 +56,21 @@ func memberFindings(s sizedMember) []document.Finding {
 		out = append(out, f)
 	}
 	for _, w := range s.result.Warnings {
-		out = append(out, document.Finding{Severity: document.Doubtful, Code: "section-warning", Subject: mark, Message: w + ".", Figures: figures})
+		out = append(out, document.Finding{Severity: document.Doubtful, Code: "section-warning", Subject: mark, Message: sentence(w), Figures: figures})
 	}
 	for i, c := range s.result.Checks {
 		note := noteOf(s.result, i)
-		if note != "" && c.ID != resistance.NotCovered && !resistance.Passes(c.Utilisation) {
-			out = append(out, document.Finding{Severity: document.Doubtful, Code: "check-note", Subject: mark, Message: note, Figures: figures})
+		slender := c.ID == resistance.Axial && strings.Contains(note, "slenderness over 200")
+		failing := !resistance.Passes(c.Utilisation) && c.ID != resistance.Deflecting && c.ID != resistance.NotCovered
+		if note != "" && (slender || failing) {
+			out = append(out, document.Finding{Severity: document.Doubtful, Code: "check-note", Subject: mark, Message: sentence(c.ID + ": " + note), Figures: figures})
 		}
 	}
 	return out
 }
+
+// sentence ends a note with a full stop.
+func sentence(s string) string { return strings.TrimSuffix(s, ".") + "." }
 
 // unsafeShortcut names the ratios of the split method that are too low. The
 // sizing itself uses the exact envelope, so the finding warns against the
@@ -183,6 +188,15 @@ func (r *run) totalFindings(d document.Document) []document.Finding {
 	}
 	if d.Split != nil {
 		add(document.Notice, "split-summary", splitWords(*d.Split))
+	}
+	for _, it := range r.items {
+		if it.Net.Sign() == 0 || it.Delivered.Sign() == 0 || it.Purchased.Sign() == 0 {
+			out = append(out, document.Finding{Severity: document.Doubtful, Code: "too-light", Subject: it.Group, Figures: []string{"item/" + it.ID + "/net"},
+				Message: fmt.Sprintf("The pieces %s together weigh less than half a kilogram and are priced at nothing.", strings.Join(it.Marks, ", "))})
+		}
+	}
+	if s := r.job.Settings; s.Coating+s.ExecutionClass+s.StockLengths != "" {
+		add(document.Notice, "recorded-only", "Coating, execution class and stock lengths are recorded with the job; the ratio book does not price them apart.")
 	}
 	for _, o := range r.job.Omissions {
 		add(document.Notice, "possible-omission", o)

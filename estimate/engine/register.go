@@ -18,7 +18,7 @@ var totalFigures = []string{"base", "range", "contingency"}
 // depends on is read from the line itself, so that the register cannot say
 // otherwise than the arithmetic.
 func (r *run) fillRegister() error {
-	steps := []func() error{r.addSchedule, r.addBook, r.addMultipliers, r.addSettings, r.addStructural, r.feedMasses, r.feedLines}
+	steps := []func() error{r.addSchedule, r.addBook, r.addMultipliers, r.addCorrelation, r.addSettings, r.addStructural, r.feedMasses, r.feedLines}
 	for _, step := range steps {
 		if err := step(); err != nil {
 			return fmt.Errorf("register: %w", err)
@@ -36,6 +36,9 @@ func (r *run) addSchedule() error {
 	for _, e := range schedule.InputFeeds() {
 		if e.ID == "input/factor" && r.job.Settings.DesignBasis != "allowable" {
 			continue // the other bases have no such input
+		}
+		if !occurs(e.ID, r.job) {
+			continue
 		}
 		if err := r.register.Add(e); err != nil {
 			return err
@@ -147,6 +150,28 @@ func (r *run) winner(m ratebook.Multiplier) ratebook.Multiplier {
 		}
 	}
 	return m
+}
+
+// addCorrelation adds the rank correlation of each group that has a spread in the
+// model.
+func (r *run) addCorrelation() error {
+	used := map[string]bool{}
+	for _, in := range r.priced.Model.Inputs {
+		used[in.Group] = true
+	}
+	for _, g := range sortedKeys(r.job.Book.Correlation) {
+		if !used[g] {
+			continue
+		}
+		if err := r.register.Add(assumption.Entry{
+			ID: correlationID(g), Kind: assumption.Setting, Value: strconv.FormatFloat(r.job.Book.Correlation[g], 'g', -1, 64),
+			Statement: "Rank correlation of costs within the group " + g + "; between two groups it is about the geometric mean of theirs",
+			Source:    "rate book " + r.job.Book.Name, Owner: "starting book", Confidence: assumption.Low, Feeds: []string{"range", "contingency"},
+		}); err != nil {
+			return err
+		}
+	}
+	return nil
 }
 
 func (r *run) addSettings() error {

@@ -54,6 +54,7 @@ func (r *run) exclusions() []string {
 		"Taxes and duties.",
 		"Escalation after the base date and exchange risk.",
 		"Equipment, conveyors, piping, electrical work, cladding and roofing.",
+		"Corrosion allowance, least wall thickness and durability.",
 		"Fatigue, earthquake and accidental actions: not checked; dynamic effects beyond the dynamic factors given neither.",
 		vibration,
 		horizontal,
@@ -69,6 +70,7 @@ func (r *run) any(is func(sizedMember) bool) bool { return slices.ContainsFunc(r
 func (r *run) textNotes() []string {
 	out := []string{
 		"Concept sizes follow the exact envelope; the split method is shown beside it and never used for reactions.",
+		"What an assumption feeds is stated for sections as chosen; entries marked so may also choose other sections, and then move masses and costs in steps.",
 		"Percentiles of lines, groups or projects do not add up.",
 		"Labour, coating, freight and erection follow delivered mass; material follows purchased mass.",
 	}

@@ -85,6 +85,9 @@ func Freeze(s schedule.Schedule, src Source, book ratebook.Book, edited []ratebo
 		if err := m.Validate(); err != nil {
 			return Job{}, err
 		}
+		if _, ok := book.Correlation[m.Group]; m.Group != "" && !ok {
+			return Job{}, fmt.Errorf("multiplier %q is of the correlation group %q, which the rate book %q does not have", m.Name, m.Group, book.Name)
+		}
 	}
 	sortMultipliers(ms)
 	settings, defaults := s.Settings, s.Defaults

@@ -43,7 +43,8 @@ var exact = apd.Context{
 
 // Parse reads a plain decimal number: an optional sign, digits, and optionally a
 // point with digits on at least one side. Exponents, separators, spaces, NaN and
-// infinities are refused, and so are more than MaxDigits digits.
+// infinities are refused, and so are more than MaxDigits digits as String writes
+// them.
 func Parse(text string) (Decimal, error) {
 	body := text
 	if body != "" && (body[0] == '-' || body[0] == '+') {
@@ -62,6 +63,9 @@ func Parse(text string) (Decimal, error) {
 	}
 	if digits == 0 || points > 1 {
 		return Zero, parseError(text)
+	}
+	if body[0] == '.' {
+		digits++ // it is written with a zero before the point
 	}
 	if digits > MaxDigits {
 		return Zero, fmt.Errorf("money: found a number of %d digits; accepted: at most %d digits", digits, MaxDigits)

@@ -259,7 +259,7 @@ func BenchmarkMulRound(b *testing.B) {
 }
 
 func FuzzParse(f *testing.F) {
-	for _, seed := range []string{"1.50", "-0", "1e9", "NaN", ".", "999999999999999999999999999999.9"} {
+	for _, seed := range []string{"1.50", "-0", "1e9", "NaN", ".", "999999999999999999999999999999.9", ".999999999970000000000000000091"} {
 		f.Add(seed)
 	}
 	f.Fuzz(func(t *testing.T, text string) {

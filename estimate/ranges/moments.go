@@ -164,7 +164,7 @@ func (e *expectation) linked(factors []pricing.Factor, f pricing.Factor) []int {
 	var out []int
 	group := e.p.inputs[f.Input].group
 	for i, other := range factors {
-		if other.Input == f.Input || group >= 0 && e.p.inputs[other.Input].group == group {
+		if other.Input == f.Input || group >= 0 && e.p.inputs[other.Input].group >= 0 {
 			out = append(out, i)
 		}
 	}

@@ -100,17 +100,19 @@ func (p *program) addInputs(inputs []pricing.Input, s Settings) error {
 		p.inputs = append(p.inputs, next)
 	}
 	for i := range p.inputs {
-		if g := p.inputs[i].group; g >= 0 && p.groups[g].rho == 0 {
+		if g := p.inputs[i].group; g >= 0 && (p.groups[g].rho == 0 || p.inputs[i].sampler.Fixed()) {
 			p.inputs[i].group = -1
 		}
 	}
 	return nil
 }
 
-// newGroup returns the group of a rank correlation.
+// newGroup returns the group of a rank correlation. All groups hang on one common
+// factor: two inputs of groups with latent correlations r and s have √(r·s), so
+// that costs of different groups are not taken as unrelated.
 func newGroup(seed uint64, name string, rho float64) group {
 	r := LatentCorrelation(rho)
-	return group{name: name, rho: rho, common: math.Sqrt(r), own: math.Sqrt(1 - r), draws: newUniforms(seed, "group", name)}
+	return group{name: name, rho: rho, common: math.Sqrt(r), own: math.Sqrt(1 - r), draws: newUniforms(seed, "common factor", "")}
 }
 
 // addTerms checks the terms and numbers their categories.

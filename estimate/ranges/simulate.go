@@ -23,7 +23,8 @@ import (
 
 // Simulate computes the range of m's total under s, in the currency of m. One
 // draw per assumption per trial is shared by every term that uses it; members of
-// a group have the rank correlation of s between any two. progress, where not
+// a group have the rank correlation of s between any two, members of two groups
+// about the geometric mean of theirs. progress, where not
 // nil, is called with the trials done and their total after each replicate, one
 // call at a time.
 //

@@ -18,6 +18,8 @@ import (
 	"encoding/json"
 	"fmt"
 	"io"
+	"maps"
+	"slices"
 
 	"spanwright/estimate/money"
 	"spanwright/estimate/spread"
@@ -77,7 +79,7 @@ type Book struct {
 
 	// Connections is the allowance on net mass by connection class.
 	Connections map[string]Figure `json:"connections"`
-	// Bolts is the allowance for bolts on net mass with connections.
+	// Bolts is the allowance for bolts on net mass with connections and growth.
 	Bolts Figure `json:"bolts"`
 	// Waste is the allowance from delivered (less bolts) to purchased mass.
 	Waste map[string]Figure `json:"waste"`
@@ -87,12 +89,14 @@ type Book struct {
 	// whole base, by estimate class.
 	Systemic map[string]float64 `json:"systemic"`
 	// SizingBias is the belief about real over sized mass: the conservatism of
-	// the checks. It acts in the range, never in the base.
+	// the checks. Its likely value is 1, so that it acts in the range and never in
+	// the base.
 	SizingBias Figure `json:"sizing_bias"`
 
 	Multipliers []Multiplier `json:"multipliers"`
 	Bands       []Band       `json:"bands"`
-	// Correlation is Spearman's ρ within each group.
+	// Correlation is Spearman's ρ within each group. All groups share one common
+	// factor, so that between two groups it is about √(ρ₁·ρ₂).
 	Correlation map[string]float64 `json:"correlation"`
 }
 
@@ -148,6 +152,9 @@ func Parse(data []byte) (Book, error) {
 	}
 	return b, nil
 }
+
+// ConnectionClasses returns the classes that the book has an allowance for, sorted.
+func (b Book) ConnectionClasses() []string { return slices.Sorted(maps.Keys(b.Connections)) }
 
 // Canonical returns the book's canonical bytes and their SHA-256 in hex.
 func (b Book) Canonical() ([]byte, string, error) {

@@ -2,6 +2,7 @@ package ratebook
 
 import (
 	"fmt"
+	"math"
 	"slices"
 	"sort"
 	"strconv"
@@ -75,6 +76,7 @@ func (b Book) Validate() error {
 		c.want(ok && v >= 0 && v <= 2, "/systemic/"+class, strconv.FormatFloat(v, 'g', -1, 64), "a standard deviation of the logarithm from 0 to 2")
 	}
 	c.figure("/sizing_bias", b.SizingBias, 0.1, 10)
+	c.want(b.SizingBias.Spread.Base() == 1, "/sizing_bias/spread/likely", fmt.Sprint(b.SizingBias.Spread.Base()), "1: the bias acts in the range, never in the base")
 	for i, m := range b.Multipliers {
 		c.multiplier(fmt.Sprintf("/multipliers/%d", i), m)
 	}
@@ -138,7 +140,18 @@ func (c *checker) spread(field string, s spread.Spread, low, high float64) {
 	if s.Distribution != spread.Fixed {
 		lo, hi = s.Low, s.High
 	}
+	base := s.Base()
+	c.want(math.Abs(base*1e4-math.Round(base*1e4)) <= 1e-7*math.Max(1, math.Abs(base*1e4)), field, fmt.Sprint(base),
+		"a likely value of at most four decimals (for a lognormal: state its median as likely)")
 	c.want(lo >= low && hi <= high, field, fmt.Sprintf("%g to %g", lo, hi), fmt.Sprintf("values from %g to %g", low, high))
+}
+
+// short is the beginning of a text, for a message.
+func short(text string) string {
+	if r := []rune(text); len(r) > 60 {
+		return string(r[:60]) + "…"
+	}
+	return text
 }
 
 func (c *checker) correlation(b Book) {
@@ -181,5 +194,6 @@ func (c *checker) multiplier(field string, m Multiplier) {
 		c.want(slices.Contains(Categories(), cat), fmt.Sprintf("%s/categories/%d", field, i), cat, strings.Join(Categories(), ", "))
 	}
 	c.spread(field+"/spread", m.Spread, 0, maxFactor)
-	c.want(m.Reason != "", field+"/reason", m.Reason, "why it is so")
+	c.want(m.Reason != "" && len([]rune(m.Reason)) <= 2000, field+"/reason", short(m.Reason), "why it is so, in 1 to 2000 characters")
+	c.want(len([]rune(m.Subject)) <= 200, field+"/subject", short(m.Subject), "at most 200 characters")
 }

@@ -147,8 +147,7 @@ func (r *row) sized(m *Member, f *fields, d *taken) {
 	r.restrain(m, f, d)
 	r.limitSize(m, f)
 	m.LengthFactor = f.factor.value
-	if f.factor.state == blank {
-		m.LengthFactor = 1
+	if f.factor.state == blank { // 0: sizing takes 1 for spans and 2 for free ends
 		d.take("length_factor", r.defaults.lengthFactor())
 	}
 }

@@ -9,6 +9,8 @@ import (
 
 	"spanwright/estimate/sheet"
 	"spanwright/structural/unit"
+
+	"golang.org/x/text/unicode/norm"
 )
 
 // state tells what became of a cell.
@@ -68,7 +70,7 @@ func readText(c sheet.Cell, longest int, wanted string) (text, *complaint) {
 	default:
 		return text{state: bad}, wrongKind(c, wanted)
 	}
-	line := strings.Join(strings.Fields(c.Text), " ")
+	line := norm.NFC.String(strings.Join(strings.Fields(c.Text), " ")) // one form of accented letters
 	if line == "" {
 		return text{}, nil
 	}

@@ -126,7 +126,7 @@ var columns = [columnCount]definition{
 		dimensions: []unit.Dimension{unit.Length}, hints: []string{"support position", "support locations"}},
 	colRestraint: {Column: Column{Header: "Restraint spacing (m)", Unit: "m", Accepts: "full span", Meaning: "distance between lateral restraints of the compression flange; blank is the full span", Blank: "that of the Job sheet, else the full span", Example: "2"},
 		dimensions: []unit.Dimension{unit.Length}, hints: []string{"restraint", "lateral restraint", "unbraced length", "lb"}, choices: list("full span")},
-	colFactor: {Column: Column{Header: "Effective length factor", Meaning: "K of the buckling length K·L", Blank: "1", Example: "1"},
+	colFactor: {Column: Column{Header: "Effective length factor", Meaning: "K of the buckling length K·L", Blank: "1 for spans, 2 for free ends", Example: "1"},
 		hints: []string{"k", "length factor", "buckling factor", "effective length"}},
 	colMoment: {Column: Column{Header: "Moment factor", Accepts: "1 to 3", Meaning: "C1 of EN 1993, or Cb of AISC 360, for the shape of the moments between lateral restraints; blank is 1, which is safe; allowable takes 1 whatever it is", Blank: "1", Example: "1.13"},
 		hints: []string{"c1", "cb", "moment gradient factor"}},

@@ -155,7 +155,7 @@ func (d *defaults) restraint() string {
 }
 
 func (d *defaults) lengthFactor() string {
-	return d.byValue("length factor", "1", "", "Members in compression buckle over their whole length, K = 1.", assumption.Medium)
+	return d.byValue("length factor", "1 for spans, 2 for free ends", "", "Members in compression buckle over their longest span with K = 1, or over their longest overhang or cantilever with K = 2.", assumption.Medium)
 }
 
 func (d *defaults) grade(name string) string {

@@ -37,7 +37,7 @@ func TestDefaultsEnterTheRegister(t *testing.T) {
 		"default/confidence", "default/connection class/simple beams", "default/connection class/trestles", "default/connection class/tube booms",
 		"default/currency", "default/deflection limit/100", "default/deflection limit/250", "default/design basis", "default/estimate class",
 		"default/factor", "default/grade/A53 B", "default/grade/S235", "default/group/ungrouped", "default/kind/beam", "default/kind/cantilever",
-		"default/length factor/1", "default/load/walkway deck/0.48", "default/load/walkway people/3.6", "default/restraint/full span",
+		"default/length factor/1 for spans, 2 for free ends", "default/load/walkway deck/0.48", "default/load/walkway people/3.6", "default/restraint/full span",
 	}
 	if diff := cmp.Diff(want, ids); diff != "" {
 		t.Errorf("ids (-want +got):\n%s", diff)
@@ -51,7 +51,7 @@ func TestDefaultsEnterTheRegister(t *testing.T) {
 	}
 	if diff := cmp.Diff(map[string]string{
 		"deflection_limit": "default/deflection limit/250", "kind": "default/kind/cantilever", "grade": "default/grade/S235",
-		"restraint_m": "default/restraint/full span", "length_factor": "default/length factor/1", "connection_class": "default/connection class/simple beams",
+		"restraint_m": "default/restraint/full span", "length_factor": "default/length factor/1 for spans, 2 for free ends", "connection_class": "default/connection class/simple beams",
 	}, s.Members[0].Defaults); diff != "" {
 		t.Errorf("defaults of B2 (-want +got):\n%s", diff)
 	}
@@ -90,7 +90,7 @@ func TestFeedsOfDefaults(t *testing.T) {
 		// Open shapes without a restraint: B2, B6, B7 and B8; B3 says full span itself.
 		"default/restraint/full span": join(ids("B2", ltb), ids("B6", ltb), ids("B7", ltb), ids("B8", ltb)),
 		// C1 is compressed and takes K = 1; BM1 names its K.
-		"default/length factor/1": ids("C1", "axial"),
+		"default/length factor/1 for spans, 2 for free ends": ids("C1", "axial"),
 		"default/factor": join(ids("B2", "bending", ltb, "shear"), ids("B3", "bending", ltb, "shear"), ids("B4", "bending", "shear"), ids("B5", "bending", "shear"),
 			ids("B6", "bending", ltb, "shear"), ids("B7", "bending", ltb, "shear"), ids("B8", "bending", ltb, "shear"),
 			ids("B10", "bending", ltb, "shear", "bending about the weak axis", "shear along the width", "interaction"), ids("BM1", "bending", "shear", "axial", "interaction"), ids("C1", "axial")),

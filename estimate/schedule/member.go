@@ -55,7 +55,7 @@ type Member struct {
 	Section         string    `json:"section,omitempty"` // the given section
 	Grade           string    `json:"grade,omitempty"`
 	Restraint       float64   `json:"restraint_m,omitempty"`        // lateral restraint spacing; 0 = full span
-	LengthFactor    float64   `json:"length_factor,omitempty"`      // effective length factor K
+	LengthFactor    float64   `json:"length_factor,omitempty"`      // effective length factor K; 0 = 1 for spans, 2 for free ends
 	DeflectionLimit float64   `json:"deflection_limit,omitempty"`   // n of length / n; 0 = no limit
 	MomentFactor    float64   `json:"moment_factor,omitempty"`      // C1 or Cb; 0 = 1
 	NetAreaFactor   float64   `json:"net_area_factor,omitempty"`    // net over gross area in tension; 0 = 1

@@ -205,8 +205,8 @@ func (r *row) overhanging(f *fields) []Support {
 	case f.overhang.state == blank:
 		r.missing(colOverhang, "the overhang is blank", "enter its length, which is part of Length")
 		return nil
-	case !(inner > 0):
-		r.fault(colOverhang, r.cells[colOverhang].Text, "is not shorter than the member, "+metres(f.length.value), "an overhang below the length, of which it is part")
+	case !(inner > samePlace*f.length.value), !(f.overhang.value > samePlace*f.length.value):
+		r.fault(colOverhang, r.cells[colOverhang].Text, "is not shorter than the member, or not above 0: the member is "+metres(f.length.value), "an overhang above 0 and below the length, each part more than a two-hundredth of it")
 		return nil
 	}
 	return []Support{{0, pinned}, {inner, pinned}}
@@ -233,9 +233,9 @@ func (r *row) atPlaces(f *fields) []Support {
 	return f.supports
 }
 
-// samePlace is the part of the length within which two supports are taken as one.
-// The beam analysis needs spans that are not vanishingly short.
-const samePlace = 1e-6
+// samePlace is the part of the length within which two supports are taken as one:
+// a shorter span is a slip of the hand, and would be blamed on the section.
+const samePlace = 0.005
 
 func metres(v float64) string { return unit.Format(v, unit.Must("m"), 6) }
 

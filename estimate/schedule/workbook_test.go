@@ -94,7 +94,7 @@ func TestReadWorkbookWithJob(t *testing.T) {
 		if m.Grade != "S355" || m.DeflectionLimit != 300 || m.Restraint != 3 || m.ConnectionClass != "trestles" {
 			t.Errorf("B4 does not take the job's values: %+v", m)
 		}
-		if diff := cmp.Diff(map[string]string{"kind": "default/kind/beam", "length_factor": "default/length factor/1"}, m.Defaults); diff != "" {
+		if diff := cmp.Diff(map[string]string{"kind": "default/kind/beam", "length_factor": "default/length factor/1 for spans, 2 for free ends"}, m.Defaults); diff != "" {
 			t.Errorf("defaults of B4 (-want +got):\n%s", diff)
 		}
 		if m.Row.String() != "Schedule!A5" {

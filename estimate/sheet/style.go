@@ -4,10 +4,14 @@ import "github.com/xuri/excelize/v2"
 
 // Colours of the exported workbooks, chosen to stay legible in grey print.
 const (
-	inkNote   = "595959"
-	fillHead  = "E3E8EC"
-	fillInput = "FFF8DC"
-	rule      = "7F8C97"
+	// Those of the workbook's plain cells; a font without a family is drawn with
+	// serifs by some programs.
+	fontFamily = "Calibri"
+	fontSize   = 11
+	inkNote    = "595959"
+	fillHead   = "E3E8EC"
+	fillInput  = "FFF8DC"
+	rule       = "7F8C97"
 )
 
 // style finds or makes the library's style of a look; 0 is the plain one.
@@ -39,15 +43,15 @@ func (l look) style() *excelize.Style {
 		s.Fill = fill(fillInput)
 	}
 	if l.note {
-		s.Font = &excelize.Font{Italic: true, Color: inkNote}
+		s.Font = &excelize.Font{Italic: true, Color: inkNote, Family: fontFamily, Size: fontSize}
 		s.Alignment = &excelize.Alignment{WrapText: true, Vertical: "top"}
 	}
 	if l.total {
-		s.Font = &excelize.Font{Bold: true}
+		s.Font = &excelize.Font{Bold: true, Family: fontFamily, Size: fontSize}
 		s.Border = []excelize.Border{{Type: "top", Color: rule, Style: 1}}
 	}
 	if l.head {
-		s.Font = &excelize.Font{Bold: true}
+		s.Font = &excelize.Font{Bold: true, Family: fontFamily, Size: fontSize}
 		s.Fill = fill(fillHead)
 		s.Border = []excelize.Border{{Type: "bottom", Color: rule, Style: 1}}
 		s.Alignment = &excelize.Alignment{WrapText: true, Vertical: "center"}

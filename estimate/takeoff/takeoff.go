@@ -114,14 +114,14 @@ func Count(pieces []Piece, a Allowances) ([]Item, error) {
 
 func itemID(p Piece) string {
 	parts := []string{p.Member.Group, p.Family, string(p.Member.Treatment), p.Member.ConnectionClass}
+	if p.Member.AreaMass > 0 {
+		parts = append(parts, "by area") // another waste allowance than rows by length
+	}
 	if p.Split != "" {
 		parts = append(parts, p.Member.Mark)
 	}
 	for i, s := range parts {
 		parts[i] = assumption.Segment(s)
-	}
-	if p.Waste == "plate" {
-		parts[1] += "~plate"
 	}
 	return strings.Join(parts, "/")
 }

@@ -70,13 +70,20 @@ func (p *Prepared) wayOut(s *section.Section, c resistance.Check) []string {
 	case resistance.LocalBuckling:
 		return []string{"a thicker wall or a grade of lower yield strength: the " + c.Note}
 	case resistance.Deflecting:
-		return []string{
+		ways := []string{
 			fmt.Sprintf("a section with a second moment Iy of at least %.0f cm⁴ (%s has %.0f cm⁴); a stronger grade does not help", math.Ceil(s.Iy*c.Utilisation*1e8), s.Designation, s.Iy*1e8),
-			fmt.Sprintf("a deflection limit of L/%.0f instead of L/%.0f", math.Floor(p.member.DeflectionLimit/c.Utilisation), p.member.DeflectionLimit),
 		}
+		if n := math.Floor(p.member.DeflectionLimit / c.Utilisation); n >= softestLimit {
+			ways = append(ways, fmt.Sprintf("a deflection limit of L/%.0f instead of L/%.0f", n, p.member.DeflectionLimit))
+		}
+		return ways
 	}
 	return nil
 }
+
+// softestLimit is the n of the softest deflection limit L/n that is worth naming as
+// a way out (common practice, no source).
+const softestLimit = 50
 
 // tension tells whether an axial check stands under tension in every variant.
 func (p *Prepared) tension(c resistance.Check) bool {

@@ -1,0 +1,68 @@
+package engine
+
+import (
+	"strings"
+
+	"spanwright/estimate/assumption"
+	"spanwright/estimate/job"
+	"spanwright/estimate/schedule"
+)
+
+// given tells for each input of a schedule whether a member has it from its own
+// row. An input that is not named here counts as given.
+var given = map[string]func(schedule.Member) bool{
+	"input/permanent load":          func(m schedule.Member) bool { return hasLoad(m, "permanent", "uniform", "") },
+	"input/variable load":           func(m schedule.Member) bool { return hasLoad(m, "variable", "uniform", "") },
+	"input/area load":               func(m schedule.Member) bool { return hasLoad(m, "variable", "uniform", "area") },
+	"input/tributary width":         func(m schedule.Member) bool { return hasLoad(m, "variable", "uniform", "area") },
+	"input/point load":              func(m schedule.Member) bool { return hasLoad(m, "variable", "point", "") },
+	"input/point position":          func(m schedule.Member) bool { return hasLoad(m, "variable", "point", "") },
+	"input/axial load":              func(m schedule.Member) bool { return m.Axial != 0 },
+	"input/overhang":                func(m schedule.Member) bool { return m.Arrangement == "overhang" },
+	"input/support positions":       func(m schedule.Member) bool { return m.Arrangement == "positions" },
+	"input/restraint spacing":       func(m schedule.Member) bool { return m.Restraint > 0 && m.Defaults["restraint_m"] == "" },
+	"input/effective length factor": func(m schedule.Member) bool { return m.LengthFactor > 0 && m.Defaults["length_factor"] == "" },
+	"input/deflection limit":        func(m schedule.Member) bool { return m.DeflectionLimit > 0 && m.Defaults["deflection_limit"] == "" },
+	"input/mass if not sized":       func(m schedule.Member) bool { return m.Treatment == schedule.ByMass },
+	"input/area":                    func(m schedule.Member) bool { return m.Area > 0 },
+}
+
+func hasLoad(m schedule.Member, nature, kind, label string) bool {
+	for _, l := range m.Loads {
+		if l.Nature == nature && l.Kind == kind && strings.Contains(strings.ToLower(l.Label), label) {
+			return true
+		}
+	}
+	return false
+}
+
+// occurs tells whether the job was given an input, so that the register lists
+// what was posted and nothing else.
+func occurs(id string, j job.Job) bool {
+	for _, e := range j.Defaults {
+		if strings.TrimPrefix(id, "input/") == strings.TrimPrefix(e.ID, "default/") {
+			return false // the job took the default
+		}
+	}
+	has, ok := given[id]
+	if !ok {
+		return true
+	}
+	for _, m := range j.Members {
+		if has(m) {
+			return true
+		}
+	}
+	return false
+}
+
+// withResizing marks the entries that feed a check: a check near its limit
+// chooses another section when they move.
+func withResizing(entries []assumption.Entry) []assumption.Entry {
+	for i := range entries {
+		for _, f := range entries[i].Feeds {
+			entries[i].Resizes = entries[i].Resizes || strings.Contains(f, "/check/")
+		}
+	}
+	return entries
+}
