@@ -95,15 +95,16 @@ func (p *splitPlane) add(a action.Action, length float64) {
 // terms gives every case its factor: permanent on permanent actions and on the
 // own weight (N/m), variable on the others.
 func (p *splitPlane) terms(permanent, variable, weight float64) []beam.Term {
-	terms := make([]beam.Term, len(p.factors))
+	terms := make([]beam.Term, 0, len(p.factors)+len(p.dynamic))
 	for i, f := range p.factors {
-		terms[i] = beam.Term{Case: i, Factor: variable * f.dynamic}
+		factor := variable * f.dynamic
 		switch {
 		case f.own:
-			terms[i].Factor = permanent * weight
+			factor = permanent * weight
 		case f.nature == action.Permanent:
-			terms[i].Factor = permanent * f.dynamic
+			factor = permanent * f.dynamic
 		}
+		terms = append(terms, beam.Term{Case: i, Factor: factor})
 	}
 	for i, f := range p.dynamic {
 		terms = append(terms, beam.Term{Case: len(p.factors) + i, Factor: variable * f})

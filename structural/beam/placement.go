@@ -1,6 +1,7 @@
 package beam
 
 import (
+	"errors"
 	"fmt"
 	"math"
 	"slices"
@@ -155,7 +156,7 @@ func (s *placing) try(at []float64) float64 {
 	trial.Supports = s.supports
 	r, err := s.analyser.Analyse(trial, s.cases)
 	if err != nil {
-		s.fault, _ = err.(*Fault)
+		errors.As(err, &s.fault)
 		return math.Inf(1)
 	}
 	v := s.value(r)

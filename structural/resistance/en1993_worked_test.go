@@ -184,7 +184,7 @@ func TestClassesOfKnownSections(t *testing.T) {
 }
 
 // The rolled case at the figures of the worked example SX001, simply supported
-// laterally unrestrained beam IPE 330 in S235 (Access Steel, from memory): λLT =
+// laterally unrestrained beam IPE 330 in S235 (worked example SX001, from memory): λLT =
 // 1.288, kc = 0.94; χLT = 0.480, f = 0.984, χLT,mod = 0.488, Mb,Rd = 92.24 kN·m.
 func TestRolledCaseAgainstAWorkedExample(t *testing.T) {
 	got := rolledChi(1.288, 1/(0.94*0.94), true, false)
