@@ -40,6 +40,7 @@ func endpoints(t *testing.T) []endpoint {
 		{"list-schedules", "GET", "/v1/schemes/{scheme}/schedules", "", auth.Viewer, 200},
 		{"post-schedule", "POST", "/v1/schemes/{scheme}/schedules", csvSchedule, auth.Estimator, 201},
 		{"check-schedule", "POST", "/v1/schedules/check", csvSchedule, auth.Estimator, 200},
+		{"get-schedule-template", "GET", "/v1/schedules/template", "", auth.Viewer, 200},
 		{"get-schedule", "GET", "/v1/schedules/{schedule}", "", auth.Viewer, 200},
 		{"get-schedule-source", "GET", "/v1/schedules/{schedule}/source", "", auth.Viewer, 200},
 		{"list-estimates", "GET", "/v1/schemes/{scheme}/estimates", "", auth.Viewer, 200},

@@ -37,6 +37,10 @@ func (a *api) schedules() {
 		"Answers the load of each member, the tonnes of each group as far as they are known before sizing, every default taken and what may have been forgotten; or all faults, by cell.")
 	check.DefaultStatus = http.StatusOK
 	registerRaw(a, check, a.limits.Sheet.Bytes+formSlack, body, a.checkSchedule)
+	t := operation(http.MethodGet, "/v1/schedules/template", "get-schedule-template", tagSchedules, "Read an empty schedule to fill in")
+	t.Responses["200"] = &huma.Response{Description: "a workbook with drop-down lists, an example row and a Job sheet",
+		Content: map[string]*huma.MediaType{mediaXLSX: {Schema: &huma.Schema{Type: huma.TypeString, Format: "binary"}}}}
+	register(a, t, a.template)
 	register(a, operation(http.MethodGet, "/v1/schedules/{id}", "get-schedule", tagSchedules, "Read a schedule revision"),
 		func(ctx context.Context, r *request, in *ByID) (*plain[service.Revision], error) {
 			v, err := a.service.Revision(ctx, r.Actor, in.ID)
@@ -80,6 +84,14 @@ func (a *api) postSchedule(ctx context.Context, r *request, in *newSchedule) (*m
 	}
 	v, err := a.service.PostSchedule(ctx, r.Actor, in.ID, p, r.attempt(in.Keyed, parts...))
 	return &made[service.Revision]{Location: "/v1/schedules/" + v.ID.String(), Body: v}, err
+}
+
+func (a *api) template(ctx context.Context, r *request, _ *struct{}) (*content, error) {
+	data, err := a.service.Template(ctx, r.Actor)
+	if err != nil {
+		return nil, err
+	}
+	return &content{Status: http.StatusOK, CacheControl: "private, no-cache", ContentType: mediaXLSX, Disposition: attachment("schedule.xlsx"), Body: data}, nil
 }
 
 func (a *api) source(ctx context.Context, r *request, in *ByID) (*content, error) {

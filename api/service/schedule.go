@@ -143,6 +143,14 @@ type Reading struct {
 	Omissions []string           `json:"omissions" doc:"kinds that one would expect and that are absent"`
 }
 
+// Template writes an empty schedule as a workbook.
+func (s *Service) Template(ctx context.Context, a Actor) ([]byte, error) {
+	if err := s.allow(a, auth.UseCalculators); err != nil {
+		return nil, err
+	}
+	return s.Export(ctx, schedule.Template)
+}
+
 // CheckSchedule reads a schedule and stores nothing: errors as those of
 // PostSchedule.
 func (s *Service) CheckSchedule(ctx context.Context, a Actor, p Posting) (Reading, error) {
