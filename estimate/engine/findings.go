@@ -207,8 +207,11 @@ func (r *run) totalFindings(d document.Document) []document.Finding {
 // splitWords puts the summary of the split method into a sentence.
 func splitWords(s document.SplitSummary) string {
 	diff := fmt.Sprintf("%.3f t more", float64(s.DifferenceT))
-	if s.DifferenceT < 0 {
+	switch {
+	case s.DifferenceT < 0:
 		diff = fmt.Sprintf("%.3f t less", -float64(s.DifferenceT))
+	case s.DifferenceT == 0:
+		diff = "no more and no less"
 	}
 	text := fmt.Sprintf("Sized by the split method, %d members would weigh %.3f t net, %s than by the exact envelope", len(s.Members), float64(s.TonnesSplit), diff)
 	if len(s.UnsafeMembers) == 0 {

@@ -8,24 +8,6 @@ import (
 	"pgregory.net/rapid"
 )
 
-// Distances of the literature: kitten/sitting 3 (Levenshtein's usual example), CA/ABC
-// 3 by optimal string alignment, a swap of neighbours 1 (Damerau 1964). From memory.
-func TestEditDistance(t *testing.T) {
-	for _, c := range []struct {
-		a, b string
-		want int
-	}{
-		{"kitten", "sitting", 3}, {"saturday", "sunday", 3}, {"ca", "abc", 3}, {"lenght", "length", 1}, {"", "abc", 3}, {"same", "same", 0},
-	} {
-		if got := editDistance([]rune(c.a), []rune(c.b)); got != c.want {
-			t.Errorf("%s to %s: %d, want %d", c.a, c.b, got, c.want)
-		}
-		if got := editDistance([]rune(c.b), []rune(c.a)); got != c.want {
-			t.Errorf("%s to %s: %d, want %d", c.b, c.a, got, c.want)
-		}
-	}
-}
-
 func TestNaturalOrder(t *testing.T) {
 	want := []string{"", "2", "10", "A", "B", "B1", "B02", "B2", "B2a", "B02b", "B10", "B10-1", "B10-2", "B10-12", "b1"}
 	got := slices.Clone(want)

@@ -4,6 +4,8 @@ import (
 	"regexp"
 	"slices"
 	"strings"
+
+	"spanwright/structural/spelling"
 )
 
 // enNumber is the standard that a grade is named with, without its signs.
@@ -82,7 +84,7 @@ func (d *data) near(name string) []string {
 		if c == "" || c[0] != k[0] {
 			continue
 		}
-		dist := editDistance(c, k)
+		dist := spelling.Distance(c, k)
 		if dist <= max(1, len(k)/2) || len(c) >= 3 && (strings.HasPrefix(k, c) || strings.HasPrefix(c, k)) {
 			found = append(found, candidate{n, dist})
 		}
@@ -93,26 +95,4 @@ func (d *data) near(name string) []string {
 		names = append(names, f.name)
 	}
 	return names
-}
-
-// editDistance is the least number of single-letter insertions, deletions and
-// replacements that turn a into b (Levenshtein 1966).
-func editDistance(a, b string) int {
-	row := make([]int, len(b)+1)
-	for j := range row {
-		row[j] = j
-	}
-	for i := range len(a) {
-		diagonal := row[0]
-		row[0] = i + 1
-		for j := range len(b) {
-			cost := diagonal
-			if a[i] != b[j] {
-				cost++
-			}
-			diagonal = row[j+1]
-			row[j+1] = min(cost, row[j]+1, row[j+1]+1)
-		}
-	}
-	return row[len(b)]
 }

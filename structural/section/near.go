@@ -6,6 +6,8 @@ import (
 	"regexp"
 	"slices"
 	"strconv"
+
+	"spanwright/structural/spelling"
 )
 
 // nearest is how many near misses are named at the most.
@@ -40,11 +42,11 @@ func closest(list []candidate) []string {
 func (c *catalogue) nearAll(k string) []string {
 	least := 2
 	var list []candidate
-	for spelling, s := range c.index {
-		if len(k) > len(spelling)+least {
+	for known, s := range c.index {
+		if len(k) > len(known)+least {
 			continue
 		}
-		d := editDistance(k, spelling)
+		d := spelling.Distance(k, known)
 		if d > least || d >= len(k) {
 			continue
 		}
@@ -121,26 +123,4 @@ func numbers(k string) []float64 {
 		}
 	}
 	return list
-}
-
-// editDistance is the least number of single-letter insertions, deletions and
-// replacements that turn a into b (Levenshtein 1966).
-func editDistance(a, b string) int {
-	row := make([]int, len(b)+1)
-	for j := range row {
-		row[j] = j
-	}
-	for i := range len(a) {
-		diagonal := row[0]
-		row[0] = i + 1
-		for j := range len(b) {
-			cost := diagonal
-			if a[i] != b[j] {
-				cost++
-			}
-			diagonal = row[j+1]
-			row[j+1] = min(cost, row[j]+1, row[j+1]+1)
-		}
-	}
-	return row[len(b)]
 }
