@@ -48,6 +48,7 @@ type Error struct {
 	Err     error // cause, for the log
 }
 
+// Error is the message with its cause, for the log.
 func (e *Error) Error() string {
 	if e.Err != nil {
 		return fmt.Sprintf("%s: %v", e.Message, e.Err)

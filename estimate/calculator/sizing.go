@@ -137,7 +137,7 @@ type SizingAnswer struct {
 	Checks      []document.Check    `json:"checks" nullable:"false"`
 	Rejected    []document.Rejected `json:"lighter_rejected" nullable:"false" doc:"the next ones below by the objective, and why they fail"`
 	Skipped     []SkippedSection    `json:"skipped" nullable:"false"`
-	TotalLoad   Number              `json:"total_load_kn" doc:"permanent, variable and own weight, with factors"`
+	TotalLoad   Number              `json:"total_load_kn" doc:"permanent, variable and own weight under the service combination"`
 	SelfWeight  Number              `json:"self_weight_kn" doc:"without factor"`
 	Spans       []BeamSpan          `json:"spans" nullable:"false" doc:"under the service combination"`
 	Reactions   []document.Reaction `json:"reactions" nullable:"false" doc:"exact envelope under the service combination"`

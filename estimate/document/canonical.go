@@ -37,6 +37,18 @@ func (n Number) Rounded() float64 {
 	return r
 }
 
+// Measured returns a figure of the structural analysis, rounded to 8 significant
+// digits: differences of large effects leave fewer sound digits than sums do, and
+// the printed text must not depend on a machine's last bits. It rounds to 12 digits
+// first, so that those bits decide no tie either.
+func Measured(x float64) Number {
+	r, err := strconv.ParseFloat(strconv.FormatFloat(Number(x).Rounded(), 'g', 8, 64), 64)
+	if err != nil {
+		return Number(x)
+	}
+	return Number(r)
+}
+
 // Canonical returns the document's bytes, as stored and answered, and their
 // SHA-256 in hex.
 func (d Document) Canonical() ([]byte, string, error) {

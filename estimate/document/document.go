@@ -247,7 +247,8 @@ type Rejected struct {
 	Utilisation Number `json:"utilisation"`
 }
 
-// Reaction is the exact envelope of one support, up positive.
+// Reaction is the exact envelope of one support under the service combination,
+// without factors, in the vertical plane, up positive.
 type Reaction struct {
 	Position Number `json:"position_m"`
 	Max      Number `json:"max_kn"`

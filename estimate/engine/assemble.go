@@ -186,13 +186,16 @@ func (r *run) member(s sizedMember) document.Member {
 	}
 	res := s.result
 	out.Section, out.Grade, out.Passes = res.Section.Designation, m.Grade, res.Passes
-	out.Governing, out.Utilisation, out.Combination = res.Governing, document.Number(res.Utilisation), res.Combination
+	out.Governing, out.Utilisation, out.Combination = res.Governing, document.Measured(res.Utilisation), res.Combination
 	out.SameSizeAs, out.LoadSet, out.Warnings = m.SameSizeAs, m.LoadSet, res.Warnings
-	out.TotalLoad, out.SelfWeight = document.Number(res.TotalLoad/1000), document.Number(res.SelfWeight/1000)
+	out.TotalLoad, out.SelfWeight = document.Measured(res.TotalLoad/1000), document.Measured(res.SelfWeight/1000)
 	out.DeflectionLimit = document.Number(m.DeflectionLimit)
-	out.Checks, out.Ratios, out.Reactions = checks(res), ratios(res.Ratios), reactions(res.Envelope.Reactions)
+	out.Checks, out.Ratios = checks(res), ratios(res.Ratios)
+	if !m.Upright { // its foot carries the axial force, which the beam knows nothing of
+		out.Reactions = reactions(res.Envelope.Reactions)
+	}
 	for _, x := range res.LighterRejected {
-		out.Rejected = append(out.Rejected, document.Rejected{Section: x.Section, Check: x.Check, Utilisation: document.Number(x.Utilisation)})
+		out.Rejected = append(out.Rejected, document.Rejected{Section: x.Section, Check: x.Check, Utilisation: document.Measured(x.Utilisation)})
 	}
 	return out
 }
@@ -206,11 +209,11 @@ func (r *run) splitSummary() *document.SplitSummary {
 			continue
 		}
 		metres := float64(s.member.Quantity) * s.member.Length / 1000
-		exact := metres * s.result.Section.Mass
+		exact := float64(metres * s.result.Section.Mass)
 		split := exact
-		m := document.SplitMember{Mark: s.member.Mark, Exact: s.result.Section.Designation, Utilisation: document.Number(s.split.utilisation), Check: s.split.check, Unsafe: s.split.unsafe()}
+		m := document.SplitMember{Mark: s.member.Mark, Exact: s.result.Section.Designation, Utilisation: document.Measured(s.split.utilisation), Check: s.split.check, Unsafe: s.split.unsafe()}
 		if s.split.passes {
-			m.Split, split = s.split.section.Designation, metres*s.split.section.Mass
+			m.Split, split = s.split.section.Designation, float64(metres*s.split.section.Mass)
 		}
 		m.DifferenceT = document.Number(split - exact)
 		if m.Unsafe {
@@ -233,10 +236,10 @@ func checks(res *sizing.Result) []document.Check {
 		if c.Demand == 0 && !c.PassFail {
 			continue // nothing acts that this check is about
 		}
-		d := document.Check{ID: c.ID, Clause: c.Clause, Formula: c.Formula, Demand: document.Number(c.Demand), Resistance: document.Number(c.Resistance),
-			Unit: c.Unit, Utilisation: document.Number(c.Utilisation), PassFail: c.PassFail, Note: noteOf(res, i), Combination: res.Combinations[i], Inputs: []document.Quantity{}}
+		d := document.Check{ID: c.ID, Clause: c.Clause, Formula: c.Formula, Demand: document.Measured(c.Demand), Resistance: document.Measured(c.Resistance),
+			Unit: c.Unit, Utilisation: document.Measured(c.Utilisation), PassFail: c.PassFail, Note: noteOf(res, i), Combination: res.Combinations[i], Inputs: []document.Quantity{}}
 		for _, q := range c.Inputs {
-			d.Inputs = append(d.Inputs, document.Quantity{Symbol: q.Symbol, Value: document.Number(q.Value), Unit: q.Unit})
+			d.Inputs = append(d.Inputs, document.Quantity{Symbol: q.Symbol, Value: document.Measured(q.Value), Unit: q.Unit})
 		}
 		out = append(out, d)
 	}
@@ -255,7 +258,7 @@ func reactions(in []beam.ReactionEnvelope) []document.Reaction {
 		if -x.MMin > moment {
 			moment = x.MMin
 		}
-		out = append(out, document.Reaction{Position: document.Number(x.X), Max: document.Number(x.FMax / 1000), Min: document.Number(x.FMin / 1000), Moment: document.Number(moment / 1000)})
+		out = append(out, document.Reaction{Position: document.Measured(x.X), Max: document.Measured(x.FMax / 1000), Min: document.Measured(x.FMin / 1000), Moment: document.Measured(moment / 1000)})
 	}
 	return out
 }
@@ -264,14 +267,17 @@ func ratios(in []beam.Ratio) []document.Ratio {
 	var out []document.Ratio
 	for _, x := range in {
 		scale, unit := 1e-3, "kN"
+		if (x.Effect == beam.EffectPeakMoment || x.Effect == beam.EffectShear) && x.Exact < 0 {
+			x.Split, x.Exact = -x.Split, -x.Exact // magnitudes: of ± the same either may come first
+		}
 		switch {
 		case strings.HasSuffix(x.Effect, "moment"):
 			unit = "kNm"
 		case x.Effect == "deflection":
 			scale, unit = 1e3, "mm"
 		}
-		out = append(out, document.Ratio{Effect: x.Effect, Where: x.Where, Split: document.Number(x.Split * scale), Exact: document.Number(x.Exact * scale),
-			Unit: unit, Ratio: document.Number(x.Ratio), Unsafe: x.Unsafe})
+		out = append(out, document.Ratio{Effect: x.Effect, Where: x.Where, Split: document.Measured(x.Split * scale), Exact: document.Measured(x.Exact * scale),
+			Unit: unit, Ratio: document.Measured(x.Ratio), Unsafe: x.Unsafe})
 	}
 	return out
 }

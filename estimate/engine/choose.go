@@ -1,7 +1,9 @@
 package engine
 
 import (
+	"errors"
 	"fmt"
+	"slices"
 	"strings"
 
 	"spanwright/estimate/schedule"
@@ -59,6 +61,11 @@ func (r rules) size(members []schedule.Member, group []int, out []sizedMember, e
 		out[group[0]].result, errs[group[0]] = checkGiven(first, prepared[0])
 	default:
 		r.choose(members, group, prepared, out, errs)
+	}
+	for k, i := range group {
+		if res := out[i].result; res != nil && errs[i] == nil {
+			out[i].lifts, errs[i] = r.lifts(prepared[k], members[i], res.Section)
+		}
 	}
 }
 
@@ -123,7 +130,7 @@ func (r rules) choose(members []schedule.Member, group []int, prepared []*sizing
 	}
 	for k, i := range group {
 		if !results[k].Passes {
-			errs[i] = r.nothingPasses(members[i], results[k])
+			errs[i] = tied(r.nothingPasses(members[i], results[k]), members, group, i)
 		}
 		out[i].result = &results[k]
 	}
@@ -133,6 +140,35 @@ func (r rules) choose(members []schedule.Member, group []int, prepared []*sizing
 		}
 	}
 	r.shorten(group, prepared, series, out)
+}
+
+// lifts finds the supports of a member that are pulled upward, under the strength
+// combinations, and under those of static equilibrium (EQU) where the basis has
+// none with a permanent action below its value.
+func (r rules) lifts(p *sizing.Prepared, m schedule.Member, sec section.Section) ([]lift, error) {
+	if m.Upright || len(m.Supports) < 2 {
+		return nil, nil
+	}
+	combinations := append([]action.Combination{action.EN1990Equilibrium()}, r.strength...)
+	if strings.HasPrefix(r.basis.Name(), "aisc") {
+		combinations = combinations[1:]
+	}
+	var out []lift
+	for _, c := range combinations {
+		reactions, err := p.Reactions(&sec, c)
+		if err != nil {
+			return nil, err
+		}
+		for i, x := range reactions {
+			if out == nil {
+				out = make([]lift, len(reactions))
+			}
+			if -x.FMin > out[i].force {
+				out[i] = lift{at: x.X, force: -x.FMin, combination: c.Name}
+			}
+		}
+	}
+	return slices.DeleteFunc(out, func(l lift) bool { return l.force <= 1 }), nil
 }
 
 // lightest returns the explained choice for each member.
@@ -145,16 +181,41 @@ func lightest(prepared []*sizing.Prepared, series []section.Section) ([]sizing.R
 	return g.Members, err
 }
 
+// tied adds to the fault of one row of a size group which rows it is tied with:
+// their limits bind it too.
+func tied(err error, members []schedule.Member, group []int, at int) error {
+	var f *memberFault
+	if len(group) < 2 || !errors.As(err, &f) {
+		return err
+	}
+	var others []string
+	for _, i := range group {
+		if i != at {
+			others = append(others, members[i].Mark)
+		}
+	}
+	f.Problem += "; tied by “Same size as” with " + strings.Join(others, ", ") + ", whose limits of depth and strength bind it too"
+	return f
+}
+
 // nothingPasses words the answer where no size of a family passes.
 func (r rules) nothingPasses(m schedule.Member, res sizing.Result) error {
 	if note := refusal(res); note != "" {
-		return fault(m.Mark, fmt.Sprintf("design basis %s does not cover %s here: %s", r.basis.Name(), m.Family, note), "choose another family, or another design basis")
+		return fault(m.Mark, fmt.Sprintf("design basis %s does not cover %s here: %s", r.basis.Name(), m.Family, note), r.coveredWays(m))
 	}
 	ways := "choose another family or grade"
 	if len(res.WaysOut) > 0 {
 		ways = "ways out: " + strings.Join(res.WaysOut, "; ")
 	}
 	return fault(m.Mark, fmt.Sprintf("no size of %s passes; the nearest is %s at %.2f (%s)", m.Family, res.Section.Designation, res.Utilisation, res.Governing), ways)
+}
+
+// coveredWays says what may be done about a shape that the basis does not cover.
+func (r rules) coveredWays(m schedule.Member) string {
+	if m.Family == "L" {
+		return "angles are sized as upright members alone (kind column, post or leg), because the own weight of others bends them; choose a tube, or enter the row as not sized"
+	}
+	return "choose another family, or another design basis"
 }
 
 // refusal is what the design basis says of a case that it does not cover.

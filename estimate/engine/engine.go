@@ -43,6 +43,7 @@ type FaultsError struct {
 	Faults []Fault
 }
 
+// Error names the first fault and how many there are.
 func (e *FaultsError) Error() string {
 	f := e.Faults[0]
 	s := fmt.Sprintf("member %s: %s; %s", f.Mark, f.Problem, f.Remedy)
@@ -56,6 +57,7 @@ func (e *FaultsError) Error() string {
 // a product of more digits than a workbook can hold.
 type RatesError struct{ Err error }
 
+// Error says what cannot be priced.
 func (e *RatesError) Error() string { return "the rates cannot be priced: " + e.Err.Error() }
 
 // Unwrap returns the cause.

@@ -52,6 +52,9 @@ func memberFindings(s sizedMember) []document.Finding {
 	if f, ok := unsafeShortcut(mark, s.result.Ratios); ok {
 		out = append(out, f)
 	}
+	if f, ok := softened(s); ok {
+		out = append(out, f)
+	}
 	if f, ok := uplift(s); ok {
 		out = append(out, f)
 	}
@@ -85,7 +88,7 @@ func unsafeShortcut(mark string, ratios []beam.Ratio) (document.Finding, bool) {
 		case r.Split == 0:
 			missing = append(missing, r.Effect+" of "+r.Where)
 			continue
-		case worst == nil || r.Ratio < worst.Ratio:
+		case worst == nil || r.Ratio < worst.Ratio-1e-9: // of equal ones the first
 			worst = &ratios[i]
 		}
 		low = append(low, fmt.Sprintf("%s of %s %.2f", r.Effect, r.Where, r.Ratio))
@@ -104,18 +107,34 @@ func unsafeShortcut(mark string, ratios []beam.Ratio) (document.Finding, bool) {
 		Message: "The split method would be unsafe here. " + strings.Join(parts, " ") + " The size and the reactions shown come from the exact envelope."}, true
 }
 
+// softened warns where compression raises the deflection by more than a tenth: the
+// deflection check is of first order, and 1/(1 − N/Ncr) is the usual amplification.
+func softened(s sizedMember) (document.Finding, bool) {
+	sec, length := s.result.Section, s.member.Length
+	if !(s.member.Axial > 0) || s.member.DeflectionLimit == 0 || len(s.member.Loads) == 0 {
+		return document.Finding{}, false
+	}
+	ratio := s.member.Axial * length * length / (math.Pi * math.Pi * softModulus * sec.Iy)
+	if ratio <= 0.1 {
+		return document.Finding{}, false
+	}
+	return document.Finding{Severity: document.Doubtful, Code: "compressed-deflection", Subject: s.member.Mark,
+		Message: fmt.Sprintf("The deflection is of first order; the compression of %.4g kN is %.2g of the Euler load of the length and would raise it.", s.member.Axial/1000, ratio)}, true
+}
+
+// softModulus is the lower of the two moduli in use, 29,000 ksi, Pa.
+const softModulus = 199.948e9
+
 func uplift(s sizedMember) (document.Finding, bool) {
 	var parts []string
-	for _, r := range s.result.Envelope.Reactions {
-		if r.FMin < -1 {
-			parts = append(parts, fmt.Sprintf("%.1f kN at %.3g m", -r.FMin/1000, r.X))
-		}
+	for _, l := range s.lifts {
+		parts = append(parts, fmt.Sprintf("%.1f kN at %.3g m under %s", l.force/1000, l.at, l.combination))
 	}
 	if len(parts) == 0 {
 		return document.Finding{}, false
 	}
 	return document.Finding{Severity: document.Doubtful, Code: "uplift", Subject: s.member.Mark,
-		Message: "A support is lifted: " + strings.Join(parts, ", ") + ". Holding-down or ballast is needed and is not priced."}, true
+		Message: "A support is lifted: " + strings.Join(parts, "; ") + ". Holding-down or ballast is needed and is not priced."}, true
 }
 
 // bandFindings holds each group's mass per metre and price per tonne against the

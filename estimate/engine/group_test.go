@@ -65,7 +65,7 @@ func TestFaultsOfGroupsAndBases(t *testing.T) {
 		{"a mark that no member has", two, "en1993", func(s *schedule.Schedule) { s.Members[1].SameSizeAs = "B9" }, []string{"B2"}, `size of "B9"`, "another row"},
 		{"another family", two, "en1993", func(s *schedule.Schedule) { s.Members[0].Family = "HEA" }, []string{"B2"}, "no row sized from IPE", "same family"},
 		{"nothing passes for one of the group", strings.Replace(two, "6,simple,1,1,IPE,S355,\n", "30,simple,50,50,IPE,S355,\n", 1), "en1993", nil, []string{"B1"}, "no size of IPE passes", "ways out"},
-		{"an angle in bending", tiedHead + "B1,1,2,simple,1,1,L,S355,\n", "en1993", nil, []string{"B1"}, "en1993 does not cover L here: angles in bending", "another design basis"},
+		{"an angle in bending", tiedHead + "B1,1,2,simple,1,1,L,S355,\n", "en1993", nil, []string{"B1"}, "en1993 does not cover L here: angles in bending", "angles are sized as upright members alone"},
 		{"stainless under AISC 360", tiedHead + "B1,1,2,simple,1,1,IPE,1.4301,\n", "aisc-lrfd", nil, []string{"B1"}, "aisc-lrfd does not cover 1.4301: AISC 360-22", "allowable"},
 		{"stainless under EN 1993-1-1", tiedHead + "B1,1,2,simple,1,1,WELDED-I 200x100x6x10,1.4301,\n", "en1993", nil, []string{"B1"}, "goes by EN 1993-1-4", "allowable"},
 		{"no depth left", "Mark,Quantity,Length (m),Permanent load (kN/m),Variable load (kN/m),Section or family,Max depth (mm)\nB1,1,6,1,1,IPE,50\n", "en1993", nil, []string{"B1"}, "none of the", "another family"},

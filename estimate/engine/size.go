@@ -26,7 +26,14 @@ const gravity = 9.80665
 type sizedMember struct {
 	member schedule.Member
 	result *sizing.Result
+	lifts  []lift    // supports that are pulled upward under a combination
 	split  *shortcut // of members that are sized and that the split method would cut or simplify
+}
+
+// lift is the pull on one support and the combination that gives the largest.
+type lift struct {
+	at, force   float64 // m, N
+	combination string
 }
 
 func (s sizedMember) piece() takeoff.Piece {

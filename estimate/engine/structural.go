@@ -60,14 +60,14 @@ var notes = []note{
 	{"structural/own weight", "nominal kg/m of the chosen section, g = 9.80665 m/s²", "Each member carries its own nominal weight as a permanent action, without connections and growth", assumption.High, anySized},
 	{"structural/pattern loading", "EN 1990:2002 4.1.1 (free actions)", "Free variable actions are placed span by span for the worst effect; a load of unknown nature counts as variable and free", assumption.High, severalSpans},
 	{"structural/connections", "", "Supports are ideally pinned or fixed and do not settle; joints and their eccentricities are not checked", assumption.Medium, anySized},
-	{"structural/deflection", "", "Deflection is limited to the span over n, and for an overhang or cantilever to twice its length over n", assumption.Medium, anySized},
+	{"structural/deflection", "", "Deflection is of first order and limited to the span over n, and for an overhang or cantilever to twice its length over n", assumption.Medium, anySized},
 	{"structural/prismatic", "", "Every member has one section over its whole length; splices are not placed", assumption.Medium, anySized},
 	{"structural/axial nature", "", "Axial loads count as variable in full; they act through the centroid", assumption.Medium, func(s sizedMember) bool { return s.result != nil && s.member.Axial != 0 }},
 	{"structural/tension", "", "Members in tension have no holes unless a net area factor is given", assumption.Medium, pulled},
 	{"structural/horizontal", "", "Horizontal actions bend a member about its weak axis between its own supports; lateral restraints are not counted on for that, and torsion from loads off the shear centre is not checked", assumption.Medium, sideways},
 	{"structural/moving load", "influence lines of the whole member", "Wheels cross the member in both directions and stand for each effect where it is worst; braking, side thrust and their spread through rails are not in it", assumption.High, crossed},
 	{"structural/dynamic factor", "", "Dynamic factors stand on the static loads that they are given for, in strength and deflection alike", assumption.Medium, dynamic},
-	{"structural/frequency", "exact dynamic stiffness of the Euler-Bernoulli beam", "The natural frequency is the first one in the vertical plane with own weight and permanent loads, without the mass of variable loads", assumption.Medium, floored},
+	{"structural/frequency", "exact dynamic stiffness of the Euler-Bernoulli beam", "The natural frequency is the first one in the vertical plane (of an upright member about its weak axis) with own weight and permanent loads, without the mass of variable loads, lowered by compression as 1 − N/Ncr", assumption.Medium, floored},
 	{"structural/same size", "", "Rows tied by “Same size as” all get the lightest section that passes in each of them", assumption.High, grouped},
 }
 

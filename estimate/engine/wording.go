@@ -70,6 +70,7 @@ func (r *run) any(is func(sizedMember) bool) bool { return slices.ContainsFunc(r
 func (r *run) textNotes() []string {
 	out := []string{
 		"Concept sizes follow the exact envelope; the split method is shown beside it and never used for reactions.",
+		"Reactions and total loads are those of the service combination, without factors, in the vertical plane.",
 		"What an assumption feeds is stated for sections as chosen; entries marked so may also choose other sections, and then move masses and costs in steps.",
 		"Percentiles of lines, groups or projects do not add up.",
 		"Labour, coating, freight and erection follow delivered mass; material follows purchased mass.",

@@ -20,6 +20,7 @@ type Fault struct {
 	Accepted string `json:"accepted"`
 }
 
+// String writes the fault on one line.
 func (f Fault) String() string {
 	return fmt.Sprintf("%s: found %s; accepted: %s", f.Field, f.Found, f.Accepted)
 }
@@ -29,6 +30,7 @@ type InvalidError struct {
 	Faults []Fault
 }
 
+// Error lists every fault.
 func (e *InvalidError) Error() string {
 	s := make([]string, len(e.Faults))
 	for i, f := range e.Faults {

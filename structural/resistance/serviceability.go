@@ -15,11 +15,15 @@ var frequencyWording = wording{
 // deflection reports the span or overhang that uses most of its own limit.
 func deflection(d *Demand, t *trace) use {
 	var worst use
-	at := -1
+	at, named := -1, 0.0
 	for i := range d.Deflections {
 		u := against(d.Deflections[i].Value, d.Deflections[i].Limit)
-		if at < 0 || u.utilisation > worst.utilisation {
-			worst, at = u, i
+		// Of spans that differ by rounding alone the first is named.
+		if at < 0 || u.utilisation > named*(1+tolerance) {
+			at, named = i, u.utilisation
+		}
+		if i == 0 || u.utilisation > worst.utilisation {
+			worst = u
 		}
 	}
 	if at >= 0 {

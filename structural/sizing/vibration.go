@@ -123,5 +123,24 @@ func (p *Prepared) frequency(s *section.Section) float64 {
 	if t < 0 { // lighter than the lightest node: that of the node is on the safe side
 		slowness = low
 	}
-	return math.Sqrt(p.setup.Grade.E*s.Iy/slowness) / (2 * math.Pi)
+	stiffness := p.setup.Grade.E * s.Iy
+	if p.member.Upright {
+		stiffness = p.setup.Grade.E * min(s.Iy, s.Iz) // it has no vertical plane
+	}
+	return math.Sqrt(stiffness*p.softening(s, stiffness)/slowness) / (2 * math.Pi)
+}
+
+// softening is what compression leaves of the stiffness against vibration: 1 − N/Ncr
+// under service actions, at least 0; exact for the pinned span, whose buckling and
+// vibrating shapes are one (Timoshenko & Young, Vibration Problems in Engineering).
+func (p *Prepared) softening(s *section.Section, stiffness float64) float64 {
+	n := p.setup.Service.Variable*p.member.Axial + p.setup.Service.Permanent*p.member.PermanentAxial
+	if p.member.Upright {
+		n += p.setup.Service.Permanent * p.massOf(s) * p.setup.Gravity * p.member.Length
+	}
+	length := p.demand.LengthY
+	if !(n > 0 && length > 0) {
+		return 1
+	}
+	return max(0, 1-n*length*length/(math.Pi*math.Pi*stiffness))
 }

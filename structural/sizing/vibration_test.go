@@ -8,6 +8,7 @@ import (
 	"spanwright/structural/action"
 	"spanwright/structural/beam"
 	"spanwright/structural/resistance"
+	"spanwright/structural/section"
 )
 
 // A simple span: f = π/2·√(EI/(m·L⁴)) (any handbook on vibration), with its own mass
@@ -110,5 +111,34 @@ func TestFrequencyFloorNobodyKeepsNamesAWayOut(t *testing.T) {
 	r := lightest(t, m, setup(t, 1.5, "S355"), series(t, "IPE"))
 	if r.Passes || !strings.Contains(strings.Join(r.WaysOut, "\n"), "second moment Iy") {
 		t.Errorf("passes %v, ways out %q", r.Passes, r.WaysOut)
+	}
+}
+
+// Compression lowers the frequency of a pinned span by √(1 − N/Ncr), and an upright
+// member swings about its weak axis. By hand: CHS 168.3x4, 12 m, 50 kN: Ncr = π²·E·I/L²,
+// I = 697 cm⁴ (EN 10210-2 table, from memory), so that 3.28 Hz becomes 2.3 Hz.
+func TestCompressionLowersTheFrequency(t *testing.T) {
+	s, err := section.Find("CHS 168.3x4")
+	if err != nil {
+		t.Fatal(err)
+	}
+	m := Member{Length: 12, Upright: true, FrequencyFloor: 1, DeflectionLimit: 0}
+	free := prepare(t, m, setup(t, 1.5, "S355")).frequency(&s)
+	m.Axial = 50e3
+	pressed := prepare(t, m, setup(t, 1.5, "S355")).frequency(&s)
+	own := s.Mass * 9.80665 * m.Length
+	ncr := math.Pi * math.Pi * 210e9 * s.Iy / (m.Length * m.Length)
+	want := free * math.Sqrt((1-(50e3+own)/ncr)/(1-own/ncr))
+	if math.Abs(pressed-want) > 1e-9*want {
+		t.Errorf("%.4f Hz under 50 kN, want %.4f", pressed, want)
+	}
+	h, err := section.Find("HEA 260")
+	if err != nil {
+		t.Fatal(err)
+	}
+	m.Axial = 0
+	upright := prepare(t, m, setup(t, 1.5, "S355")).frequency(&h)
+	if bound := math.Pi / 2 / (12 * 12) * math.Sqrt(210e9*h.Iz/h.Mass); upright > bound {
+		t.Errorf("HEA 260 upright: %.3f Hz, above %.3f of its weak axis", upright, bound)
 	}
 }
