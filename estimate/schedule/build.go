@@ -2,7 +2,6 @@ package schedule
 
 import (
 	"fmt"
-	"strings"
 )
 
 // build turns a row into a member. Every fault of the row is reported; the member
@@ -27,7 +26,7 @@ func (r *row) build() Member {
 	case word.state == bad:
 		r.givenGrade(&f)
 	case word.value == notSized:
-		r.unsized(&m, &f)
+		r.unsized(&m, &f, &d)
 	default:
 		m.Arrangement = word.value
 		if byDefault {
@@ -61,10 +60,16 @@ func (r *row) checkMark(mark text) {
 }
 
 // unsized completes a row by mass.
-func (r *row) unsized(m *Member, f *fields) {
+func (r *row) unsized(m *Member, f *fields, d *taken) {
 	m.Treatment = ByMass
 	m.Grade = r.givenGrade(f)
 	r.nameProduct(m, f)
+	if f.isFoundation() {
+		m.Kind = KindFoundation
+	}
+	if f.support.state == blank {
+		d.take("arrangement", r.defaults.foundation())
+	}
 	for _, l := range []struct {
 		id columnID
 		n  number
@@ -78,9 +83,21 @@ func (r *row) unsized(m *Member, f *fields) {
 		r.fault(colSameSize, f.sameSize.value, "stands in a row that is not sized", "leave it blank here")
 	}
 	r.strayOverhang(notSized, f)
+	r.weigh(m, f)
+}
+
+// weigh settles the mass of a row that is not sized: by length, by area, or none
+// where a foundation is of concrete alone.
+func (r *row) weigh(m *Member, f *fields) {
 	switch {
 	case f.mass.state == bad:
 		return
+	case f.mass.state == blank && f.isFoundation() && f.concrete.state == bad:
+	case f.mass.state == blank && f.concreteAlone(): // the length may be blank or 0
+	case f.mass.state == blank && f.isFoundation():
+		r.missing(colConcrete, "a foundation needs its concrete", "enter the volume of one piece, such as 2.4 m³, or a mass in "+columns[colMass].name())
+	case f.mass.state == blank && f.concrete.state == given && f.concrete.value > 0:
+		r.missing(colMass, "a row that is not sized needs its mass", "enter it with its unit, such as 30 kg/m, or "+KindFoundation+" in Kind for concrete alone")
 	case f.mass.state == blank:
 		r.missing(colMass, "a row that is not sized needs its mass", "enter it with its unit, such as 30 kg/m or 25 kg/m²")
 	case f.massByArea:
@@ -90,7 +107,9 @@ func (r *row) unsized(m *Member, f *fields) {
 		}
 	default:
 		m.LineMass = f.mass.value
-		r.needLength(f)
+		if r.needLength(f) && f.length.value == 0 {
+			r.fault(colLength, r.cells[colLength].Text, "gives a mass per length no mass", "a length above 0")
+		}
 	}
 }
 
@@ -183,8 +202,11 @@ func (r *row) classify(m *Member, f *fields, d *taken) {
 	case r.job.given[jobConnection]:
 		m.ConnectionClass = r.job.ConnectionClass
 	default:
-		m.ConnectionClass = classOf(m.Kind)
-		d.take("connection_class", r.defaults.connection(m.ConnectionClass))
+		m.ConnectionClass = classOf(m.Kind, r.classes)
+		steel := m.Treatment != ByMass || m.LineMass+m.AreaMass > 0
+		if steel && f.jointsState == blank { // counted joints replace the allowance
+			d.take("connection_class", r.defaults.connection(m.ConnectionClass))
+		}
 	}
 	switch {
 	case m.Treatment == ByMass:
@@ -214,15 +236,15 @@ func (r *row) limitSize(m *Member, f *fields) {
 	}
 }
 
-// record keeps what is recorded and not reckoned with.
+// record takes over what neither bears nor bounds.
 func (r *row) record(m *Member, f *fields) {
-	m.Joints, m.Coating = r.intern(f.joints.value), r.intern(f.coating.value)
+	m.Joints, m.Concrete, m.Coating = f.joints, f.concrete.value, r.intern(f.coating.value)
 	if f.execution.state != given {
 		return
 	}
-	class, ok := executionClass(f.execution.value)
-	if !ok {
-		r.fault(colExecution, f.execution.value, "is no execution class", "one of "+strings.Join(executionClasses, ", "))
+	class, wrong := executionClass(f.execution.value)
+	if wrong != nil {
+		r.judge(colExecution, wrong)
 	}
 	m.ExecutionClass = class
 }

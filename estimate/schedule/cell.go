@@ -145,6 +145,7 @@ func (s span) holds(v float64) bool {
 // Bounds beyond which a figure is a slip of the pen, whatever the structure.
 var (
 	lengths       = span{0, 1000, false, "a length above 0, up to 1000 m"}
+	noLengths     = span{0, 1000, true, "a length from 0 to 1000 m"}
 	positions     = span{0, 1000, true, "a position from 0 to 1000 m"}
 	loads         = span{-1e9, 1e9, true, "a load between -1e9 and 1e9 N, N/m or N/m²"}
 	factors       = span{0.5, 10, true, "a factor from 0.5 to 10"}
@@ -160,6 +161,8 @@ var (
 	snows         = span{0, 50_000, false, "a load above 0, up to 50 kN/m²"}
 	spacings      = span{0, 1000, false, "a distance above 0, up to 1000 m"}
 	dynamic       = span{1, 10, true, "a factor from 1 to 10"}
+	hauls         = span{0, 5e7, true, "a distance from 0 to 50,000 km"} // m
+	concretes     = span{0, 1e5, true, "a volume from 0 to 100,000 m³"}
 	areas         = span{0, 1e6, false, "an area above 0, up to 1,000,000 m²"}
 	yieldFactor   = span{1.5, 10, true, "a factor from 1.5 to 10: 1.5 to 1.67 for known loads, 3 to 4 for a first pass"}
 )

@@ -2,6 +2,7 @@ package schedule
 
 import (
 	"slices"
+	"strings"
 
 	"spanwright/structural/material"
 	"spanwright/structural/unit"
@@ -66,6 +67,7 @@ const (
 	colSameSize
 	colMass
 	colArea
+	colConcrete
 	colJoints
 	colConnection
 	colCoating
@@ -144,14 +146,17 @@ var columns = [columnCount]definition{
 		dimensions: []unit.Dimension{unit.LineMass, unit.AreaMass}, hints: []string{"mass", "weight", "unit mass", "unit weight", "kg/m"}},
 	colArea: {Column: Column{Header: "Area (m²)", Unit: "m²", Meaning: "area of one piece of a row that is not sized and has its mass per area", Example: "36"},
 		dimensions: []unit.Dimension{unit.Area}, hints: []string{"surface"}},
-	colJoints: {Column: Column{Header: "Joints", Meaning: "how the ends are joined; recorded, priced by the connection class", Example: "bolted end plates"},
-		hints: []string{"joint", "end joints", "joint type"}},
+	colConcrete: {Column: Column{Header: "Concrete (m³)", Unit: "m³", Meaning: "volume of concrete of one piece: footings, plinths, ballast blocks; a row of kind foundation may have it alone, without mass, section and length", Example: "2.4"},
+		dimensions: []unit.Dimension{unit.Volume}, hints: []string{"concrete volume", "volume", "footing"}},
+	colJoints: {Column: Column{Header: "Joints", Accepts: `numbers with their kinds, parted by ";": ` + strings.Join(JointKinds(), ", "),
+		Meaning: "joints of one piece, counted by kind; they replace the allowance of the connection class of the row", Blank: "the allowance of the connection class", Example: "2 moment; 4 pinned; 1 site splice"},
+		hints: []string{"joint", "end joints", "joint type", "joint count"}},
 	colConnection: {Column: Column{Header: "Connection class", Meaning: "class of the allowance for connections", Blank: "that of the Job sheet, else by the kind", Example: "simple beams"},
 		hints: []string{"connection", "connections", "connection type"}, choices: connectionClasses},
-	colCoating: {Column: Column{Header: "Coating", Meaning: "coating system of the row, where it is not that of the Job sheet; recorded", Blank: "that of the Job sheet", Example: "hot-dip galvanised"},
+	colCoating: {Column: Column{Header: "Coating", Meaning: "coating system of the row, where it is not that of the Job sheet; a rate book that prices systems names them", Blank: "that of the Job sheet", Example: "hot-dip galvanised"},
 		hints: []string{"paint", "painting", "coating system"}},
-	colExecution: {Column: Column{Header: "Execution class", Accepts: "EXC1, EXC2, EXC3, EXC4", Meaning: "execution class of EN 1090-2 of the row, where it is not that of the Job sheet; recorded", Blank: "that of the Job sheet", Example: "EXC3"},
-		hints: []string{"exc"}, choices: executionNames},
+	colExecution: {Column: Column{Header: "Execution class", Accepts: strings.Join(ExecutionClasses(), ", "), Meaning: "execution class of the row, where it is not that of the Job sheet: EN 1090-2, or AISC 360 chapter N with AWS D1.1, statically or cyclically loaded", Blank: "that of the Job sheet", Example: "EXC3"},
+		hints: []string{"exc", "inspection class"}, choices: ExecutionClasses},
 	colRemarks: {Column: Column{Header: "Remarks", Meaning: "free text", Example: "loads from the process engineer"},
 		hints: []string{"notes", "comment", "comments", "note", "remark"}},
 }
@@ -173,6 +178,8 @@ const (
 	jobCoating
 	jobExecution
 	jobStock
+	jobKerf
+	jobPurchase
 	jobClass
 	jobCurrency
 	jobBaseDate
@@ -180,6 +187,13 @@ const (
 	jobWindSpeed
 	jobTerrain
 	jobGroundSnow
+	jobMoney
+	jobSpendDate
+	jobConditions
+	jobHaul
+	jobTax
+	jobOwner
+	jobReserve
 	jobCount
 )
 
@@ -199,12 +213,17 @@ var jobKeys = [jobCount]definition{
 	jobRestraint: {Column: Column{Header: "Restraint (m)", Unit: "m", Accepts: "full span", Meaning: "distance between lateral restraints; blank is the full span", Blank: "full span", Example: "full span"},
 		dimensions: []unit.Dimension{unit.Length}, hints: []string{"restraint spacing", "lateral restraint"}, choices: list("full span")},
 	jobConnection: {Column: Column{Header: "Connection class", Meaning: "class of the allowance for connections of rows that name none", Blank: "by the kind of the member", Example: "simple beams"}, hints: []string{"connections", "connection"}, choices: connectionClasses},
-	jobCoating:    {Column: Column{Header: "Coating", Meaning: "coating system; recorded", Example: "C5, three coats"}, hints: []string{"paint", "painting"}},
-	jobExecution:  {Column: Column{Header: "Execution class", Accepts: "EXC1, EXC2, EXC3, EXC4", Meaning: "execution class of EN 1090-2; recorded", Example: "EXC2"}, hints: []string{"exc"}, choices: executionNames},
-	jobStock:      {Column: Column{Header: "Stock lengths", Meaning: "lengths in which sections are bought; recorded", Example: "12 m; 15 m"}, notes: []string{"m", "ft", "mm"}, hints: []string{"stock"}},
-	jobClass:      {Column: Column{Header: "Estimate class", Accepts: "5 to 1", Meaning: "class by maturity of definition, 5 the least defined; blank is 5", Blank: "5", Example: "5"}, hints: []string{"class"}, choices: list("5", "4", "3", "2", "1")},
-	jobCurrency:   {Column: Column{Header: "Currency", Accepts: "an ISO 4217 code", Meaning: "currency of the estimate; blank is EUR", Blank: "EUR", Example: "EUR"}},
-	jobBaseDate:   {Column: Column{Header: "Base date", Accepts: "yyyy-mm-dd or a date cell", Meaning: "date of the money; blank takes that of the rate book", Blank: "that of the rate book", Example: "2026-01-01"}, hints: []string{"date", "price date"}},
+	jobCoating:    {Column: Column{Header: "Coating", Meaning: "coating system; a rate book that prices systems names them", Example: "C5, three coats"}, hints: []string{"paint", "painting"}},
+	jobExecution:  {Column: Column{Header: "Execution class", Accepts: strings.Join(ExecutionClasses(), ", "), Meaning: "execution class: EN 1090-2, or AISC 360 chapter N with AWS D1.1, statically or cyclically loaded", Example: "EXC2"}, hints: []string{"exc", "inspection class"}, choices: ExecutionClasses},
+	jobStock: {Column: Column{Header: "Stock lengths (m)", Unit: "m", Meaning: `lengths in which sections are bought, parted by ";"`, Blank: "none: no cutting plan", Example: "12; 15"},
+		dimensions: []unit.Dimension{unit.Length}, hints: []string{"stock", "bar lengths", "stock bars"}},
+	jobKerf: {Column: Column{Header: "Kerf (mm)", Unit: "mm", Meaning: "width of a saw cut in the cutting plan", Blank: "5 mm where there are stock lengths", Example: "5"},
+		dimensions: []unit.Dimension{unit.Length}, hints: []string{"saw cut", "cut width", "blade"}},
+	jobPurchase: {Column: Column{Header: "Purchase", Accepts: strings.Join(purchases(), ", "), Meaning: "how purchased mass follows: by the waste allowance, or by a cutting plan from the stock lengths, first fit or the least stock", Blank: "waste", Example: "first fit"},
+		hints: []string{"cutting plan", "buying", "waste"}, choices: purchases},
+	jobClass:    {Column: Column{Header: "Estimate class", Accepts: "5 to 1", Meaning: "class by maturity of definition, 5 the least defined; blank is that of the sheet Definition, else 5", Blank: "by the sheet Definition, else 5", Example: "5"}, hints: []string{"class"}, choices: list("5", "4", "3", "2", "1")},
+	jobCurrency: {Column: Column{Header: "Currency", Accepts: "an ISO 4217 code", Meaning: "currency of the estimate; blank is EUR", Blank: "EUR", Example: "EUR"}},
+	jobBaseDate: {Column: Column{Header: "Base date", Accepts: "yyyy-mm-dd or a date cell", Meaning: "date of the money; blank takes that of the rate book", Blank: "that of the rate book", Example: "2026-01-01"}, hints: []string{"date", "price date"}},
 	jobConfidence: {Column: Column{Header: "Confidence", Accepts: "0.8, 80 % or P80", Meaning: "probability that the contingency reaches; blank is 0.8", Blank: "P80", Example: "P80"},
 		dimensions: []unit.Dimension{unit.Percent}, hints: []string{"percentile", "confidence level", "p"}, choices: list("P50", "P70", "P80", "P90")},
 	jobWindSpeed: {Column: Column{Header: "Wind speed (m/s)", Unit: "m/s", Accepts: "m/s or mph", Meaning: "basic wind speed of the site for the load set wind: 10 min mean (EN 1991), 3 s gust (ASCE 7) in the AISC bases", Example: "26"},
@@ -213,6 +232,20 @@ var jobKeys = [jobCount]definition{
 		hints: []string{"terrain category", "exposure", "exposure category"}, choices: terrainNames},
 	jobGroundSnow: {Column: Column{Header: "Ground snow (kN/m²)", Unit: "kN/m²", Meaning: "characteristic snow load on the ground for the load set snow", Example: "1.2"},
 		dimensions: []unit.Dimension{unit.AreaLoad}, hints: []string{"snow", "snow load"}},
+	jobMoney: {Column: Column{Header: "Money", Accepts: strings.Join(moneys(), ", "), Meaning: "money of the estimate: that of the base date, or outturn, escalated to the spend date", Blank: "base date", Example: "base date"},
+		hints: []string{"price basis", "money basis", "escalation"}, choices: moneys},
+	jobSpendDate: {Column: Column{Header: "Spend date", Accepts: "yyyy-mm-dd or a date cell", Meaning: "mid-point of spending, for outturn money; not before the base date", Example: "2027-06-30"},
+		hints: []string{"spending date", "midpoint", "mid-point of spending"}},
+	jobConditions: {Column: Column{Header: "Site conditions", Accepts: "one or more of " + strings.Join(SiteConditions(), ", ") + `, parted by ";"`, Meaning: "what makes erection dearer on this site", Blank: "none", Example: "over water; tidal"},
+		hints: []string{"site", "conditions", "erection conditions"}, choices: SiteConditions},
+	jobHaul: {Column: Column{Header: "Haul distance (km)", Unit: "km", Accepts: "km, mi or m", Meaning: "way from shop to site", Example: "120"},
+		notes: []string{"km"}, hints: []string{"haul", "distance", "transport distance", "freight distance"}},
+	jobTax: {Column: Column{Header: "Tax (%)", Unit: "%", Meaning: "rate of a tax line beside the estimate, outside the base", Blank: "no tax line", Example: "20"},
+		dimensions: []unit.Dimension{unit.Percent}, hints: []string{"vat", "sales tax", "tax rate"}},
+	jobOwner: {Column: Column{Header: "Owner's costs", Accepts: "yes, no", Meaning: "whether the owner's own costs are priced; else they are listed as excluded", Blank: "no", Example: "no"},
+		hints: []string{"owner", "client costs"}, choices: list("no", "yes")},
+	jobReserve: {Column: Column{Header: "Management reserve", Accepts: "an amount of 0 or more", Meaning: "money in the job's currency, outside the range, held by who approves", Blank: "none", Example: "150000"},
+		hints: []string{"reserve"}},
 }
 
 // name is the header without its brackets.

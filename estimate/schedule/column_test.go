@@ -9,7 +9,7 @@ import (
 
 // What documentation and template show is what the reader reads.
 func TestHeadersAreRead(t *testing.T) {
-	for name, list := range map[string][]definition{"columns": columns[:], "keys": jobKeys[:]} {
+	for name, list := range map[string][]definition{"columns": columns[:], "keys": jobKeys[:], "definition": definitionHeads[:], "risks": riskHeads[:]} {
 		for i, d := range list {
 			for _, text := range []string{d.Header, strings.ToUpper(d.name()), " " + strings.ReplaceAll(d.name(), " ", "  ")} {
 				if h := readHeading(text, list); h.wrong != nil || h.id != i {
@@ -28,7 +28,7 @@ func TestHeadersAreRead(t *testing.T) {
 
 // No hint is the name of another column, and none stands for two.
 func TestHintsAreUnambiguous(t *testing.T) {
-	for name, list := range map[string][]definition{"columns": columns[:], "keys": jobKeys[:]} {
+	for name, list := range map[string][]definition{"columns": columns[:], "keys": jobKeys[:], "definition": definitionHeads[:], "risks": riskHeads[:]} {
 		seen := map[string]string{}
 		for _, d := range list {
 			for _, hint := range d.hints {
@@ -47,11 +47,20 @@ func TestUnitsOfHeaders(t *testing.T) {
 		"Length (mm)": "mm", "length[FT]": "ft", "LENGTH, in": "in", "Length  ( m )": "m",
 		"Axial load (kN, compression +)": "kN", "Axial load (compression +, kip)": "kip", "Axial load (compression +)": "",
 		"Permanent load (plf)": "plf", "Area load (psf)": "psf", "Mass if not sized (kg/m or kg/m²)": "", "Mass if not sized (lb/ft)": "lb/ft",
-		"Mass if not sized (kg/m2)": "kg/m²", "Quantity (pcs)": "", "Deflection limit (L/n)": "",
+		"Mass if not sized (kg/m2)": "kg/m²", "Length (')": "ft", "Quantity (#)": "", "Quantity (pcs)": "", "Deflection limit (L/n)": "",
 	} {
 		h := readHeading(text, columns[:])
 		if h.wrong != nil || h.unit.Symbol != want {
 			t.Errorf("%q: unit %q, fault %v; want %q", text, h.unit.Symbol, h.wrong, want)
+		}
+	}
+}
+
+// A percentage in a key's brackets is its unit.
+func TestPercentOfHeaders(t *testing.T) {
+	for _, text := range []string{"Tax (%)", "Confidence (%)"} {
+		if h := readHeading(text, jobKeys[:]); h.wrong != nil || h.unit.Symbol != "%" {
+			t.Errorf("%q: unit %q, fault %v; want %%", text, h.unit.Symbol, h.wrong)
 		}
 	}
 }

@@ -51,9 +51,19 @@ func connectionClasses() []string {
 	return []string{simpleBeams, trestles, lattice, tubeBooms, noClass}
 }
 
-// classOf is the connection class of a kind.
-func classOf(kind string) string {
+// The classes of secondary steel, which only some rate books have.
+const (
+	platforms = "platforms"
+	stairs    = "stairs and rails"
+)
+
+// classOf is the connection class of a kind, among those that the rate book knows.
+func classOf(kind string, known []string) string {
 	switch {
+	case hasWord(kind, "stair", "stairs", "ladder", "handrail", "rail", "railing") && slices.Contains(known, stairs):
+		return stairs
+	case hasWord(kind, "platform", "grating", "walkway", "flooring") && slices.Contains(known, platforms):
+		return platforms
 	case hasWord(kind, "boom"):
 		return tubeBooms
 	case hasWord(kind, "column", "post", "leg", "tower", "trestle"):
@@ -131,6 +141,10 @@ func (d *defaults) group() string {
 
 func (d *defaults) simple() string {
 	return d.byValue("support", simple, "", "Members whose support is blank are simply supported at both ends.", assumption.Low)
+}
+
+func (d *defaults) foundation() string {
+	return d.byValue("support", notSized, "", "Rows of kind foundation whose support is blank are not sized.", assumption.Medium)
 }
 
 func (d *defaults) kind(kind, arrangement string) string {

@@ -37,7 +37,7 @@ func TestDefaultsEnterTheRegister(t *testing.T) {
 		"default/confidence", "default/connection class/simple beams", "default/connection class/trestles", "default/connection class/tube booms",
 		"default/currency", "default/deflection limit/100", "default/deflection limit/250", "default/design basis", "default/estimate class",
 		"default/factor", "default/grade/A53 B", "default/grade/S235", "default/group/ungrouped", "default/kind/beam", "default/kind/cantilever",
-		"default/length factor/1 for spans, 2 for free ends", "default/load/walkway deck/0.48", "default/load/walkway people/3.6", "default/restraint/full span",
+		"default/length factor/1 for spans, 2 for free ends", "default/load/walkway deck/0.48", "default/load/walkway people/3.6", "default/money", "default/owner costs", "default/purchase", "default/restraint/full span", "default/support/not sized",
 	}
 	if diff := cmp.Diff(want, ids); diff != "" {
 		t.Errorf("ids (-want +got):\n%s", diff)
@@ -154,7 +154,7 @@ func TestKindsDecide(t *testing.T) {
 		"top chord":     {"lattice", 250, false},
 		"gallery":       {"simple beams", 250, false},
 	} {
-		if got := classOf(kind); got != want.class {
+		if got := classOf(kind, connectionClasses()); got != want.class {
 			t.Errorf("%s: class %s, want %s", kind, got, want.class)
 		}
 		if got := limitOf(kind); got != want.limit {
@@ -167,7 +167,11 @@ func TestKindsDecide(t *testing.T) {
 }
 
 func TestInputFeeds(t *testing.T) {
-	noFigure := map[string]bool{"input/max depth": true, "input/same size as": true} // they bound the choice
+	// They bound a choice, move it in steps, or stand outside base and range.
+	noFigure := map[string]bool{
+		"input/max depth": true, "input/same size as": true, "input/stock lengths": true, "input/kerf": true,
+		"input/spend date": true, "input/management reserve": true,
+	}
 	byID := map[string][]string{}
 	for _, e := range InputFeeds() {
 		if e.Kind != assumption.Input || e.Statement == "" || e.Source == "" || len(e.Feeds) == 0 != noFigure[e.ID] {
@@ -181,8 +185,9 @@ func TestInputFeeds(t *testing.T) {
 	for id, want := range map[string][2]bool{ // checks, base
 		"input/length": {true, true}, "input/quantity": {false, true}, "input/variable load": {true, false},
 		"input/axial load": {true, false}, "input/mass if not sized": {false, true}, "input/confidence": {false, false},
+		"input/joints": {false, true}, "input/concrete": {false, true}, "input/haul distance": {false, true}, "input/risk amount": {false, false},
 	} {
-		if got := [2]bool{hasCheck(id), slices.Contains(byID[id], "base")}; got != want {
+		if got := [2]bool{hasCheck(id), slices.ContainsFunc(byID[id], func(f string) bool { return f == "base" || strings.HasPrefix(f, "quantities[") })}; got != want {
 			t.Errorf("%s feeds checks and base: %v, want %v", id, got, want)
 		}
 	}
@@ -193,5 +198,15 @@ func TestDefaultsAreShared(t *testing.T) {
 	s.Members[0].Defaults["probe"] = "x"
 	if s.Members[1].Defaults["probe"] != "x" {
 		t.Error("equal defaults are held twice")
+	}
+}
+
+// Secondary steel has classes of its own where the rate book knows them.
+func TestClassesOfSecondarySteel(t *testing.T) {
+	wide := append(connectionClasses(), platforms, stairs)
+	for kind, want := range map[string][2]string{"handrail": {simpleBeams, stairs}, "stair": {simpleBeams, stairs}, "grating": {simpleBeams, platforms}, "boom": {tubeBooms, tubeBooms}, "beam": {simpleBeams, simpleBeams}} {
+		if got := [2]string{classOf(kind, connectionClasses()), classOf(kind, wide)}; got != want {
+			t.Errorf("%s: got %v, want %v", kind, got, want)
+		}
 	}
 }

@@ -1,6 +1,7 @@
 // Package schedule reads the member list of a scheme.
 //
-//	sheet.Book or JSON → cells → Job sheet → Settings, what is blank filled in
+//	sheet.Book or JSON → cells → sheet Definition → checklist, for the estimate class
+//	Job sheet → Settings, what is blank filled in; sheet Risks → Risks, sorted
 //	header row → layout: which column means what, in which unit
 //	each row → fields (text, quantities in SI) → Member, or faults by cell
 //	load sets → ready loads in blank cells; marks of one size tied

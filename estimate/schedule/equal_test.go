@@ -59,6 +59,7 @@ func TestSameInOtherUnits(t *testing.T) {
 	rows = convert(t, rows, "kN/m", "kip/ft", kipInKN/footInMetres)
 	rows = convert(t, rows, "kN", "kip", kipInKN)
 	rows = convert(t, rows, "kN/m²", "ksf", kipInKN/footInMetres/footInMetres)
+	rows = convert(t, rows, "m³", "yd³", 27*footInMetres*footInMetres*footInMetres)
 	if rows[1][3] == "6" || rows[1][5] == "2.5" || rows[7][17] == "0 fixed; 28; 42" {
 		t.Fatalf("the test converts nothing: %q", rows[1])
 	}
@@ -207,7 +208,7 @@ func TestSameAsJSON(t *testing.T) {
 func TestAnyCellContent(t *testing.T) {
 	texts := rapid.OneOf(
 		rapid.String(), rapid.StringMatching(`-?[0-9]{1,3}([.,][0-9]{1,3})? ?(m|ft|kN|kN/m|kip/ft|ton|kg/m)?`),
-		rapid.SampledFrom([]string{"", "NaN", "Inf", "1e308", "-0", "0", "6/12", "fixed", "; ;", "0 fixed fixed", "L/", "P", "%", "=1+1", "IPE", "#N/A", "null"}),
+		rapid.SampledFrom([]string{"", "NaN", "Inf", "1e308", "-0", "0", "6/12", "fixed", "; ;", "0 fixed fixed", "2 moment; 1 pinned", "; 3 moment", "12; ; 15 m", "yes", "over water;", "L/", "P", "%", "=1+1", "IPE", "#N/A", "null"}),
 		rapid.StringMatching(`[A-Za-z ]{0,8} ?[\(\[][a-z/²,+ ]{0,6}[\)\]]`),
 	)
 	rapid.Check(t, func(rt *rapid.T) {
@@ -218,6 +219,9 @@ func TestAnyCellContent(t *testing.T) {
 			rows[i][j] = texts.Draw(rt, "text")
 		}
 		settings := [][]string{{"Key", "Value"}, {"Factor", texts.Draw(rt, "factor")}, {"Confidence", texts.Draw(rt, "confidence")}, {texts.Draw(rt, "key"), "1"}}
+		for _, key := range []string{"Stock lengths (m)", "Kerf", "Purchase", "Money", "Spend date", "Site conditions", "Haul distance", "Tax (%)", "Owner's costs", "Management reserve"} {
+			settings = append(settings, []string{key, texts.Draw(rt, key)})
+		}
 		check := func(s Schedule, err error) {
 			if err == nil && len(s.Members) == 0 {
 				rt.Fatal("neither members nor faults")

@@ -40,7 +40,7 @@ func columnOf(t *testing.T, header string) int {
 
 // Rows of everyColumn.
 const (
-	rowB10, rowB2, rowB3, rowB5, rowB7, rowB8, rowBM1, rowC1, rowG1, rowH1 = 2, 3, 4, 6, 8, 9, 10, 11, 12, 13
+	rowB10, rowB2, rowB3, rowB5, rowB7, rowB8, rowBM1, rowC1, rowF1, rowG1, rowH1 = 2, 3, 4, 6, 8, 9, 10, 11, 12, 13, 14
 )
 
 func TestOneFaultInOneCell(t *testing.T) {
@@ -173,6 +173,22 @@ func TestOneFaultInOneCell(t *testing.T) {
 		{change{rowB2, "Same size", "B6"}, "asks for a choice", "family"},
 		{change{rowG1, "Same size", "B6"}, "not sized", "blank"},
 		{change{rowB10, "Execution", "EXC5"}, "no execution class", "EXC3"},
+		{change{rowB10, "Execution", "AISC cylic"}, "no execution class", "AISC cyclic"},
+		{change{rowB10, "Joints", "2 momant"}, "no kind of joint: momant", "did you mean moment"},
+		{change{rowB10, "Joints", "2 welded"}, "no kind of joint: welded", "flanged tube"},
+		{change{rowB10, "Joints", "0 moment"}, "whole number from 1", "2 moment; 4 pinned"},
+		{change{rowB10, "Joints", "-2 moment"}, "whole number from 1", "2 moment; 4 pinned"},
+		{change{rowB10, "Joints", "2.5 moment"}, "whole number from 1", "2 moment; 4 pinned"},
+		{change{rowB10, "Joints", "10001 moment"}, "whole number from 1", "2 moment; 4 pinned"},
+		{change{rowB10, "Joints", "moment"}, "whole number from 1", "2 moment; 4 pinned"},
+		{change{rowB10, "Joints", "2"}, "names no kind", "2 moment; 4 pinned"},
+		{change{rowB10, "Joints", "2 moment; 4 pinned; 1 Moment"}, "second count of moment", "one count of each kind"},
+		{change{rowF1, "Concrete", ""}, "a foundation needs its concrete", "Mass if not sized"},
+		{change{rowF1, "Concrete", "-1"}, "out of bounds", "100,000 m³"},
+		{change{rowF1, "Concrete", "2.4 t"}, "t is a mass", "m³"},
+		{change{rowF1, "Length", "-1"}, "out of bounds", "from 0"},
+		{change{rowF1, "Variable", "4"}, "load on a row that is not sized", "blank"},
+		{change{rowG1, "Length", "0"}, "out of bounds", "above 0"},
 		{change{rowB10, "Joints", strings.Repeat("x", 501)}, "501 characters", "500"},
 		{change{rowB10, "Description", strings.Repeat("x", 501)}, "501 characters", "500"},
 	} {

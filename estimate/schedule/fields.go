@@ -11,8 +11,7 @@ import (
 type fields struct {
 	mark, group, kind, description, remarks text
 	support, product, grade, connection     text
-	joints, coating, execution, loadSet     text
-	sameSize                                text
+	coating, execution, loadSet, sameSize   text
 
 	quantity      int
 	quantityState state
@@ -22,12 +21,15 @@ type fields struct {
 	horizontal, overhang, restraint        number
 	factor, limit, frequency, depth        number
 	momentFactor, netArea                  number
-	mass, area                             number
+	mass, area, concrete                   number
 	massByArea                             bool // mass is per m²
 
 	moving      train
 	movingState state
 	dynamic     dynamics
+
+	joints      []Joint
+	jointsState state
 
 	supports      []Support // of Support positions
 	supportsState state
@@ -175,9 +177,8 @@ func (r *row) readFields() fields {
 		description: r.text(colDescription, longestText), remarks: r.text(colRemarks, longestText),
 		support: r.text(colSupport, longestName), product: r.text(colProduct, longestName),
 		grade: r.text(colGrade, longestName), connection: r.text(colConnection, longestName),
-		joints: r.text(colJoints, longestText), coating: r.text(colCoating, longestText),
+		coating:   r.text(colCoating, longestText),
 		execution: r.text(colExecution, longestName), loadSet: r.text(colLoadSet, longestName), sameSize: r.text(colSameSize, longestName),
-		length:       r.quantity(colLength, unit.Length, lengths),
 		permanent:    r.quantity(colPermanent, unit.LineLoad, loads),
 		variable:     r.quantity(colVariable, unit.LineLoad, loads),
 		point:        r.quantity(colPoint, unit.Force, loads),
@@ -192,7 +193,10 @@ func (r *row) readFields() fields {
 		momentFactor: r.quantity(colMoment, unit.Number, momentFactors),
 		netArea:      r.quantity(colNet, unit.Number, netFactors),
 		area:         r.quantity(colArea, unit.Area, areas),
+		concrete:     r.quantity(colConcrete, unit.Volume, concretes),
 	}
+	f.length = r.quantity(colLength, unit.Length, f.lengthBounds())
+	f.joints, f.jointsState = r.joints()
 	f.quantity, f.quantityState = r.quantityOfPieces()
 	f.restraint = r.restraint()
 	f.limit = r.limit()

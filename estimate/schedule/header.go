@@ -134,7 +134,8 @@ func (h *heading) readUnits(text, inner string, d definition) {
 func (d definition) noted(part string) bool {
 	key := fold(part)
 	if key == "" {
-		return true
+		_, err := unit.Lookup(strings.TrimSpace(part))
+		return err != nil // signs alone say nothing, but for % and the marks of feet and inches
 	}
 	for _, n := range d.notes {
 		if n == key || fold(n) == key {

@@ -14,25 +14,33 @@ import (
 
 // Names of the parts of a JSON schedule; faults bear them as their sheet.
 const (
-	jsonRows = "rows"
-	jsonJob  = "job"
+	jsonRows       = "rows"
+	jsonJob        = "job"
+	jsonDefinition = "definition"
+	jsonRisks      = "risks"
 )
 
 // mostKeys bounds the different keys of the rows: far more than there are columns.
 const mostKeys = 200
 
-// nestedKind marks a JSON array or object where a single value is wanted.
+// nestedKind marks a JSON array or object; most cells want a single value.
 const nestedKind sheet.Kind = 254
+
+// longestNested is how many bytes of an array or object are kept.
+const longestNested = 10_000
 
 // ReadJSON reads a schedule posted as JSON:
 //
-//	{"rows": [{"Mark": "B1", "Quantity": 2, "Length (m)": 6, …}], "job": {"Grade": "S355"}}
+//	{"rows": [{"Mark": "B1", "Quantity": 2, "Length (m)": 6, …}], "job": {"Grade": "S355"},
+//	 "definition": [{"Item": "member sizes", "State": "preliminary"}],
+//	 "risks": [{"Risk": "piles meet rock", "Probability (%)": 20, "Likely": 45000}]}
 //
 // Keys are the headers of the columns and the keys of the Job sheet, each spelled
-// alike in all rows. The rules are those of Read; a key that is unknown or stands
-// twice in one object is a fault. A fault's address has "rows" or "job" as its
-// sheet, the row counted from 1, and the key as its header. Text that is no JSON of
-// this form is another error that says where.
+// alike in all rows of a list. Joints may also be a list of objects of kind and count.
+// The rules are those of Read; a key that is unknown or stands twice in one object is
+// a fault. A fault's address has the name of the part as its sheet, the row counted
+// from 1, and the key as its header. Text that is no JSON of this form is another error
+// that says where.
 func ReadJSON(ctx context.Context, data []byte, o Options) (Schedule, error) {
 	r := newReader(o)
 	r.jsonKeys = true
@@ -40,22 +48,44 @@ func ReadJSON(ctx context.Context, data []byte, o Options) (Schedule, error) {
 	if err := t.survey(ctx, data); err != nil {
 		return Schedule{}, fmt.Errorf("reading the schedule as JSON: %w", err)
 	}
-	if t.job && o.JobTable != nil {
-		return Schedule{}, errors.New("the posting has a job and a job table is given as well; accepted is one of them")
-	}
-	r.address = func(row, _ int) sheet.Address { return sheet.Address{Sheet: jsonRows, Row: row} }
-	inJob := func(int, int) sheet.Address { return sheet.Address{Sheet: jsonJob} }
-	rows, comma := jobRows(t.jobRows), false
-	if o.JobTable != nil {
-		var err error
-		if rows, comma, err = openJobTable(o.JobTable); err != nil {
-			return Schedule{}, err
-		}
-	}
-	if err := r.readJob(ctx, rows, comma, inJob, o); err != nil {
+	parts, err := t.beside(o)
+	if err != nil {
 		return Schedule{}, err
 	}
+	if err := r.readBeside(ctx, parts, o); err != nil {
+		return Schedule{}, err
+	}
+	r.address = func(row, _ int) sheet.Address { return sheet.Address{Sheet: jsonRows, Row: row} }
 	return r.finish(t.rows(ctx, data))
+}
+
+// beside finds where each part beside the rows comes from.
+func (t *table) beside(o Options) ([len(besides)]annexSource, error) {
+	inJob := func(int, int) sheet.Address { return sheet.Address{Sheet: jsonJob} }
+	parts := [len(besides)]annexSource{besideJob: {rows: t.jobRows, place: inJob}}
+	for i, l := range []*jsonList{besideDefinition: t.definition, besideRisks: t.risks} {
+		if l != nil {
+			parts[i] = annexSource{rows: l.each, place: l.place}
+		}
+	}
+	for i, given := range [len(besides)]bool{t.job, t.definition != nil, t.risks != nil} {
+		data := [len(besides)][]byte{o.JobTable, o.DefinitionTable, o.RiskTable}[i]
+		switch {
+		case data == nil:
+			continue
+		case given:
+			return parts, errBoth(besides[i])
+		}
+		s, err := openTable(data, besides[i])
+		if err != nil {
+			return parts, err
+		}
+		if i == besideJob {
+			s.place = inJob
+		}
+		parts[i] = s
+	}
+	return parts, nil
 }
 
 // table turns JSON objects into rows of cells: one column for each key.
@@ -66,6 +96,8 @@ type table struct {
 	first    []int          // row in which each key stands first
 	settings [][]sheet.Cell // of the job object
 	job      bool
+
+	definition, risks *jsonList // nil where the posting has none
 }
 
 // survey checks the form of the whole text, collects the keys and the job.
@@ -93,8 +125,14 @@ func (t *table) survey(ctx context.Context, data []byte) error {
 				t.settings = append(t.settings, []sheet.Cell{{Column: 1, Kind: sheet.Text, Text: key}, c})
 				return err
 			})
+		case jsonDefinition:
+			t.definition = newJSONList(jsonDefinition)
+			return t.definition.survey(ctx, t.reader, d)
+		case jsonRisks:
+			t.risks = newJSONList(jsonRisks)
+			return t.risks.survey(ctx, t.reader, d)
 		}
-		return fmt.Errorf("the key %q is not known; accepted are %q and %q", shorten(key), jsonRows, jsonJob)
+		return fmt.Errorf("the key %q is not known; accepted are %q, %q, %q and %q", shorten(key), jsonRows, jsonJob, jsonDefinition, jsonRisks)
 	})
 	if err != nil {
 		return fmt.Errorf("at byte %d: %w", d.InputOffset(), err)
@@ -251,7 +289,7 @@ func readValue(d *json.Decoder) (sheet.Cell, error) {
 		}
 		return sheet.Cell{Kind: sheet.Text, Text: s}, nil
 	case '{', '[':
-		return sheet.Cell{Kind: nestedKind, Text: shorten(string(raw[:min(len(raw), 200)]))}, nil
+		return sheet.Cell{Kind: nestedKind, Text: string(raw[:min(len(raw), longestNested)])}, nil
 	case 'n':
 		return sheet.Cell{}, nil
 	case 't', 'f':

@@ -62,7 +62,7 @@ func TestRefusedJSON(t *testing.T) {
 		{`{"rows":[` + oneRow + `]`, "EOF"},
 		{`{"rows":[` + oneRow + `]} {}`, "follows the end"},
 		{`{"rows":[],"rows":[]}`, "stands twice"},
-		{`{"members":[]}`, `not known; accepted are "rows" and "job"`},
+		{`{"members":[]}`, `not known; accepted are "rows", "job", "definition" and "risks"`},
 		{`{"rows":[{"Mark":tru}]}`, "invalid character"},
 		{`{"rows":[{` + manyKeys(201) + `}]}`, "more than 200 different keys"},
 	} {

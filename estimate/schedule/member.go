@@ -2,6 +2,7 @@ package schedule
 
 import (
 	"spanwright/estimate/assumption"
+	"spanwright/estimate/money"
 	"spanwright/estimate/sheet"
 )
 
@@ -65,11 +66,12 @@ type Member struct {
 	LoadSet         string    `json:"load_set,omitempty"`           // ready loads that filled blank cells
 	LineMass        float64   `json:"line_mass_kg_m,omitempty"`     // rows that are not sized
 	AreaMass        float64   `json:"area_mass_kg_m2,omitempty"`
-	Area            float64   `json:"area_m2,omitempty"` // of one piece
-	Joints          string    `json:"joints,omitempty"`  // recorded
+	Area            float64   `json:"area_m2,omitempty"`     // of one piece
+	Joints          []Joint   `json:"joints,omitempty"`      // of one piece, sorted by kind; they replace the allowance of the connection class
+	Concrete        float64   `json:"concrete_m3,omitempty"` // of one piece
 	ConnectionClass string    `json:"connection_class"`
-	Coating         string    `json:"coating,omitempty"`         // recorded, where not that of the job
-	ExecutionClass  string    `json:"execution_class,omitempty"` // recorded, where not that of the job
+	Coating         string    `json:"coating,omitempty"`         // where not that of the job
+	ExecutionClass  string    `json:"execution_class,omitempty"` // one of ExecutionClasses, where not that of the job
 	Remarks         string    `json:"remarks,omitempty"`
 
 	// Defaults names the register entries whose value this row took, by field.
@@ -81,25 +83,36 @@ type Member struct {
 // Settings are the job's own defaults: the Job sheet, with what it leaves blank
 // filled in.
 type Settings struct {
-	Project         string  `json:"project"`
-	Scheme          string  `json:"scheme"`
-	DesignBasis     string  `json:"design_basis" enum:"allowable,en1993,aisc-asd,aisc-lrfd"`
-	Factor          float64 `json:"factor"` // on yield, design basis allowable; 0 in the others
-	Grade           string  `json:"grade"`
-	DeflectionLimit float64 `json:"deflection_limit"`             // n of length / n
-	FrequencyFloor  float64 `json:"frequency_floor_hz,omitempty"` // 0 = no check
-	Restraint       float64 `json:"restraint_m"`                  // 0 = full span
-	ConnectionClass string  `json:"connection_class,omitempty"`
-	Coating         string  `json:"coating,omitempty"`         // recorded; the ratio book prices coating as one multiple
-	ExecutionClass  string  `json:"execution_class,omitempty"` // recorded; the ratio book prices inspection as one multiple
-	StockLengths    string  `json:"stock_lengths,omitempty"`   // recorded for the purchase
-	EstimateClass   int     `json:"estimate_class"`            // 5 to 1
-	Currency        string  `json:"currency"`
-	BaseDate        string  `json:"base_date"` // yyyy-mm-dd
-	Confidence      float64 `json:"confidence"`
-	WindSpeed       float64 `json:"wind_speed_m_s,omitempty"`   // of the site, for ready loads
-	Terrain         string  `json:"terrain,omitempty"`          // category or exposure, for ready loads
-	GroundSnow      float64 `json:"ground_snow_n_m2,omitempty"` // for ready loads
+	Project         string    `json:"project"`
+	Scheme          string    `json:"scheme"`
+	DesignBasis     string    `json:"design_basis" enum:"allowable,en1993,aisc-asd,aisc-lrfd"`
+	Factor          float64   `json:"factor"` // on yield, design basis allowable; 0 in the others
+	Grade           string    `json:"grade"`
+	DeflectionLimit float64   `json:"deflection_limit"`             // n of length / n
+	FrequencyFloor  float64   `json:"frequency_floor_hz,omitempty"` // 0 = no check
+	Restraint       float64   `json:"restraint_m"`                  // 0 = full span
+	ConnectionClass string    `json:"connection_class,omitempty"`
+	Coating         string    `json:"coating,omitempty"`                           // a system of the rate book; the ratio book prices coating as one multiple
+	ExecutionClass  string    `json:"execution_class,omitempty"`                   // one of ExecutionClasses; the ratio book prices inspection as one multiple
+	StockLengths    []float64 `json:"stock_lengths_m,omitempty"`                   // in which sections are bought, ascending
+	Kerf            float64   `json:"kerf_m"`                                      // of a saw cut; of use where there are stock lengths
+	Purchase        string    `json:"purchase" enum:"waste,first fit,least stock"` // how purchased mass follows from delivered mass
+	EstimateClass   int       `json:"estimate_class"`                              // 5 to 1
+	Currency        string    `json:"currency"`
+	BaseDate        string    `json:"base_date"` // yyyy-mm-dd
+	Confidence      float64   `json:"confidence"`
+	WindSpeed       float64   `json:"wind_speed_m_s,omitempty"`   // of the site, for ready loads
+	Terrain         string    `json:"terrain,omitempty"`          // category or exposure, for ready loads
+	GroundSnow      float64   `json:"ground_snow_n_m2,omitempty"` // for ready loads
+
+	Money             string            `json:"money" enum:"base date,outturn"`
+	SpendDate         string            `json:"spend_date,omitempty"`        // yyyy-mm-dd, the mid-point of spending; not before the base date where both are given
+	SiteConditions    []string          `json:"site_conditions,omitempty"`   // of SiteConditions, in their order
+	HaulDistance      float64           `json:"haul_m,omitempty"`            // from shop to site
+	TaxRate           float64           `json:"tax_fraction,omitempty"`      // of the optional tax line, outside the base
+	OwnerCosts        bool              `json:"owner_costs,omitempty"`       // the owner's costs are priced
+	ManagementReserve money.Decimal     `json:"management_reserve,omitzero"` // in the job's currency, outside the range
+	Definition        []DefinitionEntry `json:"definition,omitempty"`        // in the order of DefinitionItems
 }
 
 // Echo is what a posted schedule says in total, shown before it is accepted.
@@ -125,11 +138,26 @@ type EchoGroup struct {
 	Tonnes float64 `json:"tonnes"`
 }
 
-// Schedule is what was read: members sorted by mark, settings, the register
-// entries of every default taken, and what may have been forgotten.
+// The ways to purchased mass, as they stand in Settings.Purchase.
+const (
+	PurchaseWaste      = "waste"       // delivered mass with the waste allowance of its form
+	PurchaseFirstFit   = "first fit"   // cutting plan: the longest pieces first, each in the first bar that takes it
+	PurchaseLeastStock = "least stock" // cutting plan by column generation
+)
+
+// The moneys of an estimate, as they stand in Settings.Money.
+const (
+	MoneyBaseDate = "base date" // prices of the base date
+	MoneyOutturn  = "outturn"   // prices carried on to the spend date
+)
+
+// Schedule is what was read: members sorted by mark, settings, risks sorted by
+// name, the register entries of every default taken, and what may have been
+// forgotten.
 type Schedule struct {
 	Settings  Settings
 	Members   []Member
+	Risks     []Risk
 	Defaults  []assumption.Entry
 	Omissions []string
 	Echo      Echo

@@ -21,6 +21,9 @@ type Options struct {
 	Overrides map[string]string
 	// JobTable is a CSV of Key,Value for a posting that has no Job sheet.
 	JobTable []byte
+	// DefinitionTable and RiskTable are CSV of the columns of DefinitionColumns and
+	// RiskColumns for a posting that has no sheet Definition or Risks.
+	DefinitionTable, RiskTable []byte
 	// ConnectionClasses are those of the rate book; nil stands for the starting book's.
 	ConnectionClasses []string
 }
@@ -41,6 +44,9 @@ type reader struct {
 	job      jobSettings
 	classes  []string
 	defaults *defaults
+
+	definition []DefinitionEntry
+	risks      []Risk
 
 	members    []Member
 	rows       int
@@ -75,78 +81,51 @@ func newReader(o Options) *reader {
 	return r
 }
 
-// Read reads a schedule and its Job sheet. The schedule is the sheet named
-// Schedule, else the only one besides Job. What is wrong with it comes as
-// sheet.Faults, all at once, sorted by cell; other errors are those of the file
-// (*sheet.OpenError) and of the context.
+// Read reads a schedule, its Job sheet, its definition checklist and its risks. The
+// schedule is the sheet named Schedule, else the only one besides Job, Definition and
+// Risks. What is wrong with it comes as sheet.Faults, all at once, sorted by cell;
+// other errors are those of the file (*sheet.OpenError) and of the context.
 func Read(ctx context.Context, book *sheet.Book, o Options) (Schedule, error) {
 	r := newReader(o)
 	r.comma = book.DecimalComma()
-	name, job, found := pickSheets(book.Sheets())
+	at, found := pickSheets(book.Sheets())
 	if found != nil {
 		return Schedule{}, sheet.Faults{*found}
 	}
-	rows, comma, jobName := jobRows(nil), r.comma, job
-	switch {
-	case job != "" && o.JobTable != nil:
-		return Schedule{}, errors.New("the workbook has a Job sheet and a job table is given as well; accepted is one of them")
-	case job != "":
-		rows = func(ctx context.Context, fn func(int, []sheet.Cell) error) error { return book.Rows(ctx, job, fn) }
-	case o.JobTable != nil:
+	r.faults = append(r.faults, misnamed(book.Sheets(), at)...)
+	var parts [len(besides)]annexSource
+	for i, table := range [len(besides)][]byte{o.JobTable, o.DefinitionTable, o.RiskTable} {
 		var err error
-		if rows, comma, err = openJobTable(o.JobTable); err != nil {
+		if parts[i], err = openBeside(book, at.beside[i], besides[i], table); err != nil {
 			return Schedule{}, err
 		}
-		jobName = "Job"
 	}
-	if err := r.readJob(ctx, rows, comma, placeOn(jobName), o); err != nil {
+	if err := r.readBeside(ctx, parts, o); err != nil {
 		return Schedule{}, err
 	}
-	r.address = placeOn(name)
-	err := book.Rows(ctx, name, r.readRow)
+	r.address = placeOn(at.schedule)
+	err := book.Rows(ctx, at.schedule, r.readRow)
 	return r.finish(err)
 }
 
-// openJobTable opens a table of settings; the second result tells whether it has
-// decimal commas.
-func openJobTable(data []byte) (jobRows, bool, error) {
-	b, err := sheet.Open(data, "job table", "", sheet.DefaultLimits())
-	if err != nil {
-		return nil, false, fmt.Errorf("the job table: %w", err)
+// readBeside reads what stands beside the rows: the checklist first, because the
+// estimate class may follow from it.
+func (r *reader) readBeside(ctx context.Context, parts [len(besides)]annexSource, o Options) error {
+	if err := r.readDefinition(ctx, parts[besideDefinition]); err != nil {
+		return fmt.Errorf("reading the sheet Definition: %w", err)
 	}
-	name := b.Sheets()[0]
-	rows := func(ctx context.Context, fn func(int, []sheet.Cell) error) error { return b.Rows(ctx, name, fn) }
-	return rows, b.DecimalComma(), nil
+	job := parts[besideJob]
+	if err := r.readJob(ctx, job.rows, job.comma, job.place, o); err != nil {
+		return err
+	}
+	if err := r.readRisks(ctx, parts[besideRisks]); err != nil {
+		return fmt.Errorf("reading the sheet Risks: %w", err)
+	}
+	return nil
 }
 
 func placeOn(name string) func(row, column int) sheet.Address {
 	return func(row, column int) sheet.Address { return sheet.Address{Sheet: name, Row: row, Column: column} }
-}
-
-// pickSheets finds the schedule and the Job sheet among the names.
-func pickSheets(names []string) (schedule, job string, fault *sheet.Fault) {
-	var others []string
-	named := false
-	for _, n := range names {
-		switch fold(n) {
-		case "job":
-			job = n
-		case "schedule":
-			schedule, named = n, true
-		default:
-			others = append(others, n)
-		}
-	}
-	if named {
-		return schedule, job, nil
-	}
-	if len(others) == 1 {
-		return others[0], job, nil
-	}
-	return "", "", &sheet.Fault{
-		Found: shorten(strings.Join(names, ", ")), Problem: "the workbook does not say which sheet is the schedule",
-		Remedy: "name it Schedule, and the sheet of settings Job",
-	}
 }
 
 func (r *reader) report(at sheet.Address, header, found, problem, remedy string) {
@@ -235,7 +214,7 @@ func (r *reader) finish(err error) (Schedule, error) {
 		return Schedule{}, fmt.Errorf("entering the defaults of the schedule: %w", err)
 	}
 	return Schedule{
-		Settings: r.job.Settings, Members: r.members, Defaults: entries,
+		Settings: r.job.Settings, Members: r.members, Risks: r.risks, Defaults: entries,
 		Omissions: omissions(r.members), Echo: echo(r.members),
 	}, nil
 }

@@ -58,13 +58,14 @@ var extended = struct {
 	cells map[string][]string // by mark
 }{
 	[]string{"Horizontal load (kN/m)", "Moving load (kN)", "Dynamic factor", "Load set", "Moment factor", "Net area factor", "Frequency floor (Hz)",
-		"Max depth (mm)", "Same size as", "Joints", "Coating", "Execution class"},
+		"Max depth (mm)", "Same size as", "Concrete (m³)", "Joints", "Coating", "Execution class"},
 	map[string][]string{
-		"B10": {"0.6", "", "1.3 point; 1.2 on horizontal load", "", "1.13", "", "4", "500", "", "end plates", "galvanised", "exc 3"},
-		"B3":  {"", "40; 30; 40 @ 2 m", "1.25", "", "", "", "none", "", "", "", "", ""},
-		"B5":  {"", "12", "", "", "", "0.85", "", "", "", "", "", ""},
-		"B7":  {"", "", "", "", "", "", "", "", "B6", "", "", ""},
-		"B8":  {"", "", "1.1 variable", "walkway", "", "", "", "", "", "", "", ""},
+		"B10": {"0.6", "", "1.3 point; 1.2 on horizontal load", "", "1.13", "", "4", "500", "", "", "2 pinned; 4 moment", "galvanised", "exc 3"},
+		"B3":  {"", "40; 30; 40 @ 2 m", "1.25", "", "", "", "none", "", "", "", "", "", ""},
+		"B5":  {"", "12", "", "", "", "0.85", "", "", "", "0.75", "", "", ""},
+		"B7":  {"", "", "", "", "", "", "", "", "B6", "", "", "", ""},
+		"F1":  {"", "", "", "", "", "", "", "", "", "2.4", "", "", ""},
+		"B8":  {"", "", "1.1 variable", "walkway", "", "", "", "", "", "", "1 site splice", "", "aisc CYCLIC"},
 	},
 }
 
@@ -98,6 +99,7 @@ var fewColumns = [][]string{
 	{"B8", "Deck", "1", "6", "simple", "", "", "UPN", "", "", "", "", "", "", "", "1.2", "", "", "", "", "", "", "", "", ""},
 	{"BM1", "Boom", "1", "42", "", "0.5", "0.8", "PIPE", "", "loading boom", "", "5", "42", "20", "", "", "", "0 fixed; 28; 42", "", "0.8", "", "", "", "", ""},
 	{"C1", "Tower", "4", "9", "strut", "", "", "CHS 168.3x6.3", "S235", "tower leg", "", "", "", "180", "", "", "", "", "", "", "", "", "", "", ""},
+	{"F1", "Ground", "4", "", "", "", "", "", "", "Foundation", "", "", "", "", "", "", "", "", "", "", "", "", "", "", ""},
 	{"G1", "", "1", "", "not sized", "", "", "grating", "", "", "", "", "", "", "", "", "", "", "", "", "", "", "25 kg/m²", "36", ""},
 	{"H1", "", "2", "12", "not sized", "", "", "handrail", "", "", "", "", "", "", "", "", "", "", "", "", "", "", "30 kg/m", "", ""},
 }
@@ -108,7 +110,7 @@ func TestReadEveryColumn(t *testing.T) {
 	for _, m := range s.Members {
 		marks = append(marks, m.Mark)
 	}
-	if diff := cmp.Diff([]string{"B2", "B3", "B4", "B5", "B6", "B7", "B8", "B10", "BM1", "C1", "G1", "H1"}, marks); diff != "" {
+	if diff := cmp.Diff([]string{"B2", "B3", "B4", "B5", "B6", "B7", "B8", "B10", "BM1", "C1", "F1", "G1", "H1"}, marks); diff != "" {
 		t.Errorf("order of marks (-want +got):\n%s", diff)
 	}
 	permanent := func(v float64) Load {
@@ -144,7 +146,7 @@ func TestReadEveryColumn(t *testing.T) {
 			LengthFactor: 0, DeflectionLimit: 250, ConnectionClass: "simple beams"},
 		{Mark: "B5", Group: "Deck", Kind: "beam", Quantity: 1, Length: 8, Treatment: SizeFromFamily, Arrangement: "overhang",
 			Supports: []Support{{0, "pinned"}, {6, "pinned"}}, Loads: []Load{permanent(1000), variable(1000), train(0, nil, 12000)}, Family: "RHS", Grade: "S235",
-			LengthFactor: 0, NetAreaFactor: 0.85, DeflectionLimit: 250, ConnectionClass: "simple beams"},
+			LengthFactor: 0, NetAreaFactor: 0.85, Concrete: 0.75, DeflectionLimit: 250, ConnectionClass: "simple beams"},
 		{Mark: "B6", Group: "Deck", Kind: "beam", Quantity: 1, Length: 8, Treatment: SizeFromFamily, Arrangement: "two equal spans",
 			Supports: []Support{{0, "pinned"}, {4, "pinned"}, {8, "pinned"}}, Loads: []Load{permanent(1000), variable(1000)}, Family: "HEA", Grade: "S235",
 			LengthFactor: 0, DeflectionLimit: 250, ConnectionClass: "simple beams"},
@@ -153,24 +155,26 @@ func TestReadEveryColumn(t *testing.T) {
 			LengthFactor: 0, DeflectionLimit: 250, SameSizeAs: "B6", ConnectionClass: "simple beams"},
 		{Mark: "B8", Group: "Deck", Kind: "beam", Quantity: 1, Length: 6, Treatment: SizeFromFamily, Arrangement: "simple",
 			Supports: []Support{{0, "pinned"}, {6, "pinned"}}, Loads: []Load{deck, people}, Family: "UPN", Grade: "S235",
-			LengthFactor: 0, DeflectionLimit: 250, LoadSet: "walkway", ConnectionClass: "simple beams"},
+			LengthFactor: 0, DeflectionLimit: 250, LoadSet: "walkway", Joints: []Joint{{"site splice", 1}}, ConnectionClass: "simple beams", ExecutionClass: "AISC cyclic"},
 		{Mark: "B10", Group: "Deck", Kind: "beam", Description: "floor beam", Quantity: 4, Length: 6, Treatment: SizeFromFamily, Arrangement: "simple",
 			Supports: []Support{{0, "pinned"}, {6, "pinned"}}, Loads: []Load{permanent(2500), variable(4000), horizontal, struck}, Family: "IPE", Grade: "S355",
 			Restraint: 2, LengthFactor: 1, DeflectionLimit: 360, MomentFactor: 1.13, FrequencyFloor: 4, MaxDepth: 0.5,
-			Joints: "end plates", ConnectionClass: "simple beams", Coating: "galvanised", ExecutionClass: "EXC3", Remarks: "as drawn"},
+			Joints: []Joint{{"moment", 4}, {"pinned", 2}}, ConnectionClass: "simple beams", Coating: "galvanised", ExecutionClass: "EXC3", Remarks: "as drawn"},
 		{Mark: "BM1", Group: "Boom", Kind: "loading boom", Quantity: 1, Length: 42, Treatment: SizeFromFamily, Arrangement: "positions",
 			Supports: []Support{{0, "fixed"}, {28, "pinned"}, {42, "pinned"}}, Loads: []Load{permanent(500), variable(800), point(5000, 42)}, Axial: 20000,
 			Family: "PIPE", Grade: "A53 B", LengthFactor: 0.8, DeflectionLimit: 100, ConnectionClass: "tube booms"},
 		{Mark: "C1", Group: "Tower", Kind: "tower leg", Quantity: 4, Length: 9, Treatment: CheckSection, Arrangement: "strut", Upright: true,
 			Supports: []Support{{0, "pinned"}, {9, "pinned"}}, Axial: 180000, Family: "CHS", Section: "CHS 168.3x6.3", Grade: "S235",
 			LengthFactor: 0, DeflectionLimit: 250, ConnectionClass: "trestles"},
+		{Mark: "F1", Group: "Ground", Kind: "foundation", Quantity: 4, Treatment: ByMass, Concrete: 2.4, ConnectionClass: "simple beams"},
 		{Mark: "G1", Group: "ungrouped", Kind: "grating", Quantity: 1, Treatment: ByMass, AreaMass: 25, Area: 36, ConnectionClass: "simple beams"},
 		{Mark: "H1", Group: "ungrouped", Kind: "handrail", Quantity: 2, Length: 12, Treatment: ByMass, LineMass: 30, ConnectionClass: "simple beams"},
 	}
 	if diff := cmp.Diff(want, s.Members, cmpopts.IgnoreFields(Member{}, "Row", "Defaults")); diff != "" {
 		t.Errorf("members (-want +got):\n%s", diff)
 	}
-	settings := Settings{Scheme: "inner support", DesignBasis: "allowable", Factor: 3, Grade: "S235", DeflectionLimit: 250, EstimateClass: 5, Currency: "EUR", Confidence: 0.8}
+	settings := Settings{Scheme: "inner support", DesignBasis: "allowable", Factor: 3, Grade: "S235", DeflectionLimit: 250, EstimateClass: 5, Currency: "EUR", Confidence: 0.8,
+		Kerf: 0.005, Purchase: "waste", Money: "base date"}
 	if diff := cmp.Diff(settings, s.Settings); diff != "" {
 		t.Errorf("settings (-want +got):\n%s", diff)
 	}
@@ -198,7 +202,7 @@ func TestEcho(t *testing.T) {
 	}
 	// HEB 200 is 61.3 kg/m (EN 10365:2017), CHS 168.3x6.3 is 25.2 kg/m (EN 10210-2:2006),
 	// both from memory: 2 × 3 × 61.3 kg, 4 × 9 × 25.2 kg; 25 × 36 + 2 × 12 × 30 kg.
-	want := []EchoGroup{{"Boom", 1, 0}, {"Deck", 12, 0.3678}, {"Tower", 4, 0.9072}, {"ungrouped", 3, 1.62}}
+	want := []EchoGroup{{"Boom", 1, 0}, {"Deck", 12, 0.3678}, {"Ground", 4, 0}, {"Tower", 4, 0.9072}, {"ungrouped", 3, 1.62}}
 	if diff := cmp.Diff(want, s.Echo.Groups); diff != "" {
 		t.Errorf("groups (-want +got):\n%s", diff)
 	}

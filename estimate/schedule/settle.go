@@ -1,9 +1,10 @@
 package schedule
 
 import (
+	"fmt"
 	"slices"
+	"strconv"
 	"strings"
-	"time"
 
 	"spanwright/estimate/assumption"
 	"spanwright/estimate/money"
@@ -46,7 +47,8 @@ func (r *reader) jobText(id jobID) string {
 func (r *reader) settle() {
 	s := &r.job.Settings
 	s.Project, s.Scheme = r.jobText(jobProject), r.jobText(jobScheme)
-	s.Coating, s.ExecutionClass, s.StockLengths = r.jobText(jobCoating), r.jobExecution(), r.jobText(jobStock)
+	s.Coating, s.ExecutionClass = r.jobText(jobCoating), r.jobExecution()
+	r.readPurchase()
 	s.DesignBasis = r.designBasis()
 	s.Factor = r.jobFactor()
 	s.Grade = r.jobGrade()
@@ -54,12 +56,15 @@ func (r *reader) settle() {
 	s.FrequencyFloor = r.jobFrequency()
 	s.Restraint = r.jobRestraint()
 	s.ConnectionClass = r.jobConnection()
+	s.Definition = r.definition
 	s.EstimateClass = r.estimateClass()
 	s.Currency = r.currency()
-	s.BaseDate = r.baseDate()
+	s.BaseDate = r.jobDate(jobBaseDate)
+	r.readSpending()
 	s.Confidence = r.confidence()
 	s.WindSpeed, s.Terrain = r.windSpeed(), r.terrain()
 	s.GroundSnow = r.siteQuantity(jobGroundSnow, unit.AreaLoad, snows)
+	s.SiteConditions, s.HaulDistance = r.siteConditions(), r.haulDistance()
 }
 
 // setting enters the default of a setting left blank.
@@ -149,29 +154,6 @@ func (r *reader) jobFrequency() float64 {
 	return r.jobQuantity(jobFrequency, unit.Frequency, frequencies).value
 }
 
-// executionClasses are those of EN 1090-2:2018, annex A and EN 1993-1-1 annex C.
-var executionClasses = []string{"EXC1", "EXC2", "EXC3", "EXC4"}
-
-func executionClass(found string) (string, bool) {
-	i := slices.IndexFunc(executionClasses, func(c string) bool { return fold(c) == fold(found) })
-	if i < 0 {
-		return "", false
-	}
-	return executionClasses[i], true
-}
-
-func (r *reader) jobExecution() string {
-	found := r.jobText(jobExecution)
-	if found == "" {
-		return ""
-	}
-	class, ok := executionClass(found)
-	if !ok {
-		r.jobFault(jobExecution, &complaint{shorten(found), "is no execution class", "one of " + strings.Join(executionClasses, ", ")})
-	}
-	return class
-}
-
 func (r *reader) jobConnection() string {
 	found := r.jobText(jobConnection)
 	if found == "" {
@@ -211,10 +193,20 @@ func (r *reader) estimateClass() int {
 	}
 	if s == blank {
 		r.job.given[jobClass] = false
-		r.setting(classEntry, "5", "The estimate is of class 5, the least defined.", assumption.Medium)
-		return defaultClass
+		return r.classByDefinition()
 	}
 	return n
+}
+
+// classByDefinition is the class of the checklist, else the least defined one.
+func (r *reader) classByDefinition() int {
+	if len(r.definition) == 0 {
+		r.setting(classEntry, strconv.Itoa(defaultClass), "The estimate is of class 5, the least defined.", assumption.Medium)
+		return defaultClass
+	}
+	class, _, why := ClassFromDefinition(r.definition)
+	r.setting(classEntry, strconv.Itoa(class), fmt.Sprintf("The estimate is of class %d by its definition. %s", class, why), assumption.Medium)
+	return class
 }
 
 func (r *reader) currency() string {
@@ -236,10 +228,9 @@ func (r *reader) currency() string {
 	return c.Code
 }
 
-// baseDate reads a date cell or yyyy-mm-dd; blank stays empty, the rate book then
-// says it.
-func (r *reader) baseDate() string {
-	c := r.job.entries[jobBaseDate].cell
+// jobDate reads a date cell or yyyy-mm-dd; blank stays empty.
+func (r *reader) jobDate(id jobID) string {
+	c := r.job.entries[id].cell
 	if c.Kind == sheet.Date {
 		day, _, _ := strings.Cut(c.Text, "T")
 		c = sheet.Cell{Kind: sheet.Text, Text: day}
@@ -247,18 +238,16 @@ func (r *reader) baseDate() string {
 	if c.Kind == lostKind {
 		return ""
 	}
-	t, wrong := readText(c, longestText, "a date such as 2026-01-01")
+	t, wrong := readText(c, longestText, "a date such as "+jobKeys[id].Example)
 	if t.state == blank {
-		r.job.given[jobBaseDate] = false
+		r.job.given[id] = false
 		return ""
 	}
-	if wrong == nil {
-		if _, err := time.Parse(time.DateOnly, t.value); err != nil {
-			wrong = &complaint{shorten(t.value), "is no date", "yyyy-mm-dd, such as 2026-01-01, or a date cell"}
-		}
+	if wrong == nil && !isDay(t.value) {
+		wrong = &complaint{shorten(t.value), "is no date", "yyyy-mm-dd, such as " + jobKeys[id].Example + ", or a date cell"}
 	}
 	if wrong != nil {
-		r.jobFault(jobBaseDate, wrong)
+		r.jobFault(id, wrong)
 	}
 	return t.value
 }

@@ -58,6 +58,8 @@ func (r *row) arrangement(f *fields) (text, bool) {
 		return text{state: bad}, false
 	case f.support.state == blank && f.supportsState == given:
 		return text{given, atPlaces}, false
+	case f.support.state == blank && f.unheld():
+		return text{given, notSized}, false
 	case f.support.state == blank && r.byMassUnsaid(f):
 		r.missing(colSupport, "the row has a mass and no section", "write not sized, or name a section in Section or family")
 		return text{state: bad}, false

@@ -35,13 +35,15 @@ var jobValues = map[jobID]string{
 
 // Template returns an empty schedule as a workbook (XLSX) to be filled in: a sheet
 // Schedule with every column, one example row and drop-down lists; a sheet Job with
-// every key; a sheet Help from Columns and JobKeys; the lists. A list offers and
-// does not bind: other entries are typed over it. Read reads it without a fault.
+// every key; empty sheets Definition and Risks; a sheet Help that explains every
+// column and key; the lists. A list offers and does not bind: other entries are typed over it. Read reads it without a fault.
 func Template() ([]byte, error) {
 	b := sheet.NewBuilder()
 	l := lists{}
 	writeSchedule(b, &l)
 	writeJob(b, &l)
+	writeAnnex(b, &l, besides[besideDefinition], DefinitionColumns())
+	writeAnnex(b, &l, besides[besideRisks], RiskColumns())
 	writeHelp(b)
 	l.write(b)
 	data, err := b.Bytes()
@@ -59,7 +61,22 @@ func writeSchedule(b *sheet.Builder, l *lists) {
 	}
 	b.Sheet("Schedule", heads...)
 	b.Row(row...)
-	for i, c := range Columns() {
+	offer(b, l, Columns())
+}
+
+// writeAnnex writes a sheet with heads and drop-down lists and no row.
+func writeAnnex(b *sheet.Builder, l *lists, name string, columns []Column) {
+	heads := make([]sheet.Column, len(columns))
+	for i, c := range columns {
+		heads[i] = sheet.Column{Head: c.Header, Width: 26}
+	}
+	b.Sheet(name, heads...)
+	offer(b, l, columns)
+}
+
+// offer lays the drop-down lists of the columns on the rows of the current sheet.
+func offer(b *sheet.Builder, l *lists, columns []Column) {
+	for i, c := range columns {
 		if len(c.Choices) > 0 {
 			name := sheet.Letters(i + 1)
 			b.Choices(fmt.Sprintf("%s2:%s%d", name, name, templateRows), l.add(c))
@@ -95,7 +112,7 @@ func writeHelp(b *sheet.Builder) {
 	for _, part := range []struct {
 		name string
 		list []Column
-	}{{"Schedule", Columns()}, {"Job", JobKeys()}} {
+	}{{"Schedule", Columns()}, {besides[besideJob], JobKeys()}, {besides[besideDefinition], DefinitionColumns()}, {besides[besideRisks], RiskColumns()}} {
 		for _, c := range part.list {
 			needed := ""
 			if c.Obligatory {
@@ -200,13 +217,11 @@ func families() []string {
 
 // kinds are the usual ones; any other text is a kind too.
 func kinds() []string {
-	return []string{"beam", "cross beam", "bracket", "purlin", "boom", "column", "post", "leg", "tower", "chord", "diagonal", "bracing", "grating", "handrail", "stair", "ladder", "base plate"}
+	return []string{"beam", "cross beam", "bracket", "purlin", "boom", "column", "post", "leg", "tower", "chord", "diagonal", "bracing", "grating", "handrail", "stair", "ladder", "base plate", KindFoundation}
 }
 
 func limitChoices() []string {
 	return []string{"L/180", "L/200", "L/250", "L/300", "L/360", "L/500", "none"}
 }
-
-func executionNames() []string { return slices.Clone(executionClasses) }
 
 func terrainNames() []string { return slices.Clone(terrains) }

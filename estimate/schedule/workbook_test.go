@@ -81,7 +81,7 @@ func TestReadWorkbookWithJob(t *testing.T) {
 	}
 	want := Settings{
 		Project: "Salt works", Scheme: "inner support", DesignBasis: "allowable", Factor: 1.6, Grade: "S355", DeflectionLimit: 300,
-		Restraint: 3, ConnectionClass: "trestles", Coating: "C5", ExecutionClass: "EXC2", StockLengths: "12 m",
+		Restraint: 3, ConnectionClass: "trestles", Coating: "C5", ExecutionClass: "EXC2", StockLengths: []float64{12}, Kerf: 0.005, Purchase: "waste", Money: "base date",
 		EstimateClass: 4, Currency: "EUR", BaseDate: "2026-02-01", Confidence: 0.8,
 	}
 	if diff := cmp.Diff(want, s.Settings); diff != "" {
@@ -204,10 +204,12 @@ func TestWhichSheet(t *testing.T) {
 		{[]string{""}, "", "", true},
 		{[]string{"Job", "Members"}, "Members", "Job", true},
 		{[]string{"Lists", "JOB", "schedule", "Help"}, "schedule", "JOB", true},
+		{[]string{"Definition", "Members", "RISKS"}, "Members", "", true},
 		{[]string{"Members", "Towers"}, "", "", false},
 		{[]string{"Job"}, "", "", false},
 	} {
-		schedule, job, fault := pickSheets(c.names)
+		at, fault := pickSheets(c.names)
+		schedule, job := at.schedule, at.beside[besideJob]
 		if schedule != c.schedule || job != c.job || (fault == nil) != c.ok {
 			t.Errorf("%q: schedule %q, job %q, fault %v", c.names, schedule, job, fault)
 		}
