@@ -244,6 +244,58 @@ func Product(factors ...Decimal) (Decimal, error) {
 	return r, nil
 }
 
+// statedPlaces is what a workbook rounds a product to before it rounds it to the
+// places that are shown: it takes off the noise of binary arithmetic.
+const statedPlaces = 8
+
+// RoundedProduct returns the exact product of the factors, 1 for none, rounded to
+// 8 places and then to places, both half away from zero: what a workbook states
+// as ROUND(ROUND(product, 8), places). Where the exact product has more than
+// WorkbookDigits significant digits the workbook holds it only to within some
+// roundings of 2⁻⁵³, at least to 2⁻⁵⁰ of itself; when not every number that near
+// rounds to the same result, the error names the product and wraps ErrDigits.
+func RoundedProduct(places int, factors ...Decimal) (Decimal, error) {
+	x := FromInt(1)
+	for _, f := range factors {
+		x = x.Mul(f)
+	}
+	r := stated(x, places)
+	if x.digits() <= WorkbookDigits {
+		return r, nil
+	}
+	doubt := x.Mul(halves50)
+	if n := len(factors); n > 4 { // n factors and n − 1 products are rounded, each by 2⁻⁵³ of itself
+		doubt = doubt.Mul(FromInt(int64(n+3) / 4))
+	}
+	if !stated(x.Sub(doubt), places).Equal(r) || !stated(x.Add(doubt), places).Equal(r) {
+		return Zero, fmt.Errorf("money: found the product %s = %s, which binary arithmetic cannot surely round to %d places; accepted: at most %d significant digits, round a factor: %w",
+			formula(factors), x, places, WorkbookDigits, ErrDigits)
+	}
+	return r, nil
+}
+
+// stated rounds x as a workbook does.
+func stated(x Decimal, places int) Decimal { return x.Round(statedPlaces).Round(places) }
+
+// halves50 is 2⁻⁵⁰ = 5⁵⁰·10⁻⁵⁰.
+var halves50 = func() Decimal {
+	var r Decimal
+	r.d.Coeff.Exp(apd.NewBigInt(5), apd.NewBigInt(50), nil)
+	r.d.Exponent = -50
+	return r
+}()
+
+// digits returns the significant digits of a, trailing zeros aside.
+func (a Decimal) digits() int {
+	n := a.d.NumDigits()
+	if n <= WorkbookDigits {
+		return int(n)
+	}
+	var short apd.Decimal
+	short.Reduce(&a.d)
+	return int(short.NumDigits())
+}
+
 // formula writes factors as a product for an error message.
 func formula(factors []Decimal) string {
 	texts := make([]string, len(factors))

@@ -1,19 +1,22 @@
 // Package ratebook holds versioned rates, allowances and multipliers.
 //
-//	starting book or a posted book file → Parse, Validate
+//	starting book or a posted book file → Parse, Validate → frozen in the job
+//	rates → ResolveRates, CategoryOrder: which one prices an item, and when
 //	book + multipliers edited in the service → Resolve: which scope wins for
 //	each member and category, with its author and reason
-//	→ frozen in the job, read by take-off and pricing
+//	indices, exchange rates → Escalation, ExchangeTo → factors on prices
 //
 // The starting book `ratio` prices each category as a multiple of a frozen
 // reference price per delivered tonne, so that labour does not move with the
-// price of steel. All its figures are invented and say so.
+// price of steel; `unit-rate` prices what the take-off counts. All their prices
+// are invented and say so. Beside them stand published tables: extents of
+// inspection, coating systems, masses of zinc, typical ranges by class.
 package ratebook
 
 import (
 	"bytes"
 	"crypto/sha256"
-	_ "embed" // the starting book
+	_ "embed" // the starting books
 	"encoding/hex"
 	"encoding/json"
 	"fmt"
@@ -37,11 +40,18 @@ const (
 	Engineering = "engineering"
 	Indirects   = "indirects"
 	Margin      = "margin"
+	Owner       = "owner" // off unless a job asks for it, listed as excluded
+)
+
+// The kinds of books.
+const (
+	KindRatio    = "ratio"     // categories as multiples of a reference price
+	KindUnitRate = "unit-rate" // prices per unit of drivers
 )
 
 // Categories returns every category in the order in which it is shown.
 func Categories() []string {
-	return []string{Material, Fabrication, Coating, Inspection, Shipping, Erection, Foundations, Engineering, Indirects, Margin}
+	return []string{Material, Fabrication, Coating, Inspection, Shipping, Erection, Foundations, Engineering, Indirects, Margin, Owner}
 }
 
 // The kinds of waste, by what is bought.
@@ -61,21 +71,39 @@ type Figure struct {
 	ValidUntil string        `json:"valid_until,omitempty" doc:"yyyy-mm-dd"`
 }
 
-// Book is one version of a rate book of the kind ratio.
+// Book is one version of a rate book.
 type Book struct {
 	Name     string `json:"name"`
-	Kind     string `json:"kind" enum:"ratio"`
+	Kind     string `json:"kind" enum:"ratio,unit-rate"`
 	Currency string `json:"currency"`
 	BaseDate string `json:"base_date" doc:"the date of its money, yyyy-mm-dd"`
 	Note     string `json:"note"`
 
 	// ReferencePrice is the frozen price per delivered tonne that the ratios
 	// multiply. It is a definition, not a belief, and has no spread.
-	ReferencePrice money.Decimal `json:"reference_price"`
-	// MaterialPrice is the price of steel per purchased tonne.
-	MaterialPrice Figure `json:"material_price"`
-	// Ratios are the categories as multiples of the reference price per delivered tonne.
-	Ratios map[string]Figure `json:"ratios"`
+	ReferencePrice money.Decimal `json:"reference_price,omitzero"`
+	// MaterialPrice is the price of steel per purchased tonne, kind ratio.
+	MaterialPrice *Figure `json:"material_price,omitempty"`
+	// Ratios are the categories as multiples of the reference price per delivered
+	// tonne, kind ratio.
+	Ratios map[string]Figure `json:"ratios,omitempty"`
+	// Rates are the prices of the kind unit-rate.
+	Rates []Rate `json:"rates,omitempty"`
+	// Norms make hours, loads and weeks of masses, kind unit-rate.
+	Norms *Norms `json:"norms,omitempty"`
+	// Limits are the envelopes of shop, bath, paint bay and road; nil takes DefaultLimits.
+	Limits *Limits `json:"limits,omitempty"`
+	// Carbon are the emission factors; without any, no carbon is stated.
+	Carbon []CarbonFactor `json:"carbon,omitempty"`
+	// Exchange are the rates of the other currencies that prices are in.
+	Exchange []Exchange `json:"exchange,omitempty"`
+	// Indices escalate prices from the base date of the book to later dates.
+	Indices []Index `json:"indices,omitempty"`
+	// SpendMonths is when a category is spent: months after the job's spend date,
+	// negative for before.
+	SpendMonths map[string]int `json:"spend_months,omitempty"`
+	// Site is the multipliers that the site conditions of a job put in force.
+	Site []SiteMultiplier `json:"site_multipliers,omitempty"`
 
 	// Connections is the allowance on net mass by connection class.
 	Connections map[string]Figure `json:"connections"`
@@ -113,10 +141,16 @@ type Multiplier struct {
 	Version    int64         `json:"version,omitempty" doc:"version of the edited multiplier, 0 for one of the book"`
 }
 
+// SiteMultiplier is a multiplier that holds where a job names a site condition.
+type SiteMultiplier struct {
+	Condition string `json:"condition" enum:"over water,tidal,live plant,height,weather"`
+	Multiplier
+}
+
 // Band is a range of what is usual for a kind of structure, against which each
 // group is held before anybody sees the total.
 type Band struct {
-	Measure string  `json:"measure" enum:"kg/m,price/t"`
+	Measure string  `json:"measure" enum:"kg/m,price/t,shop h/t"`
 	Class   string  `json:"class" doc:"connection class that the band is for"`
 	Low     float64 `json:"low"`
 	High    float64 `json:"high"`
@@ -126,9 +160,17 @@ type Band struct {
 //go:embed ratio.json
 var ratioJSON []byte
 
+//go:embed unit-rate.json
+var unitRateJSON []byte
+
 // Ratio returns the starting book of the kind ratio.
-func Ratio() Book {
-	b, err := Parse(ratioJSON)
+func Ratio() Book { return embedded(ratioJSON) }
+
+// UnitRate returns the starting book of the kind unit-rate.
+func UnitRate() Book { return embedded(unitRateJSON) }
+
+func embedded(data []byte) Book {
+	b, err := Parse(data)
 	if err != nil {
 		panic("ratebook: the embedded book is broken: " + err.Error())
 	}

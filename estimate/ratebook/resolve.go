@@ -1,11 +1,12 @@
 package ratebook
 
 import (
+	"maps"
 	"slices"
-	"sort"
+	"strings"
 )
 
-// Scope says how widely a multiplier applies; the most specific wins.
+// Scope says how widely a rate or multiplier applies; the most specific wins.
 type Scope string
 
 // The scopes, most specific first.
@@ -25,21 +26,22 @@ func (s Scope) valid() bool { return slices.Contains(specificity, s) }
 // named reports whether the scope needs a subject: a mark, a group or a family.
 func (s Scope) named() bool { return s == MemberScope || s == GroupScope || s == FamilyScope }
 
-// Place is where a multiplier may apply: one member with its group and family.
-type Place struct {
-	Mark, Group, Family string
-}
-
-func (m Multiplier) appliesTo(p Place) bool {
-	switch m.Scope {
+// holds reports whether a scope with its subject covers a place.
+func (s Scope) holds(subject string, p Place) bool {
+	switch s {
 	case MemberScope:
-		return m.Subject == p.Mark
+		return subject == p.Mark
 	case GroupScope:
-		return m.Subject == p.Group
+		return subject == p.Group
 	case FamilyScope:
-		return m.Subject == p.Family
+		return subject == p.Family
 	}
 	return true
+}
+
+// beats reports whether s is at least as specific as t.
+func (s Scope) beats(t Scope) bool {
+	return slices.Index(specificity, s) <= slices.Index(specificity, t)
 }
 
 // Resolve returns the indices in ms of the multipliers that act on a category at
@@ -48,22 +50,47 @@ func (m Multiplier) appliesTo(p Place) bool {
 func Resolve(ms []Multiplier, category string, p Place) []int {
 	won := map[string]int{}
 	for i, m := range ms {
-		if !slices.Contains(m.Categories, category) || !m.appliesTo(p) {
+		if !slices.Contains(m.Categories, category) || !m.Scope.holds(m.Subject, p) {
 			continue
 		}
 		j, ok := won[m.Name]
-		if !ok || slices.Index(specificity, m.Scope) <= slices.Index(specificity, ms[j].Scope) {
+		if !ok || m.Scope.beats(ms[j].Scope) {
 			won[m.Name] = i
 		}
 	}
-	names := make([]string, 0, len(won))
-	for n := range won {
-		names = append(names, n)
-	}
-	sort.Strings(names)
-	out := make([]int, len(names))
-	for i, n := range names {
-		out[i] = won[n]
+	out := make([]int, 0, len(won))
+	for _, name := range slices.Sorted(maps.Keys(won)) {
+		out = append(out, won[name])
 	}
 	return out
+}
+
+// ResolveRates returns the indices of the rates that price an item at a place: of
+// each id, among those whose selection matches and whose scope covers the place,
+// the most specific one; ids in alphabetical order. Of two with the same scope the
+// later one wins. Lumps are for the whole structure: they come with every place,
+// Place{} included, and their triggers are not looked at.
+func ResolveRates(rates []Rate, p Place) []int {
+	won := make([]int, 0, len(rates)) // by id
+	for i := range rates {
+		r := &rates[i]
+		if !r.Select.Matches(p) || !r.scope().holds(r.Subject, p) {
+			continue
+		}
+		at, found := slices.BinarySearchFunc(won, r.ID, func(j int, id string) int { return strings.Compare(rates[j].ID, id) })
+		switch {
+		case !found:
+			won = slices.Insert(won, at, i)
+		case r.scope().beats(rates[won[at]].scope()):
+			won[at] = i
+		}
+	}
+	return won
+}
+
+// Matches reports whether every list that is not empty holds the place's value.
+func (s Selection) Matches(p Place) bool {
+	in := func(list []string, value string) bool { return len(list) == 0 || slices.Contains(list, value) }
+	return in(s.Treatments, p.Treatment) && in(s.Families, p.Family) && in(s.Connections, p.Connection) &&
+		in(s.Wastes, p.Waste) && in(s.Coatings, p.Coating) && in(s.Executions, p.Execution)
 }
