@@ -2,138 +2,174 @@ package pricing
 
 import (
 	"fmt"
+	"slices"
 	"sort"
-	"strings"
 
-	"spanwright/estimate/ratebook"
-	"spanwright/estimate/spread"
 	"spanwright/estimate/takeoff"
 )
 
-// compiler merges the products of lines into a Model.
+// compiler numbers inputs, factors and register entries, and merges the products
+// of lines into a Model.
 type compiler struct {
-	inputs   map[string]Input
-	products map[string]*product
-	systemic takeoff.Allowance
+	inputs    map[string]Input
+	numbers   map[named]int32
+	factors   []named
+	values    []float64 // of the factors at base
+	given     []Input   // of the factors
+	entry     []int32   // number of the factors' register entries
+	monomials *pool     // products of factors
+	entries   names     // ids of the register
+	sets      *pool     // of entries
+	texts     map[int32][]string
+	merged    map[mergeKey]*sum
+	charges   []chargeTerm // with a least charge
 }
 
-// product is a term whose factors are still named by id.
-type product struct {
-	category    string
-	coefficient float64
-	factors     []named
-}
-
+// named is a factor: an offset and the value of an input.
 type named struct {
 	id     string
 	offset float64
 }
 
-func newCompiler(r Rates) *compiler {
-	c := &compiler{inputs: map[string]Input{}, products: map[string]*product{}, systemic: r.Systemic}
-	if r.Systemic.ID != "" {
-		c.inputs[r.Systemic.ID] = Input{ID: r.Systemic.ID, Spread: r.Systemic.Spread}
-	}
-	return c
+// term is a product: max(coefficient · Π monomial, least) · Π after.
+type term struct {
+	monomial, after    int32
+	coefficient, least float64
 }
 
-// add compiles one line. The coefficient is chosen so that at base values the
-// product is the line's own unrounded decimal product: the rounded quantity,
-// divided by its allowances at base, by the reference price.
-func (c *compiler) add(item takeoff.Item, line *Line, r Rates) error {
-	allowances := item.ToDelivered
-	coefficient := line.Quantity.Float64()
-	rate := named{id: line.RateID}
-	if line.Category == ratebook.Material {
-		allowances = item.ToPurchased
-		c.input(rate.id, r.Book.MaterialPrice.Spread, r.Book.MaterialPrice.Group)
+type mergeKey struct {
+	category string
+	monomial int32
+}
+
+type chargeTerm struct {
+	category string
+	term
+}
+
+func newCompiler() *compiler {
+	return &compiler{inputs: map[string]Input{}, numbers: map[named]int32{}, monomials: newPool(false), sets: newPool(true),
+		texts: map[int32][]string{}, merged: map[mergeKey]*sum{}}
+}
+
+// factor returns the number of a factor. An input that is stated twice with
+// different spreads or groups is an error.
+func (c *compiler) factor(in Input, offset float64) (int32, error) {
+	key := named{in.ID, offset}
+	n, ok := c.numbers[key]
+	if ok && c.given[n] == in {
+		return n, nil
+	}
+	if known, ok := c.inputs[in.ID]; ok && known != in {
+		return 0, fmt.Errorf("assumption %q is stated twice with different spreads or groups; accepted: one, or two names", in.ID)
+	}
+	if err := in.Spread.Validate(); err != nil {
+		return 0, fmt.Errorf("assumption %q: %w", in.ID, err)
+	}
+	c.inputs[in.ID] = in
+	n = int32(len(c.factors))
+	c.numbers[key] = n
+	c.factors = append(c.factors, key)
+	c.values = append(c.values, offset+in.Spread.Base())
+	c.given = append(c.given, in)
+	c.entry = append(c.entry, c.entries.of(in.ID))
+	return n, nil
+}
+
+// allowance returns the number of the factor of a quantity.
+func (c *compiler) allowance(a takeoff.Allowance) (int32, error) {
+	return c.factor(Input{ID: a.ID, Spread: a.Spread, Group: a.Group}, a.Offset)
+}
+
+// dependsOn returns the ids of a set of entries, sorted. The slice is shared and
+// must not be changed.
+func (c *compiler) dependsOn(set int32) []string {
+	if known, ok := c.texts[set]; ok {
+		return known
+	}
+	out := make([]string, 0, len(c.sets.lists[set]))
+	for _, n := range c.sets.lists[set] {
+		out = append(out, c.entries.texts[n])
+	}
+	sort.Strings(out)
+	c.texts[set] = slices.Clip(out)
+	return c.texts[set]
+}
+
+// times returns the term multiplied by constant · Π monomial.
+func (c *compiler) times(t term, constant float64, monomial int32) term {
+	t.coefficient *= constant
+	if t.least > 0 {
+		t.least *= constant
+		t.after = c.monomials.join(t.after, monomial)
 	} else {
-		coefficient *= r.Book.ReferencePrice.Float64()
-		f := r.Book.Ratios[line.Category]
-		c.input(rate.id, f.Spread, f.Group)
+		t.monomial = c.monomials.join(t.monomial, monomial)
 	}
-	p := product{category: line.Category, factors: []named{rate}}
-	for _, a := range allowances {
-		if !(a.Value() > 0) {
-			return fmt.Errorf("%s: allowance %s makes a mass of zero", line.ID, a.ID)
-		}
-		coefficient /= a.Value()
-		c.input(a.ID, a.Spread, "")
-		p.factors = append(p.factors, named{id: a.ID, offset: a.Offset})
-	}
-	place := ratebook.Place{Mark: item.Marks[0], Group: item.Group, Family: item.Family}
-	for _, i := range ratebook.Resolve(r.Multipliers, line.Category, place) {
-		m := r.Multipliers[i]
-		c.input(MultiplierID(m), m.Spread, m.Group)
-		p.factors = append(p.factors, named{id: MultiplierID(m)})
-	}
-	sort.Slice(p.factors, func(i, j int) bool { return p.factors[i].id < p.factors[j].id })
-	key := p.key()
-	if merged, ok := c.products[key]; ok {
-		merged.coefficient += coefficient
-		return nil
-	}
-	p.coefficient = coefficient
-	c.products[key] = &p
-	return nil
+	return t
 }
 
-func (c *compiler) input(id string, s spread.Spread, group string) {
-	c.inputs[id] = Input{ID: id, Spread: s, Group: group}
+// add adds a term to the cost of a category.
+func (c *compiler) add(category string, t term) {
+	if t.least > 0 {
+		c.charges = append(c.charges, chargeTerm{category, t})
+		return
+	}
+	key := mergeKey{category, t.monomial}
+	s := c.merged[key]
+	if s == nil {
+		s = &sum{}
+		c.merged[key] = s
+	}
+	s.add(t.coefficient)
 }
 
-func (p product) key() string {
-	var b strings.Builder
-	b.WriteString(p.category)
-	for _, f := range p.factors {
-		fmt.Fprintf(&b, "\x00%s\x00%g", f.id, f.offset)
+// sum adds floats and keeps what each addition loses (Neumaier 1974, Zeitschrift
+// für angewandte Mathematik und Mechanik 54), so that the model's base holds to
+// 1e-12 over any number of lines.
+type sum struct{ total, lost float64 }
+
+func (s *sum) add(x float64) {
+	x = float64(x) // a product is rounded before it is added, never fused
+	t := s.total + x
+	if max(s.total, -s.total) >= max(x, -x) {
+		s.lost += (s.total - t) + x
+	} else {
+		s.lost += (x - t) + s.total
 	}
-	return b.String()
+	s.total = t
 }
 
-// model numbers the inputs and sorts the terms by key, so that the same job
-// gives the same model whatever the order of its rows.
-func (c *compiler) model() Model {
-	var m Model
-	number := map[string]int{}
-	ids := make([]string, 0, len(c.inputs))
-	for id := range c.inputs {
-		ids = append(ids, id)
+func (s *sum) value() float64 { return s.total + s.lost }
+
+// sorted returns the factors of a monomial, sorted by id and offset.
+func (c *compiler) sorted(monomial int32) []named {
+	out := make([]named, 0, len(c.monomials.lists[monomial]))
+	for _, n := range c.monomials.lists[monomial] {
+		out = append(out, c.factors[n])
 	}
-	sort.Strings(ids)
-	for i, id := range ids {
-		number[id] = i
-		m.Inputs = append(m.Inputs, c.inputs[id])
-	}
-	keys := make([]string, 0, len(c.products))
-	for k := range c.products {
-		keys = append(keys, k)
-	}
-	sort.Strings(keys)
-	for _, k := range keys {
-		p := c.products[k]
-		t := Term{Category: p.category, Coefficient: p.coefficient}
-		for _, f := range p.factors {
-			t.Factors = append(t.Factors, Factor{Input: number[f.id], Offset: f.offset})
-		}
-		m.Terms = append(m.Terms, t)
-	}
-	if c.systemic.ID != "" {
-		m.Overall = []Factor{{Input: number[c.systemic.ID], Offset: c.systemic.Offset}}
-	}
-	return m
+	slices.SortFunc(out, compareNamed)
+	return out
 }
 
-// Base returns the model's total at the base values of its inputs, without the
-// factors on the whole.
-func (m Model) Base() float64 {
-	total := 0.0
-	for _, t := range m.Terms {
-		v := t.Coefficient
-		for _, f := range t.Factors {
-			v *= f.Offset + m.Inputs[f.Input].Spread.Base()
-		}
-		total += v
+func compareNamed(a, b named) int {
+	switch {
+	case a.id < b.id:
+		return -1
+	case a.id > b.id:
+		return 1
+	case a.offset < b.offset:
+		return -1
+	case a.offset > b.offset:
+		return 1
 	}
-	return total
+	return 0
+}
+
+// valueOf returns a monomial at base values, multiplied in the order of ids.
+func (c *compiler) valueOf(monomial int32) float64 {
+	v := 1.0
+	for _, f := range c.sorted(monomial) {
+		v *= c.values[c.numbers[f]]
+	}
+	return v
 }

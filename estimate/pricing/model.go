@@ -4,14 +4,16 @@ import "spanwright/estimate/spread"
 
 // Model is the compiled cost of a job as a function of its assumptions:
 //
-//	total = (Σ over Terms of Coefficient · Π Factors) · Π Overall
+//	total = (Σ over Terms) · Π Overall + Σ over Risks that occur
+//	term  = max(Coefficient · Π Factors, Least) · Π After
 //
 // in major units of the job's currency. Identical products within a category are
 // merged, so that the cost of one trial does not grow with the number of members.
 type Model struct {
-	Inputs  []Input // sorted by ID, each used by at least one term or by Overall
+	Inputs  []Input // sorted by ID, each used by at least one term, by Overall or by a risk
 	Terms   []Term
 	Overall []Factor // factors on the whole base, such as the systemic factor
+	Risks   []Risk   // sorted by ID
 }
 
 // Input is one assumption that the total depends on.
@@ -28,9 +30,23 @@ type Factor struct {
 	Offset float64
 }
 
-// Term is one merged product.
+// Term is one merged product. Least is a minimum charge: where it is above zero
+// the product does not fall below it. After are factors upon the greater of the
+// two, such as a percentage taken of the line; without a Least they are empty and
+// stand among Factors.
 type Term struct {
 	Category    string
 	Coefficient float64
 	Factors     []Factor // sorted by Input, then Offset
+	Least       float64
+	After       []Factor // sorted by Input, then Offset
+}
+
+// Risk is a discrete risk: with its probability it adds the value of its input
+// to the total of a trial, outside Overall and outside every category. It is no
+// part of the base.
+type Risk struct {
+	ID          string  // keys the stream of its occurrence
+	Probability float64 // 0 to 1
+	Impact      int     // index in Inputs: cost when it occurs, may be negative
 }

@@ -1,15 +1,21 @@
 // Package pricing turns quantities into decimal lines, and compiles the same
 // structure into a cost model for the range.
 //
-//	take-off items × categories → Line = quantity × rate × multipliers,
-//	    exact decimals, each line rounded to the minor unit
+//	take-off items × rates resolved at each item's place → Line = quantity ×
+//	    unit price, exact decimals, each line rounded to the minor unit
+//	lines of one rate → price break, minimum order, minimum charge
+//	lines of a category → percentages upon them, in the order of dependence
 //	lines → categories → base, sums that are exact
 //	the same lines → Model, a sum of products over assumptions
+//
+// Carbon takes the same way: emission factors for rates, modules for categories.
 package pricing
 
 import (
 	"fmt"
-	"strconv"
+	"slices"
+	"sort"
+	"strings"
 
 	"spanwright/estimate/assumption"
 	"spanwright/estimate/money"
@@ -17,161 +23,236 @@ import (
 	"spanwright/estimate/takeoff"
 )
 
-// The drivers of the ratio book.
-const (
-	DeliveredTonnes = "delivered tonnes"
-	PurchasedTonnes = "purchased tonnes"
-)
-
-// Applied is one multiplier on a line, with the scope that won.
-type Applied struct {
-	Name       string
-	Scope      ratebook.Scope
-	Subject    string
-	Value      money.Decimal
-	Assumption string
-}
-
-// Line is one priced quantity: Amount = Quantity × Rate × Π Multipliers, rounded
-// once, half away from zero, to the currency's minor unit.
-type Line struct {
-	ID          string
-	Item        string
-	Group       string
-	Category    string
-	Driver      string
-	Quantity    money.Decimal // of the driver
-	Rate        money.Decimal // per unit of the driver
-	Formula     string        // how the rate is made
-	RateID      string        // register entry of the rate or ratio
-	Multipliers []Applied
-	Amount      money.Decimal
-	Assumptions []string // ids of every entry that it depends on
-}
-
-// Priced is a priced job.
-type Priced struct {
-	Lines      []Line // by item, then category in the order of ratebook.Categories
-	Categories map[string]money.Decimal
-	Base       money.Decimal
-	Model      Model
-}
-
-// Rates is what a job prices with: a book and the multipliers in force, those of
-// the book first.
-type Rates struct {
-	Book        ratebook.Book
-	Multipliers []ratebook.Multiplier
-	Currency    money.Currency
-	Systemic    takeoff.Allowance // the factor on the whole base, in the range only
-}
-
 // MultiplierID is the id of the register entry of a multiplier.
 func MultiplierID(m ratebook.Multiplier) string {
-	id := "multiplier/" + assumption.Segment(m.Name) + "/" + assumption.Segment(string(m.Scope))
-	if m.Subject != "" {
-		id += "/" + assumption.Segment(m.Subject)
+	return "multiplier/" + assumption.Segment(m.Name) + "/" + scoped(m.Scope, m.Subject)
+}
+
+// RateID is the id of the register entry of a rate: rate/{id}, with scope and
+// subject where the rate is not that of the whole book.
+func RateID(r ratebook.Rate) string {
+	id := "rate/" + assumption.Segment(r.ID)
+	if r.Scope == "" || r.Scope == ratebook.BookScope {
+		return id
+	}
+	return id + "/" + scoped(r.Scope, r.Subject)
+}
+
+// CarbonID is the id of the register entry of an emission factor.
+func CarbonID(f ratebook.CarbonFactor) string { return "carbon/" + assumption.Segment(f.ID) }
+
+func scoped(s ratebook.Scope, subject string) string {
+	id := assumption.Segment(string(s))
+	if subject != "" {
+		id += "/" + assumption.Segment(subject)
 	}
 	return id
 }
 
-// RateID is the id of the register entry of a category's rate.
-func RateID(category string) string { return "rate/" + category }
-
-// Price prices items. The first mark of an item stands for all of its marks in
-// the search for multipliers, which holds because take-off splits items that
-// multipliers treat differently.
+// Price prices items. The result does not depend on the order of items or of
+// rates. Whatever is wrong with rates, conversions and products is reported at
+// once, each fault with the rate or line that it concerns.
+//
+// The whole structure is a place of its own: its lines are lumps, minimum orders
+// and charges, and percentages upon those. It is in no group and of no coating or
+// execution class, so that only rates without a selection, or with one that names
+// the blank value, and multipliers of the scheme, the project or the book act
+// there. Any other percentage leaves the lines of the whole structure out of its
+// base.
+//
+// Price breaks and minimum orders go by the quantity of a rate id over the whole
+// job at likely values: a trial of the range crosses no break, and a minimum that
+// does not bind at likely values binds in no trial.
 func Price(items []takeoff.Item, r Rates) (Priced, error) {
-	p := Priced{Categories: map[string]money.Decimal{}}
-	c := newCompiler(r)
-	for _, item := range items {
-		for _, category := range ratebook.Categories() {
-			if !priced(r.Book, category) {
-				continue
-			}
-			line, err := priceLine(item, category, r)
-			if err != nil {
-				return Priced{}, err
-			}
-			if err := c.add(item, &line, r); err != nil {
-				return Priced{}, err
-			}
-			p.Lines = append(p.Lines, line)
-			p.Categories[category] = p.Categories[category].Add(line.Amount)
-			p.Base = p.Base.Add(line.Amount)
-		}
+	p := newPricer(items, r.Rates, r.Multipliers, r.Categories)
+	p.line, p.entry = "line/", RateID
+	p.places, p.minor = r.Currency.MinorDigits+extraPlaces, r.Currency.MinorDigits
+	p.currency, p.book, p.reference = r.Currency.Code, r.Book, r.Reference
+	p.exchange, p.escalation = r.Exchange, r.Escalation
+	p.baseDate, p.facts = r.BaseDate, r.Facts
+	order, err := ratebook.CategoryOrder(p.rates)
+	if err != nil {
+		return Priced{}, fmt.Errorf("pricing: %w", err)
 	}
-	p.Model = c.model()
-	return p, nil
+	if err := p.run(order); err != nil {
+		return Priced{}, err
+	}
+	model, err := p.compiler.model(r.Systemic, r.Risks)
+	if err != nil {
+		return Priced{}, err
+	}
+	out := Priced{Lines: p.ordered(), Categories: p.sums, Model: model, Notes: p.sortedNotes()}
+	for _, c := range p.categories {
+		out.Base = out.Base.Add(p.sums[c])
+	}
+	return out, nil
 }
 
-func priced(b ratebook.Book, category string) bool {
-	_, ok := b.Ratios[category]
-	return ok || category == ratebook.Material
+// pricer prices one take-off with rates or with emission factors.
+type pricer struct {
+	line          string                     // before the ids of lines
+	entry         func(ratebook.Rate) string // id of a rate's register entry
+	places, minor int                        // of unit prices, of amounts
+	currency      string
+	book          string
+	reference     money.Decimal
+	exchange      map[string]Conversion
+	escalation    map[string][]Conversion
+	baseDate      string
+	facts         Facts
+
+	items       []takeoff.Item // by id
+	rates       []ratebook.Rate
+	multipliers []ratebook.Multiplier
+	categories  []string
+	spots       []*spot // of the items, then of the whole structure
+	has         map[ratebook.Driver]bool
+	compiler    *compiler
+	lists       *pool // of multipliers
+	prices      map[priceKey]*unitPrice
+
+	at     map[string]*shelf // the lines, by category
+	count  int               // of the lines
+	sums   map[string]money.Decimal
+	notes  []Note
+	faults []error
+
+	terms   []term // storage, as the next ones
+	found   []detailed
+	details []detail
+	drafts  [][]draft
 }
 
-func priceLine(item takeoff.Item, category string, r Rates) (Line, error) {
-	line := Line{
-		ID: "line/" + item.ID + "/" + category, Item: item.ID, Group: item.Group, Category: category,
-		Driver: DeliveredTonnes, Quantity: item.Delivered, RateID: RateID(category),
+func newPricer(items []takeoff.Item, rates []ratebook.Rate, multipliers []ratebook.Multiplier, categories []string) *pricer {
+	p := &pricer{
+		items: slices.Clone(items), multipliers: slices.Clone(multipliers), compiler: newCompiler(), lists: newPool(false),
+		has: map[ratebook.Driver]bool{}, prices: map[priceKey]*unitPrice{}, at: map[string]*shelf{}, sums: map[string]money.Decimal{},
 	}
-	allowances := item.ToDelivered
-	var err error
-	if category == ratebook.Material {
-		line.Driver, line.Quantity, allowances = PurchasedTonnes, item.Purchased, item.ToPurchased
-		line.Formula = "price of steel"
-		line.Rate, err = exact(r.Book.MaterialPrice.Spread.Base())
-	} else {
-		line.Formula = "reference price × ratio"
-		var ratio money.Decimal
-		if ratio, err = exact(r.Book.Ratios[category].Spread.Base()); err == nil {
-			line.Rate, err = money.Product(r.Book.ReferencePrice, ratio)
+	for _, c := range categories {
+		if !slices.Contains(p.categories, c) {
+			p.categories = append(p.categories, c)
 		}
 	}
-	if err != nil {
-		return Line{}, fmt.Errorf("rate of %s: %w", category, err)
-	}
-	factors := []money.Decimal{line.Quantity, line.Rate}
-	for _, a := range allowances {
-		line.Assumptions = append(line.Assumptions, a.ID)
-	}
-	line.Assumptions = append(line.Assumptions, line.RateID)
-	place := ratebook.Place{Mark: item.Marks[0], Group: item.Group, Family: item.Family}
-	for _, i := range ratebook.Resolve(r.Multipliers, category, place) {
-		m := r.Multipliers[i]
-		v, err := exact(m.Spread.Base())
-		if err != nil {
-			return Line{}, fmt.Errorf("multiplier %s: %w", m.Name, err)
+	slices.SortStableFunc(p.items, func(a, b takeoff.Item) int { return strings.Compare(a.ID, b.ID) })
+	slices.SortStableFunc(p.multipliers, func(a, b ratebook.Multiplier) int { return strings.Compare(a.Name, b.Name) }) // lists of them are by name
+	for _, r := range rates {
+		if slices.Contains(categories, r.Category) {
+			p.rates = append(p.rates, r)
 		}
-		a := Applied{Name: m.Name, Scope: m.Scope, Subject: m.Subject, Value: v, Assumption: MultiplierID(m)}
-		line.Multipliers = append(line.Multipliers, a)
-		line.Assumptions = append(line.Assumptions, a.Assumption)
-		factors = append(factors, v)
 	}
-	product, err := money.Product(factors...)
-	if err != nil {
-		return Line{}, fmt.Errorf("%s: %w", line.ID, err)
+	atlas := newAtlas(p.rates, p.multipliers, p.categories, p.lists)
+	for _, it := range p.items {
+		p.spots = append(p.spots, atlas.at(it.Place()))
+		for _, q := range it.Quantities {
+			p.has[q.Driver] = p.has[q.Driver] || q.Value.Sign() > 0
+		}
 	}
-	line.Amount = r.Currency.Round(product)
-	return line, nil
+	p.spots = append(p.spots, atlas.at(ratebook.Place{}))
+	return p
 }
 
-// ratePlaces is the number of decimals that a rate, ratio or multiplier may carry.
-const ratePlaces = 4
+// run makes the lines, category by category in the order given, each after those
+// that its percentages are taken of.
+func (p *pricer) run(order []string) error {
+	p.checkRates()
+	if err := p.err(); err != nil {
+		return err
+	}
+	for _, c := range p.categories {
+		if !slices.Contains(order, c) {
+			p.fault(fmt.Errorf("found the category %.40q; accepted: %s", c, strings.Join(order, ", ")))
+		}
+	}
+	for _, c := range order {
+		if slices.Contains(p.categories, c) {
+			p.priceCategory(c)
+		}
+	}
+	return p.err()
+}
 
-// exact turns a rate or multiplier into a decimal through its shortest text of
-// twelve digits, which takes off the noise of binary arithmetic.
-func exact(x float64) (money.Decimal, error) {
-	short, err := strconv.ParseFloat(strconv.FormatFloat(x, 'g', 12, 64), 64)
-	if err != nil {
-		return money.Decimal{}, err
+// priceCategory prices one category.
+func (p *pricer) priceCategory(category string) {
+	charges := p.collect(category)
+	if len(charges) == 0 {
+		p.note("no-rate", category, "", "no rate of the book is for "+category)
+		return
 	}
-	d, err := money.Parse(strconv.FormatFloat(short, 'f', -1, 64))
-	if err != nil {
-		return money.Decimal{}, err
+	s := &shelf{}
+	for _, id := range sortedKeys(charges) {
+		c := charges[id]
+		if err := p.settle(c, s); err != nil {
+			p.fault(err)
+		}
+		if c.drafts != nil {
+			p.drafts = append(p.drafts, c.drafts[:0])
+		}
 	}
-	if !d.Round(ratePlaces).Equal(d) {
-		return money.Decimal{}, fmt.Errorf("%v has more than %d decimals; round it", x, ratePlaces)
+	s.sort(len(p.spots))
+	p.at[category] = s
+	p.count += len(s.lines)
+}
+
+// ordered returns the lines by place, category and rate id.
+func (p *pricer) ordered() []Line {
+	out := make([]Line, 0, p.count)
+	for i := range p.spots {
+		for _, c := range p.categories {
+			for _, d := range p.at[c].of(i) {
+				out = append(out, *d.line)
+			}
+		}
 	}
-	return d, nil
+	return out
+}
+
+func (p *pricer) fault(err error) { p.faults = append(p.faults, err) }
+
+// err joins the faults, sorted.
+func (p *pricer) err() error {
+	slices.SortFunc(p.faults, func(a, b error) int { return strings.Compare(a.Error(), b.Error()) })
+	p.faults = slices.CompactFunc(p.faults, func(a, b error) bool { return a.Error() == b.Error() })
+	if len(p.faults) == 0 {
+		return nil
+	}
+	return faults(p.faults)
+}
+
+// faults are errors on one line.
+type faults []error
+
+// Error lists every fault.
+func (f faults) Error() string {
+	texts := make([]string, len(f))
+	for i, err := range f {
+		texts[i] = err.Error()
+	}
+	return "pricing: " + strings.Join(texts, "; ")
+}
+
+// Unwrap lets errors.Is look at each fault.
+func (f faults) Unwrap() []error { return f }
+
+func (p *pricer) note(code, category, subject, message string) {
+	p.notes = append(p.notes, Note{Code: code, Category: category, Subject: subject, Message: message})
+}
+
+// sortedNotes returns the notes by category, subject and code.
+func (p *pricer) sortedNotes() []Note {
+	slices.SortStableFunc(p.notes, func(a, b Note) int {
+		if a.Category != b.Category {
+			return slices.Index(p.categories, a.Category) - slices.Index(p.categories, b.Category)
+		}
+		return strings.Compare(a.Subject+"\x00"+a.Code+"\x00"+a.Message, b.Subject+"\x00"+b.Code+"\x00"+b.Message)
+	})
+	return p.notes
+}
+
+func sortedKeys[V any](m map[string]V) []string {
+	keys := make([]string, 0, len(m))
+	for k := range m {
+		keys = append(keys, k)
+	}
+	sort.Strings(keys)
+	return keys
 }

@@ -1,0 +1,328 @@
+package pricing
+
+import (
+	"math"
+	"strings"
+	"testing"
+
+	"github.com/google/go-cmp/cmp"
+
+	"spanwright/estimate/ratebook"
+	"spanwright/estimate/spread"
+	"spanwright/estimate/takeoff"
+)
+
+const (
+	tonnes = string(ratebook.DeliveredTonnes)
+	hours  = string(ratebook.ShopHours)
+	cubic  = string(ratebook.CubicMetres)
+)
+
+func near(got, want float64) bool { return math.Abs(got-want) <= 1e-12*math.Abs(want) }
+
+// trial evaluates a model with the values of some inputs by id, the others at base.
+// It is written apart from Model.Base.
+func trial(m Model, values map[string]float64) float64 {
+	x := make([]float64, len(m.Inputs))
+	for i, in := range m.Inputs {
+		v, ok := values[in.ID]
+		if !ok {
+			v = in.Spread.Base()
+		}
+		x[i] = v
+	}
+	var total, lost float64 // Kahan's sum
+	for _, t := range m.Terms {
+		v := t.Coefficient
+		for _, f := range t.Factors {
+			v *= f.Offset + x[f.Input]
+		}
+		if v < t.Least {
+			v = t.Least
+		}
+		for _, f := range t.After {
+			v *= f.Offset + x[f.Input]
+		}
+		y := v - lost
+		sum := total + y
+		lost = (sum - total) - y
+		total = sum
+	}
+	return total
+}
+
+// The break goes by the whole job: 60 + 50 t reach the break from 100 t.
+func TestPriceBreakOverTheWholeJob(t *testing.T) {
+	steel := rate("steel", ratebook.Material, ratebook.DeliveredTonnes, 900)
+	steel.Breaks = []ratebook.Break{{From: decimal(t, "0"), Factor: decimal(t, "1.08")}, {From: decimal(t, "100"), Factor: decimal(t, "0.97")}}
+	for _, c := range []struct{ second, want string }{
+		{"50.000", "line/B/steel: 50.000 × 873.0000 = 43650.00"}, // 900 × 0.97
+		{"40.000", "line/B/steel: 40.000 × 873.0000 = 34920.00"}, // 100 t exactly
+		{"39.999", "line/B/steel: 39.999 × 972.0000 = 38879.03"}, // 900 × 1.08; 38 879.028
+	} {
+		p := price(t, []takeoff.Item{item(t, "A", tonnes, "60.000"), item(t, "B", tonnes, c.second)}, euros(t, steel))
+		if diff := cmp.Diff(c.want, amounts(p.Lines)[1]); diff != "" {
+			t.Error(diff)
+		}
+		if l := p.Lines[0]; !strings.Contains(l.Note, "price break") || l.Parts[1].Name != "price break" || l.Parts[1].Assumption != "rate/steel" {
+			t.Errorf("note %q, parts %v", l.Note, l.Parts)
+		}
+		if diff := cmp.Diff([]string{"price-break rate/steel"}, codes(p.Notes)); diff != "" {
+			t.Error(diff)
+		}
+	}
+}
+
+// Below a minimum order of 5 m³ the job pays 5 m³ once: 5 × 310 × 1.1 = 1 705.
+// In a trial that needs more than 5 m³ the cost follows the quantity: at 2.8 m³ and
+// growth 1.12 at base, growth of 2.24 makes 5.6 m³.
+func TestMinimumOrder(t *testing.T) {
+	concrete := rate("concrete", ratebook.Foundations, ratebook.CubicMetres, 310)
+	concrete.MinimumOrder = decimal(t, "5")
+	r := euros(t, concrete)
+	r.Multipliers = []ratebook.Multiplier{project("tidal", 1.1, ratebook.Foundations)}
+	items := []takeoff.Item{item(t, "A", cubic, "1.50"), item(t, "B", cubic, "1.30")}
+	p := price(t, items, r)
+	if diff := cmp.Diff([]string{"line/whole structure/concrete: 5 × 341.0000 = 1705.00"}, amounts(p.Lines)); diff != "" {
+		t.Fatal(diff)
+	}
+	l := p.Lines[0]
+	if l.Group != WholeStructure || l.Item != "" || l.Unit != "m³" || !strings.Contains(l.Note, "minimum order: 5 m³, of which the job needs 2.80") {
+		t.Errorf("got group %q, item %q, unit %q, note %q", l.Group, l.Item, l.Unit, l.Note)
+	}
+	if diff := cmp.Diff([]string{"multiplier/tidal/project", "rate/concrete"}, l.Assumptions); diff != "" {
+		t.Error(diff)
+	}
+	if diff := cmp.Diff([]string{"minimum-order rate/concrete"}, codes(p.Notes)); diff != "" {
+		t.Error(diff)
+	}
+	for growth, want := range map[float64]float64{0.12: 1705, 0: 1705, 1.24: 5.6 * 341} {
+		if got := trial(p.Model, map[string]float64{"allowance/growth": growth}); !near(got, want) {
+			t.Errorf("growth %g: the model gives %.15g, want %.15g", growth, got, want)
+		}
+	}
+	enough := price(t, []takeoff.Item{item(t, "A", cubic, "3.70"), item(t, "B", cubic, "1.30")}, r)
+	if len(enough.Lines) != 2 || len(codes(enough.Notes)) != 0 {
+		t.Errorf("5.00 m³ is enough: got %v, %v", amounts(enough.Lines), codes(enough.Notes))
+	}
+}
+
+// A break goes by what is bought: the minimum order of 5 m³ reaches the break there.
+func TestBreakAtTheMinimumOrder(t *testing.T) {
+	concrete := rate("concrete", ratebook.Foundations, ratebook.CubicMetres, 310)
+	concrete.MinimumOrder = decimal(t, "5")
+	concrete.Breaks = []ratebook.Break{{From: decimal(t, "5"), Factor: decimal(t, "0.9")}}
+	p := price(t, []takeoff.Item{item(t, "A", cubic, "1.50")}, euros(t, concrete))
+	if diff := cmp.Diff([]string{"line/whole structure/concrete: 5 × 279.0000 = 1395.00"}, amounts(p.Lines)); diff != "" {
+		t.Error(diff)
+	}
+}
+
+// Lines of 200 + 100 USD fall below the minimum of 500 USD, which is 460 EUR and
+// with 10 % of escalation 506 EUR. In a trial with the price at 10 USD/t the lines
+// cost 600 USD, 607.20 EUR.
+func TestMinimumCharge(t *testing.T) {
+	survey := rate("survey", ratebook.Erection, ratebook.DeliveredTonnes, 5)
+	survey.Spread = spread.NewTriangular(1, 5, 20)
+	survey.Currency, survey.MinimumCharge = "USD", decimal(t, "500")
+	r := euros(t, survey, rate("margin", ratebook.Margin, ratebook.CostOf, 0.1, ratebook.Erection))
+	r.Exchange = map[string]Conversion{"USD": {Name: "exchange", ID: "exchange/USD", Value: decimal(t, "0.92"), Spread: spread.NewTriangular(0.8, 0.92, 1)}}
+	r.Escalation = map[string][]Conversion{ratebook.Erection: {{Name: "escalation to base date", ID: "index/erection", Value: decimal(t, "1.1"), Spread: spread.NewTriangular(1, 1.1, 1.3)}}}
+	m := project("height", 2, ratebook.Erection)
+	m.Scope, m.Subject = ratebook.GroupScope, "Tower"
+	r.Multipliers = []ratebook.Multiplier{m}
+	b := item(t, "B", tonnes, "10.000")
+	b.Group = "Tower"
+	p := price(t, []takeoff.Item{item(t, "A", tonnes, "40.000"), b}, r) // 40 × 5 + 10 × 5 × 2 USD
+	want := []string{"line/whole structure/survey: 1 × 506.0000 = 506.00", "line/whole structure/margin: 506.00 × 0.100000 = 50.60"}
+	if diff := cmp.Diff(want, amounts(p.Lines)); diff != "" {
+		t.Fatal(diff)
+	}
+	l := p.Lines[0]
+	if l.Driver != ratebook.Lump || l.Unit != "sum" || l.Formula != "minimum charge × exchange × escalation to base date" || !strings.Contains(l.Note, "minimum charge: the lines would be 303.60") {
+		t.Errorf("got driver %q, unit %q, formula %q, note %q", l.Driver, l.Unit, l.Formula, l.Note)
+	}
+	if diff := cmp.Diff([]string{"exchange/USD", "index/erection", "rate/survey"}, l.Assumptions); diff != "" {
+		t.Error(diff)
+	}
+	if diff := cmp.Diff([]string{"exchange/USD", "index/erection", "rate/margin", "rate/survey"}, p.Lines[1].Assumptions); diff != "" {
+		t.Error(diff)
+	}
+	if diff := cmp.Diff([]string{"minimum-charge rate/survey"}, codes(p.Notes)); diff != "" {
+		t.Error(diff)
+	}
+	// The multiplier of one group alone is no common factor: it is held at base.
+	for _, c := range []struct {
+		values map[string]float64
+		want   float64
+	}{
+		{nil, 556.60},
+		{map[string]float64{"rate/survey": 10}, 1.1 * 607.2},
+		{map[string]float64{"rate/survey": 10, "rate/margin": 0.2}, 1.2 * 607.2},
+		{map[string]float64{"exchange/USD": 1}, 1.1 * 550},
+		{map[string]float64{"rate/survey": 10, "exchange/USD": 1, "allowance/growth": 1.24}, 1.1 * 1320},
+		{map[string]float64{"multiplier/height/group/Tower": 50}, 556.60},
+	} {
+		if got := trial(p.Model, c.values); !near(got, c.want) {
+			t.Errorf("%v: the model gives %.15g, want %.15g", c.values, got, c.want)
+		}
+	}
+}
+
+// The rate of a group is in another currency than that of the book: the lines of
+// the group follow their own price only at base, and the minimum the exchange of
+// the book's. 10 t × 5 USD × 0.9 + 20 t × 4 EUR = 125 EUR; the minimum is 180 EUR.
+func TestAMinimumChargeOverTwoCurrencies(t *testing.T) {
+	survey := rate("survey", ratebook.Erection, ratebook.DeliveredTonnes, 5)
+	survey.Currency, survey.MinimumCharge = "USD", decimal(t, "200")
+	tower := rate("survey", ratebook.Erection, ratebook.DeliveredTonnes, 4)
+	tower.Scope, tower.Subject = ratebook.GroupScope, "Tower"
+	r := euros(t, survey, tower)
+	r.Exchange = map[string]Conversion{"USD": {Name: ExchangeRate, ID: "exchange/USD", Value: decimal(t, "0.9"), Spread: spread.NewTriangular(0.8, 0.9, 1)}}
+	b := item(t, "B", tonnes, "20.000")
+	b.Group = "Tower"
+	p := price(t, []takeoff.Item{item(t, "A", tonnes, "10.000"), b}, r)
+	if diff := cmp.Diff([]string{"line/whole structure/survey: 1 × 180.0000 = 180.00"}, amounts(p.Lines)); diff != "" {
+		t.Fatal(diff)
+	}
+	for _, c := range []struct {
+		values map[string]float64
+		want   float64
+	}{
+		{nil, 180},
+		{map[string]float64{"allowance/growth": 1.24}, 250}, // twice the quantity
+		{map[string]float64{"exchange/USD": 1}, 200},
+		{map[string]float64{"allowance/growth": 1.24, "exchange/USD": 0.99}, 275},
+	} {
+		if got := trial(p.Model, c.values); !near(got, c.want) {
+			t.Errorf("%v: the model gives %.15g, want %.15g", c.values, got, c.want)
+		}
+	}
+}
+
+// Factors that stand twice in a product, as a multiplier of a category and of a
+// percentage upon it does, are common as often as all terms have them: of x²y and
+// xyz they are x and y, with x + z left at base.
+func TestCommonFactors(t *testing.T) {
+	c := newCompiler()
+	var n [3]int32
+	for i, v := range []float64{2, 3, 5} {
+		var err error
+		if n[i], err = c.factor(Input{ID: string(rune('x' + i)), Spread: spread.NewFixed(v)}, 0); err != nil {
+			t.Fatal(err)
+		}
+	}
+	x, y, z := n[0], n[1], n[2]
+	terms := []term{
+		{monomial: c.monomials.of(x, x, y), coefficient: 7},
+		{monomial: c.monomials.of(x, y, z), coefficient: 11},
+	}
+	common := c.common(terms)
+	if diff := cmp.Diff([]int32{x, y}, c.monomials.lists[common]); diff != "" {
+		t.Error(diff)
+	}
+	if got, want := c.firstOrder(terms, common), 7*2.0+11*5; got != want {
+		t.Errorf("got %g, want %g", got, want)
+	}
+	terms[1] = term{monomial: c.monomials.of(y), coefficient: 11}
+	if common := c.common(terms); len(c.monomials.lists[common]) != 1 || c.firstOrder(terms, common) != 7*4+11 {
+		t.Errorf("of x²y and y: %v, %g", c.monomials.lists[common], c.firstOrder(terms, common))
+	}
+	terms[0], terms[1] = term{monomial: c.monomials.of(x, y)}, term{monomial: c.monomials.of(x, x)}
+	if diff := cmp.Diff([]int32{x}, c.monomials.lists[c.common(terms)]); diff != "" {
+		t.Error(diff)
+	}
+}
+
+func TestAMinimumChargeThatDoesNotBind(t *testing.T) {
+	survey := rate("survey", ratebook.Erection, ratebook.DeliveredTonnes, 5)
+	survey.MinimumCharge = decimal(t, "250")
+	p := price(t, []takeoff.Item{item(t, "A", tonnes, "40.000"), item(t, "B", tonnes, "10.000")}, euros(t, survey))
+	want := []string{"line/A/survey: 40.000 × 5.0000 = 200.00", "line/B/survey: 10.000 × 5.0000 = 50.00"}
+	if diff := cmp.Diff(want, amounts(p.Lines)); diff != "" || len(codes(p.Notes)) > 0 {
+		t.Errorf("%s, notes %v", diff, codes(p.Notes))
+	}
+}
+
+// A lump counts once, with the multipliers of the whole structure, when its
+// trigger holds.
+func TestLumps(t *testing.T) {
+	facts := Facts{Kinds: []string{"boom"}, Executions: []string{"EXC2", "EXC3"}, SiteConditions: []string{"tidal"}, Permits: 1, Delivered: decimal(t, "50.000")}
+	for _, c := range []struct {
+		name    string
+		trigger ratebook.Trigger
+		want    bool
+	}{
+		{"always", ratebook.Trigger{}, true},
+		{"kind", ratebook.Trigger{Kinds: []string{"tower", "boom"}}, true},
+		{"other kind", ratebook.Trigger{Kinds: []string{"tower"}}, false},
+		{"execution", ratebook.Trigger{Executions: []string{"EXC3"}}, true},
+		{"other execution", ratebook.Trigger{Executions: []string{"EXC4"}}, false},
+		{"site", ratebook.Trigger{SiteConditions: []string{"tidal"}}, true},
+		{"other site", ratebook.Trigger{SiteConditions: []string{"live plant"}}, false},
+		{"permits", ratebook.Trigger{Permits: true}, true},
+		{"heavier than 49.999 t", ratebook.Trigger{DeliveredAbove: decimal(t, "49.999")}, true},
+		{"heavier than 50 t", ratebook.Trigger{DeliveredAbove: decimal(t, "50")}, false},
+		{"both", ratebook.Trigger{Permits: true, Kinds: []string{"boom"}}, true},
+		{"one of two", ratebook.Trigger{Permits: true, Kinds: []string{"tower"}}, false},
+	} {
+		test := rate("load test", ratebook.Engineering, ratebook.Lump, 4000)
+		test.Trigger = c.trigger
+		r := euros(t, test)
+		r.Facts = facts
+		r.Multipliers = []ratebook.Multiplier{project("remote", 1.25, ratebook.Engineering)}
+		p := price(t, []takeoff.Item{item(t, "A", tonnes, "30.000"), item(t, "B", tonnes, "20.000")}, r)
+		lines, notes := []string{"line/whole structure/load test: 1 × 5000.0000 = 5000.00"}, []string(nil)
+		if !c.want {
+			lines, notes = nil, []string{"not-triggered rate/load test"}
+		}
+		if diff := cmp.Diff(lines, amounts(p.Lines)); diff != "" {
+			t.Errorf("%s: %s", c.name, diff)
+		}
+		if diff := cmp.Diff(notes, codes(p.Notes)); diff != "" {
+			t.Errorf("%s: %s", c.name, diff)
+		}
+		if c.want && !near(trial(p.Model, map[string]float64{"multiplier/remote/project": 2}), 8000) {
+			t.Errorf("%s: the model does not follow the multiplier", c.name)
+		}
+	}
+}
+
+func TestNotes(t *testing.T) {
+	old := rate("old", ratebook.Erection, ratebook.DeliveredTonnes, 5)
+	old.ValidUntil = "2026-05-31"
+	fresh := rate("fresh", ratebook.Shipping, ratebook.DeliveredTonnes, 5)
+	fresh.ValidUntil = "2026-06-01"
+	zinc := rate("zinc", ratebook.Coating, ratebook.ZincKilograms, 5)
+	zinc.ValidUntil = "2020-01-01" // not used, so not noted
+	r := euros(t, old, fresh, zinc, rate("fee", ratebook.Margin, ratebook.CostOf, 0.1, ratebook.Coating))
+	items := []takeoff.Item{item(t, "A", tonnes, "40.000"), item(t, "B", tonnes, "10.000")}
+	p := price(t, items, r)
+	if diff := cmp.Diff([]string{"no-quantity rate/zinc", "expired rate/old", "no-quantity rate/fee"}, codes(p.Notes)); diff != "" {
+		t.Error(diff)
+	}
+	message := func(p Priced) string {
+		for _, n := range p.Notes {
+			if n.Code == "expired" {
+				return n.Message
+			}
+		}
+		return ""
+	}
+	if m := message(p); !strings.Contains(m, "2026-05-31") || !strings.Contains(m, "as it stands") {
+		t.Errorf("got %q", m)
+	}
+	r.Escalation = map[string][]Conversion{ratebook.Erection: {{Name: "escalation to base date", ID: "index/erection", Value: decimal(t, "1.1"), Spread: spread.NewFixed(1.1)}}}
+	if m := message(price(t, items, r)); !strings.Contains(m, "escalated") {
+		t.Errorf("got %q", m)
+	}
+	missing := 0
+	for _, n := range p.Notes {
+		if n.Code == "no-rate" {
+			missing++
+		}
+	}
+	if want := len(ratebook.Categories()) - 4; missing != want {
+		t.Errorf("%d categories without a rate are noted, want %d", missing, want)
+	}
+}
