@@ -21,18 +21,14 @@ func newUniforms(seed uint64, kind, id string) uniforms {
 // fill sets dst, of at most blockSize, to the numbers of indices start, start + 1,
 // …, in the open interval 0 to 1. start is a multiple of 4; p is order's
 // permutation for this replicate.
-func (u uniforms) fill(dst []float64, p *permutation, replicate, start int) {
-	var places [blockSize + 3]uint32
+func (u *uniforms) fill(dst []float64, p *permutation, replicate, start int) {
+	var places [blockSize]uint32
 	var words [blockSize + 3]uint32
 	p.places(places[:len(dst)], start)
-	for i := 0; i < len(dst); i += 4 {
-		w := words[i : i+4]
-		w[0], w[1], w[2], w[3] = u.place.words(uint32(replicate), uint32((start+i)/4))
-	}
-	step := 1 / float64(p.n)
-	for i := range dst {
-		inside := (float64(words[i]) + 0.5) * 0x1p-32
-		dst[i] = (float64(places[i]) + inside) * step
+	u.place.fill(words[:(len(dst)+3)&^3], uint32(replicate), uint32(start/4))
+	step := 1 / float64(p.n) * 0x1p-32
+	for i := range dst { // place and the middle of the word's interval: below 2⁵², exact
+		dst[i] = (float64(int64(uint64(places[i])<<32|uint64(words[i]))) + 0.5) * step
 	}
 }
 
@@ -46,17 +42,22 @@ const rounds = 6
 type permutation struct {
 	n     uint32
 	half  uint32
-	table []uint16 // rounds tables of 2^half entries
+	table []uint16            // rounds tables of 2^half entries
+	bytes *[rounds][256]uint8 // the same where half is at most 8, else nil
 }
 
 // newPermutation returns storage for permutations of 0 to n − 1, 16 ≤ n ≤ 2³².
 func newPermutation(n int) permutation {
 	half := uint32(bits.Len(uint(n-1))+1) / 2
-	return permutation{n: uint32(n), half: half, table: make([]uint16, max(rounds<<half, 8))}
+	p := permutation{n: uint32(n), half: half, table: make([]uint16, max(rounds<<half, 8))}
+	if half <= 8 {
+		p.bytes = new([rounds][256]uint8)
+	}
+	return p
 }
 
 // draw fills the tables from a stream for one replicate.
-func (p *permutation) draw(s stream, replicate int) {
+func (p *permutation) draw(s *stream, replicate int) {
 	mask := uint32(1)<<p.half - 1
 	for i := 0; i < len(p.table); i += 8 {
 		a, b, c, d := s.words(uint32(replicate), uint32(i/8))
@@ -64,10 +65,19 @@ func (p *permutation) draw(s stream, replicate int) {
 			p.table[i+2*j], p.table[i+2*j+1] = uint16(w&mask), uint16(w>>16&mask)
 		}
 	}
+	if p.bytes != nil {
+		for i, v := range p.table[:rounds<<p.half] {
+			p.bytes[i>>p.half][i&int(mask)] = uint8(v)
+		}
+	}
 }
 
 // places sets dst to the places of indices start, start + 1, …, all below n.
 func (p *permutation) places(dst []uint32, start int) {
+	if p.bytes != nil {
+		p.bytePlaces(dst, start)
+		return
+	}
 	t, n, half := p.table, p.n, p.half&15
 	size := uint32(1) << half
 	for k := range dst {
@@ -86,5 +96,34 @@ func (p *permutation) places(dst []uint32, start int) {
 			}
 		}
 		dst[k] = i
+	}
+}
+
+// bytePlaces is places on byte tables, whose indices need no test. The high half
+// of an index is constant along a row of the network.
+func (p *permutation) bytePlaces(dst []uint32, start int) {
+	t, n, half := p.bytes, p.n, p.half&15
+	mask := uint32(1)<<half - 1
+	for k := 0; k < len(dst); {
+		first := uint32(start + k)
+		row := dst[k:min(len(dst), k+int(mask-first&mask)+1)]
+		k += len(row)
+		high := uint8(first >> half)
+		for j := range row {
+			l, r := high, uint8(first&mask)+uint8(j)
+			for {
+				l ^= t[0][r]
+				r ^= t[1][l]
+				l ^= t[2][r]
+				r ^= t[3][l]
+				l ^= t[4][r]
+				r ^= t[5][l]
+				i := uint32(l)<<half | uint32(r)
+				if i < n {
+					row[j] = i
+					break
+				}
+			}
+		}
 	}
 }

@@ -12,7 +12,7 @@ import (
 // column returns all uniforms of one id in a replicate.
 func column(seed uint64, id string, n, replicate int) []float64 {
 	u, p, out := newUniforms(seed, "assumption", id), newPermutation(n), make([]float64, n)
-	p.draw(u.order, replicate)
+	p.draw(&u.order, replicate)
 	for start := 0; start < n; start += blockSize {
 		u.fill(out[start:min(start+blockSize, n)], &p, replicate, start)
 	}
@@ -22,7 +22,8 @@ func column(seed uint64, id string, n, replicate int) []float64 {
 func TestPermutationHitsEachPlaceOnce(t *testing.T) {
 	for _, n := range []int{16, 17, 100, 255, 256, 257, 1000, 4096, 5000, 1 << 16, MaxTrials} {
 		p := newPermutation(n)
-		p.draw(newStream(7, "order", "x"), 3)
+		s := newStream(7, "order", "x")
+		p.draw(&s, 3)
 		seen := make([]bool, n)
 		places := make([]uint32, n)
 		p.places(places, 0)
@@ -55,7 +56,7 @@ func TestUniformsAreStratified(t *testing.T) {
 func TestUniformsDoNotDependOnBlocks(t *testing.T) {
 	want := column(9, "a", 4096, 5)
 	u, p := newUniforms(9, "assumption", "a"), newPermutation(4096)
-	p.draw(u.order, 5)
+	p.draw(&u.order, 5)
 	for _, block := range []int{4, 64, 100} {
 		got := make([]float64, 4096)
 		for start := 0; start < len(got); start += block {
@@ -102,22 +103,17 @@ func values(t *testing.T, m pricing.Model, s Settings) [][]float64 {
 	if err != nil {
 		t.Fatal(err)
 	}
-	p, err := compile(m, s)
+	p, err := compile(m, s, purpose{})
 	if err != nil {
 		t.Fatal(err)
 	}
 	w := newSimulation(p, s).newWorker()
 	out := make([][]float64, len(m.Inputs))
 	for r := range s.Replicates {
-		for i := range w.orders {
-			w.orders[i].draw(p.inputs[i].draws.order, r)
-		}
-		for i := range w.common {
-			w.common[i].draw(p.groups[i].draws.order, r)
-		}
+		w.begin(r)
 		for start := 0; start < s.Trials; start += blockSize {
 			n := min(blockSize, s.Trials-start)
-			w.draw(r, start, n)
+			w.draw(start, n)
 			for i := range out {
 				out[i] = append(out[i], w.columns.values[i][:n]...)
 			}

@@ -9,7 +9,9 @@ const blockSize = 256
 // columns holds one block of trials: a column for each input, and the results.
 type columns struct {
 	values     [][]float64 // input × trial
+	occurs     [][]float64 // risk × trial: 1 where it occurs, else 0
 	categories [][]float64 // category × trial, with the overall factors
+	risks      [][]float64 // risk × trial: its cost
 	total      []float64
 	product    []float64
 	overall    []float64
@@ -19,7 +21,9 @@ type columns struct {
 func (p *program) newColumns(n int) *columns {
 	return &columns{
 		values:     matrix(len(p.inputs), n),
+		occurs:     matrix(len(p.risks), n),
 		categories: matrix(len(p.categories), n),
+		risks:      matrix(len(p.risks), n),
 		total:      make([]float64, n),
 		product:    make([]float64, n),
 		overall:    make([]float64, n),
@@ -36,19 +40,15 @@ func matrix(rows, n int) [][]float64 {
 	return m
 }
 
-// evaluate computes categories and total of the first n trials from the values.
+// evaluate computes categories, risks and total of the first n trials from the
+// values and occurrences.
 func (p *program) evaluate(c *columns, n int) {
 	for _, col := range c.categories {
 		clear(col[:n])
 	}
-	product := c.product[:n]
 	for i := range p.terms {
 		t := &p.terms[i]
-		multiply(product, t.coefficient, t.factors, c.values)
-		sum := c.categories[t.category][:n]
-		for k, v := range product {
-			sum[k] += v
-		}
+		t.addTo(c.categories[t.category][:n], c.product[:n], c.values)
 	}
 	overall, total := c.overall[:n], c.total[:n]
 	multiply(overall, 1, p.overall, c.values)
@@ -61,23 +61,97 @@ func (p *program) evaluate(c *columns, n int) {
 			total[k] += x
 		}
 	}
-}
-
-// multiply sets dst to coefficient · Π (offset + value).
-func multiply(dst []float64, coefficient float64, factors []pricing.Factor, values [][]float64) {
-	for k := range dst {
-		dst[k] = coefficient
-	}
-	for _, f := range factors {
-		x := values[f.Input][:len(dst)]
-		offset := f.Offset
+	for i := range p.risks {
+		x, occurs, cost := c.values[p.risks[i].impact][:n], c.occurs[i][:n], c.risks[i][:n]
 		for k, v := range x {
-			dst[k] *= offset + v
+			cost[k] = float64(v * occurs[k])
+			total[k] += cost[k]
 		}
 	}
 }
 
-// base evaluates the model at its base values: the total and each category.
+// addTo adds the values of t to dst; product is storage of the same length. The
+// shortest products take one pass: the same operations in the same order.
+func (t *term) addTo(dst, product []float64, values [][]float64) {
+	f := t.factors
+	switch {
+	case t.plain() && len(f) == 1:
+		addOne(dst, t.coefficient, f[0].Offset, values[f[0].Input])
+	case t.plain() && len(f) == 2:
+		addTwo(dst, t.coefficient, f[0].Offset, f[1].Offset, values[f[0].Input], values[f[1].Input])
+	default:
+		t.value(product, values)
+		for k, v := range product {
+			dst[k] += v
+		}
+	}
+}
+
+// addOne adds c·(o + x) to dst.
+func addOne(dst []float64, c, o float64, x []float64) {
+	x = x[:len(dst)]
+	for k, v := range x {
+		dst[k] += float64(c * (o + v))
+	}
+}
+
+// addTwo adds c·(o + x)·(q + y) to dst.
+func addTwo(dst []float64, c, o, q float64, x, y []float64) {
+	x, y = x[:len(dst)], y[:len(dst)]
+	for k, v := range x {
+		dst[k] += float64(float64(c*(o+v)) * (q + y[k]))
+	}
+}
+
+// value sets dst to the values of t.
+func (t *term) value(dst []float64, values [][]float64) {
+	multiply(dst, t.coefficient, t.factors, values)
+	if t.least > 0 {
+		for k, v := range dst {
+			if v < t.least {
+				dst[k] = t.least
+			}
+		}
+	}
+	timesAll(dst, t.after, values)
+}
+
+// multiply sets dst to coefficient · Π (offset + value), multiplied from left to
+// right.
+func multiply(dst []float64, coefficient float64, factors []pricing.Factor, values [][]float64) {
+	if len(factors) == 0 {
+		for k := range dst {
+			dst[k] = coefficient
+		}
+		return
+	}
+	o, x := factors[0].Offset, values[factors[0].Input][:len(dst)]
+	for k, v := range x {
+		dst[k] = coefficient * (o + v)
+	}
+	timesAll(dst, factors[1:], values)
+}
+
+// timesAll multiplies dst by Π (offset + value) from left to right, three factors
+// in each pass over dst.
+func timesAll(dst []float64, f []pricing.Factor, values [][]float64) {
+	for ; len(f) >= 3; f = f[3:] {
+		o, q, s := f[0].Offset, f[1].Offset, f[2].Offset
+		x, y, z := values[f[0].Input][:len(dst)], values[f[1].Input][:len(dst)], values[f[2].Input][:len(dst)]
+		for k, v := range x {
+			dst[k] = float64(float64(dst[k]*(o+v))*(q+y[k])) * (s + z[k])
+		}
+	}
+	for _, g := range f {
+		o, x := g.Offset, values[g.Input][:len(dst)]
+		for k, v := range x {
+			dst[k] *= o + v
+		}
+	}
+}
+
+// base evaluates the model at its base values, no risk occurring: the total and
+// each category.
 func (p *program) base() (float64, []float64) {
 	c := p.newColumns(1)
 	for i := range p.inputs {

@@ -12,11 +12,15 @@ import (
 // expected compiles m and returns the expectation of its total.
 func expected(t *testing.T, m pricing.Model, s Settings) float64 {
 	t.Helper()
-	p, err := compile(m, s)
+	p, err := compile(m, s, purpose{})
 	if err != nil {
 		t.Fatal(err)
 	}
-	return p.expectedTotal()
+	total, why := p.expectedTotal()
+	if why != "" {
+		t.Fatal(why)
+	}
+	return total
 }
 
 // Closed form: for lognormal X, Y with medians 1, deviations s, q of the
@@ -96,7 +100,7 @@ func TestMomentCheckFindsBias(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		p, err := compile(everySpread("g"), s)
+		p, err := compile(everySpread("g"), s, purpose{})
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -104,7 +108,8 @@ func TestMomentCheckFindsBias(t *testing.T) {
 		for r := range sim.deviations {
 			sim.deviations[r][1] = c.shift * math.Sqrt(p.inputs[1].sampler.Variance()/(32*64))
 		}
-		res := Result{Mean: p.expectedTotal()}
+		expected, _ := p.expectedTotal()
+		res := Result{Mean: expected}
 		err = sim.check(&res)
 		if (err != nil) != (c.wantError != "") || err != nil && !strings.Contains(err.Error(), "b triangular") {
 			t.Errorf("shift %v: error %v, want %q", c.shift, err, c.wantError)

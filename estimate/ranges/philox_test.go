@@ -18,7 +18,8 @@ func TestPhiloxKnownAnswers(t *testing.T) {
 		{[4]uint32{ones, ones, ones, ones}, [2]uint32{ones, ones}, "408f276d 41c83b0e a20bc7c6 6d5451fd"},
 		{[4]uint32{0x243f6a88, 0x85a308d3, 0x13198a2e, 0x03707344}, [2]uint32{0xa4093822, 0x299f31d0}, "d16cfe09 94fdcceb 5001e420 24126ea1"},
 	} {
-		a, b, x, y := philox(c.counter[0], c.counter[1], c.counter[2], c.counter[3], c.key[0], c.key[1])
+		keys := newPhiloxKeys(c.key[0], c.key[1])
+		a, b, x, y := philox(c.counter[0], c.counter[1], c.counter[2], c.counter[3], &keys)
 		if got := fmt.Sprintf("%08x %08x %08x %08x", a, b, x, y); got != c.want {
 			t.Errorf("counter %x, key %x: %s, want %s", c.counter, c.key, got, c.want)
 		}
@@ -43,7 +44,7 @@ func TestStreamsDiffer(t *testing.T) {
 
 func BenchmarkUniforms(b *testing.B) {
 	u, p, dst := newUniforms(1, "assumption", "a"), newPermutation(4096), make([]float64, blockSize)
-	p.draw(u.order, 0)
+	p.draw(&u.order, 0)
 	b.ReportAllocs()
 	for b.Loop() {
 		u.fill(dst, &p, 0, 512)

@@ -15,6 +15,8 @@ type program struct {
 	terms      []term
 	overall    []pricing.Factor
 	categories []string // in order of first appearance
+	risks      []risk
+	matrix     *mixing // nil without a correlation matrix
 }
 
 // input is one assumption with its sampler and random numbers.
@@ -22,7 +24,8 @@ type input struct {
 	id      string
 	sampler spread.Sampler
 	draws   uniforms
-	group   int // index of groups, −1 for independent
+	group   int // index of groups, −1 for none
+	row     int // row of the correlation matrix, −1 for none
 }
 
 // group is a correlation group: z = √r·Z + √(1−r)·e with one common factor Z, so
@@ -40,6 +43,25 @@ type term struct {
 	category    int
 	coefficient float64
 	factors     []pricing.Factor
+	least       float64
+	after       []pricing.Factor
+}
+
+// plain reports whether t is a bare product.
+func (t *term) plain() bool { return t.least == 0 && len(t.after) == 0 }
+
+// risk is a pricing.Risk with the random numbers of its occurrence.
+type risk struct {
+	id          string
+	probability float64
+	impact      int
+	draws       uniforms
+}
+
+// purpose says what a model is compiled for.
+type purpose struct {
+	latents bool // fixed inputs keep their group: their spread may change
+	joint   bool // ids of the matrix may be missing: another model has them
 }
 
 // Limits of a model.
@@ -47,10 +69,11 @@ const (
 	MaxInputs     = 20_000
 	MaxTerms      = 1_000_000
 	MaxCategories = 32
+	MaxRisks      = 1000
 )
 
 // compile validates m under s; the error names the part at fault.
-func compile(m pricing.Model, s Settings) (*program, error) {
+func compile(m pricing.Model, s Settings, use purpose) (*program, error) {
 	if len(m.Terms) == 0 || len(m.Terms) > MaxTerms {
 		return nil, fault("model.terms", len(m.Terms), fmt.Sprintf("1 to %d terms", MaxTerms))
 	}
@@ -58,10 +81,20 @@ func compile(m pricing.Model, s Settings) (*program, error) {
 		return nil, fault("model.inputs", len(m.Inputs), fmt.Sprintf("at most %d inputs", MaxInputs))
 	}
 	p := &program{overall: m.Overall}
-	if err := p.addInputs(m.Inputs, s); err != nil {
+	var err error
+	if p.matrix, err = s.Matrix.compile(s.Seed); err != nil {
+		return nil, err
+	}
+	if err := p.addInputs(m.Inputs, s, use); err != nil {
+		return nil, err
+	}
+	if err := p.matrix.checkKnown(m.Inputs, use); err != nil {
 		return nil, err
 	}
 	if err := p.addTerms(m.Terms); err != nil {
+		return nil, err
+	}
+	if err := p.addRisks(m.Risks, s.Seed); err != nil {
 		return nil, err
 	}
 	if err := p.checkFactors("model.overall", m.Overall); err != nil {
@@ -70,8 +103,8 @@ func compile(m pricing.Model, s Settings) (*program, error) {
 	return p, nil
 }
 
-// addInputs compiles spreads and groups.
-func (p *program) addInputs(inputs []pricing.Input, s Settings) error {
+// addInputs compiles spreads and groups. An input in the matrix leaves its group.
+func (p *program) addInputs(inputs []pricing.Input, s Settings, use purpose) error {
 	index := map[string]int{}
 	for i, in := range inputs {
 		where := fmt.Sprintf("model.inputs[%d] %q", i, in.ID)
@@ -82,25 +115,27 @@ func (p *program) addInputs(inputs []pricing.Input, s Settings) error {
 		if err != nil {
 			return fmt.Errorf("ranges: %s: %w", where, err)
 		}
-		next := input{id: in.ID, sampler: sampler, draws: newUniforms(s.Seed, "assumption", in.ID), group: -1}
+		next := input{id: in.ID, sampler: sampler, draws: newUniforms(s.Seed, "assumption", in.ID), group: -1, row: p.matrix.row(in.ID)}
 		if in.Group != "" {
 			rho, ok := s.Correlation[in.Group]
-			if !ok {
+			if !ok && next.row < 0 {
 				return fault(where+" group", fmt.Sprintf("%q", in.Group), fmt.Sprintf("a group of the settings' correlation: %q", sortedKeys(s.Correlation)))
 			}
 			if _, ok := index[in.Group]; !ok {
 				index[in.Group] = len(p.groups)
 				p.groups = append(p.groups, newGroup(s.Seed, in.Group, rho))
 			}
-			next.group = index[in.Group]
-			if !sampler.Fixed() {
+			if next.row < 0 {
+				next.group = index[in.Group]
+			}
+			if next.row < 0 && !sampler.Fixed() {
 				p.groups[next.group].members++
 			}
 		}
 		p.inputs = append(p.inputs, next)
 	}
 	for i := range p.inputs {
-		if g := p.inputs[i].group; g >= 0 && (p.groups[g].rho == 0 || p.inputs[i].sampler.Fixed()) {
+		if g := p.inputs[i].group; g >= 0 && (p.groups[g].rho == 0 || p.inputs[i].sampler.Fixed() && !use.latents) {
 			p.inputs[i].group = -1
 		}
 	}
@@ -123,17 +158,44 @@ func (p *program) addTerms(terms []pricing.Term) error {
 		if !isFinite(t.Coefficient) {
 			return fault(where+" coefficient", t.Coefficient, "a finite number")
 		}
+		if !(t.Least >= 0 && isFinite(t.Least)) {
+			return fault(where+" least", t.Least, "0 for none, or a finite number above it")
+		}
 		if err := p.checkFactors(where, t.Factors); err != nil {
+			return err
+		}
+		if err := p.checkFactors(where+" after", t.After); err != nil {
 			return err
 		}
 		if _, ok := index[t.Category]; !ok {
 			index[t.Category] = len(p.categories)
 			p.categories = append(p.categories, t.Category)
 		}
-		p.terms = append(p.terms, term{category: index[t.Category], coefficient: t.Coefficient, factors: t.Factors})
+		p.terms = append(p.terms, term{index[t.Category], t.Coefficient, t.Factors, t.Least, t.After})
 	}
 	if len(p.categories) > MaxCategories {
 		return fault("model.terms", fmt.Sprintf("%d categories", len(p.categories)), fmt.Sprintf("at most %d", MaxCategories))
+	}
+	return nil
+}
+
+// addRisks checks the discrete risks and keys their streams.
+func (p *program) addRisks(risks []pricing.Risk, seed uint64) error {
+	if len(risks) > MaxRisks {
+		return fault("model.risks", len(risks), fmt.Sprintf("at most %d risks", MaxRisks))
+	}
+	for i, r := range risks {
+		where := fmt.Sprintf("model.risks[%d] %q", i, r.ID)
+		if r.ID == "" || i > 0 && r.ID <= risks[i-1].ID {
+			return fault(where, "its id empty, repeated or out of order", "ids that rise")
+		}
+		if !(0 <= r.Probability && r.Probability <= 1) {
+			return fault(where+" probability", r.Probability, "0 to 1")
+		}
+		if r.Impact < 0 || r.Impact >= len(p.inputs) {
+			return fault(where+" impact", r.Impact, fmt.Sprintf("an input, 0 to %d", len(p.inputs)-1))
+		}
+		p.risks = append(p.risks, risk{r.ID, r.Probability, r.Impact, newUniforms(seed, "risk", r.ID)})
 	}
 	return nil
 }

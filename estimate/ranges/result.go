@@ -21,6 +21,15 @@ type CategoryRange struct {
 	Category      string
 	Base, Mean    float64 // major units, overall factors included
 	P10, P50, P90 float64
+	Share         float64 // covariance with the total over the total's variance; 0 where nothing varies
+}
+
+// RiskRange is what one discrete risk adds to the total.
+type RiskRange struct {
+	ID        string
+	Mean      float64 // of its cost over all trials, in major units
+	Frequency float64 // share of the trials in which it occurs
+	Share     float64 // covariance with the total over the total's variance; 0 where nothing varies
 }
 
 // Warning is a note about the result that belongs into its document.
@@ -34,6 +43,7 @@ const (
 	WarningMoments      = "moment-check" // a sample mean beyond 4 standard errors
 	WarningUncorrelated = "uncorrelated" // a group with ρ = 0, or no correlation at all
 	WarningUnusedGroup  = "unused-group" // a correlation that no input takes
+	WarningRepaired     = "repaired"     // a matrix that was not positive definite
 )
 
 // Result is the range of a total, in major units of the model's currency.
@@ -43,21 +53,25 @@ type Result struct {
 	Mean, MeanSE       float64 // pooled mean and its standard error between replicates
 	SD                 float64 // standard deviation of one total
 	Percentiles        []Percentile
+	Replicated         [][]float64     // replicate × Percentiles: the percentiles of each replicate alone
 	BasePercentile     float64         // probability, 0 to 1, that the total does not exceed Base
 	Curve              []float64       // pooled type-7 quantiles at 0, 1, …, 100 %
 	Categories         []CategoryRange // in the order in which the model's terms name them
+	Risks              []RiskRange     // by id; shares of categories and risks add to 1
 	Warnings           []Warning
-	Moments            []MomentCheck // one for each spread that is not fixed, then the total
+	Moments            []MomentCheck // spreads that are not fixed, risks, then the total where MomentMethod says so
+	MomentMethod       string        // what was checked and how
+	Sensitivities      []Sensitivity // by falling narrowing, then id; nil unless asked for
 }
 
 // summarise pools the replicates.
 func (sim *simulation) summarise(ctx context.Context) (Result, error) {
 	n := len(sim.totals)
-	base, categories := sim.p.base()
+	base := sim.base
 	if !isFinite(base) {
 		return Result{}, fault("model", fmt.Sprintf("a total of %v at base values", base), "coefficients and spreads whose products stay finite")
 	}
-	res := Result{Trials: sim.s.Trials, Replicates: sim.s.Replicates, Base: base}
+	res := Result{Trials: sim.s.Trials, Replicates: sim.s.Replicates, Base: base, Replicated: sim.percentile}
 	res.Mean = sum(sim.means, 0) / float64(len(sim.means))
 	res.MeanSE = standardError(sim.s.Replicates, func(r int) float64 { return sim.means[r] })
 	var squares float64
@@ -82,7 +96,9 @@ func (sim *simulation) summarise(ctx context.Context) (Result, error) {
 	if err := ctx.Err(); err != nil {
 		return Result{}, err
 	}
-	res.Categories = sim.categoryRanges(categories)
+	res.Categories, res.Risks = sim.categoryRanges(sim.bases), sim.riskRanges()
+	sim.share(&res)
+	res.Sensitivities = sim.sensitivities()
 	if err := sim.check(&res); err != nil {
 		return Result{}, err
 	}

@@ -15,7 +15,11 @@ type Settings struct {
 	Trials      int                // trials per replicate, 16 to 262144; default 4096
 	Percentiles []float64          // probabilities, 0 < P < 1; default 0.1, 0.5, 0.8, 0.9
 	Correlation map[string]float64 // group → Spearman's rank correlation ρ, 0 ≤ ρ < 1
+	Matrix      *Matrix            // correlations by assumption beside the groups; nil for none
 	Workers     int                // goroutines; default GOMAXPROCS; no influence on the result
+
+	// Sensitivities asks for Result.Sensitivities, which SensitivityMethod explains.
+	Sensitivities bool
 }
 
 // Limits and defaults of Settings.

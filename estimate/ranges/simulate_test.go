@@ -173,9 +173,33 @@ func TestTenLines(t *testing.T) {
 	}
 }
 
+// Source: a program of NumPy's PCG64 and SciPy's distributions, seed 1, 1,000,000
+// trials by plain sampling with a Gaussian copula; its standard errors are
+// σ/√n for the mean, σ/√(2n) for the deviation of a near-normal sum, and
+// √(p(1−p)/n)/f with the normal density f for percentiles. Ours at 131,072 trials.
+func TestPeerCase(t *testing.T) {
+	const n, mean, sd = 1e6, 18376419.3, 1217245.9
+	density := func(z float64) float64 { return math.Exp(-z*z/2) / math.Sqrt(2*math.Pi) / sd }
+	for _, dense := range []bool{false, true} {
+		m, s := peerModel("g"), peerSettings(dense)
+		if dense {
+			m = peerModel("")
+		}
+		s.Replicates, s.Trials = 32, 4096
+		r := simulate(t, m, s)
+		within(t, "mean", r.Mean, math.Hypot(r.MeanSE, sd/math.Sqrt(n)), mean, 0)
+		within(t, "sd", r.SD, sd*math.Sqrt(1/(2*n)+1.0/(2*131072)), sd, 0)
+		for i, c := range []struct{ z, want float64 }{{-1.28155, 16827053.4}, {0, 18336415.6}, {0.841621, 19411981.1}, {1.28155, 19980602.6}} {
+			p := r.Percentiles[i]
+			within(t, fmt.Sprintf("dense %v P%.0f", dense, 100*p.P), p.Value, math.Hypot(p.SE, math.Sqrt(p.P*(1-p.P)/n)/density(c.z)), c.want, 0)
+		}
+	}
+}
+
 func TestSameBitsOnAnyNumberOfCores(t *testing.T) {
-	m := job(23, "g")
-	s := Settings{Seed: 8, Trials: 700, Correlation: map[string]float64{"g": 0.4}}
+	m := tangled()
+	s := Settings{Seed: 8, Trials: 700, Correlation: map[string]float64{"g": 0.4}, Sensitivities: true,
+		Matrix: symmetric([]string{m.Inputs[4].ID, m.Inputs[7].ID}, nil, []float64{-0.3})}
 	old := runtime.GOMAXPROCS(1)
 	defer runtime.GOMAXPROCS(old)
 	want := simulate(t, m, s)
@@ -201,32 +225,66 @@ func TestPrintedDigits(t *testing.T) {
 	}
 }
 
-// A standard error is honest when (value − truth)/SE behaves like Student's t with
-// 31 degrees of freedom: 95 % within 2.04, mean square 31/29. Truth by convolution.
+// The same for what the first does not reach: a matrix, repaired, minimum charges,
+// risks and sensitivities.
+func TestPrintedDigitsOfTheRest(t *testing.T) {
+	m := tangled()
+	mx := symmetric([]string{m.Inputs[4].ID, m.Inputs[7].ID, m.Inputs[8].ID}, nil, []float64{0.9}, []float64{0.9, 0.58})
+	r := simulate(t, m, Settings{Seed: 8, Trials: 256, Correlation: map[string]float64{"g": 0.4}, Matrix: mx, Sensitivities: true})
+	s := r.Sensitivities[1]
+	got := fmt.Sprintf("%.12g %.12g %.12g %.12g %.12g %s %.12g %.12g %.12g %.12g", r.Mean, r.SD, r.Percentiles[2].Value, r.Risks[2].Share, r.Categories[3].Share, s.ID, s.Share, s.Swing, s.Narrowing, s.NarrowingSE)
+	if want := "13580859.5782 19720212.5683 31809150.4669 3.57433266549e-05 4.59628962287e-05 rate 00008 0.267822377219 6031985.36799 4770745.419 368629.951328"; got != want {
+		t.Errorf("got  %s\nwant %s", got, want)
+	}
+}
+
+// A standard error is honest when (value − truth)/SE, but for the widening, behaves
+// like Student's t with 31 degrees of freedom: 95 % within 1.96, mean square 31/29
+// of the unwidened. Truth by convolution. Over 200 seeds 93 to 97 % of the
+// percentiles lie within 1.96 (the project's brief).
 func TestStandardErrorsAreHonest(t *testing.T) {
-	const seeds = 120
+	const seeds = 200
 	truth := sumOf(threeLines, LatentCorrelation(0.5), 0.25)
-	inside, squares := make([]int, 3), make([]float64, 3)
+	names := []string{"P10", "P50", "P80", "P90", "mean"}
+	inside, squares := make([]int, len(names)), make([]float64, len(names))
 	for seed := range seeds {
-		r := simulate(t, sumModel(threeLines, "g"), Settings{Seed: uint64(1000 + seed), Trials: 512, Correlation: map[string]float64{"g": 0.5}, Percentiles: []float64{0.5, 0.8}})
-		for i, z := range []float64{
-			(r.Mean - truth.mean) / r.MeanSE,
-			(r.Percentiles[0].Value - truth.quantile(0.5)) / r.Percentiles[0].SE,
-			(r.Percentiles[1].Value - truth.quantile(0.8)) / r.Percentiles[1].SE,
-		} {
-			squares[i] += z * z / seeds * 29 / 31
-			if math.Abs(z) < 2.04 {
+		r := simulate(t, sumModel(threeLines, "g"), Settings{Seed: uint64(1000 + seed), Trials: 1024, Correlation: map[string]float64{"g": 0.5}})
+		z := []float64{0, 0, 0, 0, (r.Mean - truth.mean) / r.MeanSE}
+		for i, p := range r.Percentiles {
+			z[i] = (p.Value - truth.quantile(p.P)) / p.SE
+		}
+		for i, v := range z {
+			squares[i] += v * v / seeds * 29 / 31 * widening(32) * widening(32)
+			if math.Abs(v) < 1.96 {
 				inside[i]++
 			}
 		}
 	}
-	for i, name := range []string{"mean", "P50", "P80"} {
-		// 114 expected, standard deviation 2.4; mean square 1, standard deviation 0.13.
-		if inside[i] < 105 || inside[i] == seeds {
-			t.Errorf("%s: %d of %d within 95 %% limits", name, inside[i], seeds)
+	percentiles := 0
+	for i, name := range names {
+		// 190 of 200 expected, standard deviation 3.1; mean square 1, deviation 0.1.
+		if inside[i] < 176 || inside[i] == seeds {
+			t.Errorf("%s: %d of %d within 1.96", name, inside[i], seeds)
 		}
-		if math.Abs(squares[i]-1) > 0.45 {
+		if math.Abs(squares[i]-1) > 0.4 {
 			t.Errorf("%s: mean square of the standardised error %.2f, want 1", name, squares[i])
+		}
+		if name != "mean" {
+			percentiles += inside[i]
+		}
+	}
+	t.Logf("percentiles within 1.96 standard errors: %.2f %%", float64(percentiles)/(4*seeds)*100)
+	if share := float64(percentiles) / (4 * seeds); !(0.93 <= share && share <= 0.97) {
+		t.Errorf("%.1f %% of the percentiles within 1.96 standard errors, want 93 to 97", 100*share)
+	}
+}
+
+// Source: table of Student's t, two-sided 5 %: 12.706, 2.0930, 2.0395 for 1, 19, 31
+// degrees of freedom (any handbook of statistics).
+func TestWidening(t *testing.T) {
+	for n, want := range map[int]float64{2: 12.706, 20: 2.0930, 32: 2.0395} {
+		if got := widening(n) * 1.959964; math.Abs(got/want-1) > 5e-5 {
+			t.Errorf("%d replicates: t = %v, want %v", n, got, want)
 		}
 	}
 }
@@ -272,7 +330,7 @@ func TestOneCategoryIsTheTotal(t *testing.T) {
 	}
 	r := simulate(t, m, Settings{Seed: 6, Trials: 300, Percentiles: []float64{0.1, 0.5, 0.9}})
 	got := r.Categories[0]
-	want := CategoryRange{"fabrication", r.Base, got.Mean, r.Percentiles[0].Value, r.Percentiles[1].Value, r.Percentiles[2].Value}
+	want := CategoryRange{"fabrication", r.Base, got.Mean, r.Percentiles[0].Value, r.Percentiles[1].Value, r.Percentiles[2].Value, 1}
 	if got != want {
 		t.Errorf("got %+v, want %+v", got, want)
 	}

@@ -7,20 +7,25 @@ import "math"
 // + r; 2^(k/64) by table and exponent bits, e^r by its series. Relative error
 // below 1e-15; outside of ±700 the library's.
 func exp(x float64) float64 {
-	if !(-700 < x && x < 700) {
+	if !(-expEdge < x && x < expEdge) {
 		return math.Exp(x)
 	}
-	const magic = 3 << 51 // adding it rounds to an integer in the low bits
-	shifted := float64(x*(expSteps/math.Ln2)) + magic
+	shifted := float64(x*(expSteps/math.Ln2)) + expMagic
 	k := int(int32(math.Float64bits(shifted)))
-	n := shifted - magic
+	n := shifted - expMagic
 	r := x - float64(n*ln2High) - float64(n*ln2Low)
-	series := 1 + float64(r*(1+float64(r*(1.0/2+float64(r*(1.0/6+float64(r*(1.0/24+float64(r*(1.0/120))))))))))
-	power := expTable[k&(expSteps-1)] * series
+	power := expTable[k&(expSteps-1)] * expSeries(r)
 	return math.Float64frombits(math.Float64bits(power) + uint64(k>>expStepBits)<<mantissaBits)
 }
 
+// expSeries is e^r for |r| ≤ ln 2/128.
+func expSeries(r float64) float64 {
+	return 1 + float64(r*(1+float64(r*(1.0/2+float64(r*(1.0/6+float64(r*(1.0/24+float64(r*(1.0/120))))))))))
+}
+
 const (
+	expEdge     = 700
+	expMagic    = 3 << 51 // adding it rounds to an integer in the low bits
 	expStepBits = 6
 	expSteps    = 1 << expStepBits
 	// ln 2/64 as a number of 33 bits, whose products with n are exact, and a rest.

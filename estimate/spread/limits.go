@@ -1,6 +1,7 @@
 package spread
 
 import (
+	"fmt"
 	"math"
 
 	"gonum.org/v1/gonum/mathext"
@@ -31,10 +32,19 @@ func (s Spread) limits() (float64, float64, error) {
 	q10, q90 := percentiles(p)
 	width := (s.High - s.Low) / (q90 - q10)
 	if miss := math.Abs(p - q10 - float64(want*(q90-q10))); !(miss < 1e-9) {
-		return 0, 0, fault("likely", s.Likely, string(s.Distribution)+" limits that give these percentiles; none exist")
+		return 0, 0, s.noFit()
 	}
 	a, b := s.Low-float64(width*q10), s.High+float64(width*(1-q90))
 	return min(a, s.Likely), max(b, s.Likely), nil
+}
+
+// noFit is the error of percentiles to which no distribution of the kind is fitted.
+func (s Spread) noFit() error {
+	return &Error{
+		Field:    "likely",
+		Found:    fmt.Sprintf("%.12g with P10 %.12g and P90 %.12g, which no %s distribution fits with its mode between its P10 and P90", s.Likely, s.Low, s.High, s.Distribution),
+		Accepted: fmt.Sprintf("a likely value (the mode) from %.12g to %.12g; or low and high as limits instead of percentiles", s.Low, s.High),
+	}
 }
 
 // unitTriangle returns P10 and P90 of the triangle from 0 to 1 with mode p.

@@ -57,14 +57,11 @@ func normalDensity(z float64) float64 {
 // StandardNormal returns the standard normal quantile of u, by table: absolute
 // error below 2e-9. It is −Inf at 0, +Inf at 1 and NaN outside.
 func StandardNormal(u float64) float64 {
-	p := min(u, 1-u)
-	bits := math.Float64bits(p)
-	i := bits>>restBits - firstSegment
-	if i > segments { // p < 2⁻⁵⁴, negative or NaN
+	k, t, sign := segment(u)
+	if k > segments { // below 2⁻⁵⁴, or outside of 0 to 1
 		return outerNormal(u)
 	}
-	t := float64(bits&(1<<restBits-1)) * (1.0 / (1 << restBits))
-	return math.Copysign(normalTable[i].at(t), u-0.5)
+	return withSign(normalTable[k].at(t), sign)
 }
 
 // outerNormal is StandardNormal outside of the table.
@@ -79,10 +76,52 @@ func outerNormal(u float64) float64 {
 // be at least as long.
 func FillStandardNormal(dst, u []float64) {
 	dst = dst[:len(u)]
+	table := normalTable
 	for i, v := range u {
-		dst[i] = StandardNormal(v)
+		k, t, sign := segment(v)
+		if k > segments {
+			dst[i] = outerNormal(v)
+			continue
+		}
+		dst[i] = withSign(table[k].at(t), sign)
 	}
 }
+
+// FillCorrelated sets dst[i] to common·z[i] + own·StandardNormal(u[i]): a member
+// of a group with the common factor z. dst may be u; it and z must be at least as
+// long.
+func FillCorrelated(dst, u, z []float64, common, own float64) {
+	dst, z = dst[:len(u)], z[:len(u)]
+	table := normalTable
+	for i, v := range u {
+		k, t, sign := segment(v)
+		if k > segments {
+			dst[i] = float64(common*z[i]) + float64(own*outerNormal(v))
+			continue
+		}
+		e := withSign(table[k].at(t), sign)
+		dst[i] = float64(common*z[i]) + float64(own*e)
+	}
+}
+
+// segment returns the segment of u's smaller tail, the place in it, and a number
+// with the sign of the quantile. The half of u is chosen by its bits: a branch
+// would be mispredicted every other time. Beyond the table k > segments.
+func segment(u float64) (k uint64, t float64, sign uint64) {
+	sign = math.Float64bits(u - 0.5)
+	below := uint64(int64(sign) >> 63)
+	bits := math.Float64bits(u)&below | math.Float64bits(1-u)&^below
+	t = math.Float64frombits(bits<<segmentBits&(1<<mantissaBits-1)|exponentBias<<mantissaBits) - 1 // exact
+	return bits>>restBits - firstSegment, t, sign
+}
+
+// withSign returns |z| with a sign bit.
+func withSign(z float64, sign uint64) float64 {
+	return math.Float64frombits(math.Float64bits(z)&^signBit | sign&signBit)
+}
+
+// signBit is that of a float64.
+const signBit = 1 << 63
 
 // The tables over z end at ±zEdge, beyond which the exact functions take over:
 // one draw in 1.7 million.

@@ -82,27 +82,3 @@ func (r *Sampler) outer(z float64) float64 {
 	}
 	return r.sh.quantile(t, 1-t)
 }
-
-// FillUniform sets dst[i] to FromUniform(u[i]). dst may be u; it must be at
-// least as long.
-func (r *Sampler) FillUniform(dst, u []float64) {
-	dst = dst[:len(u)]
-	switch r.sh.kind {
-	case kindPERT, kindLognormal:
-		FillStandardNormal(dst, u)
-		r.FillNormal(dst, dst)
-	default:
-		for i, v := range u {
-			dst[i] = r.FromUniform(v)
-		}
-	}
-}
-
-// FillNormal sets dst[i] to FromNormal(z[i]). dst may be z; it must be at least
-// as long.
-func (r *Sampler) FillNormal(dst, z []float64) {
-	dst = dst[:len(z)]
-	for i, v := range z {
-		dst[i] = r.FromNormal(v)
-	}
-}

@@ -199,6 +199,17 @@ func BenchmarkFill(b *testing.B) {
 	}
 }
 
+func BenchmarkStandardNormal(b *testing.B) {
+	u, dst := make([]float64, 512), make([]float64, 512)
+	for i := range u {
+		u[i] = math.Mod(float64(i)*0.6180339887, 1)*0.999 + 0.0005
+	}
+	for b.Loop() {
+		FillStandardNormal(dst, u)
+	}
+	b.ReportMetric(float64(b.Elapsed().Nanoseconds())/float64(b.N)/512, "ns/draw")
+}
+
 func BenchmarkCompilePERT(b *testing.B) {
 	b.ReportAllocs()
 	for b.Loop() {

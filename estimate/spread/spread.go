@@ -156,6 +156,9 @@ func (s Spread) checkOrder(likely bool) error {
 		return fault("high", s.High, fmt.Sprintf("at least low, %.12g", s.Low))
 	}
 	if likely && !(s.Low <= s.Likely && s.Likely <= s.High) {
+		if s.Bounds == BoundsPercentiles && (s.Distribution == Triangular || s.Distribution == PERT) {
+			return s.noFit()
+		}
 		return fault("likely", s.Likely, fmt.Sprintf("from low, %.12g, to high, %.12g", s.Low, s.High))
 	}
 	return nil

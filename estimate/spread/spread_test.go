@@ -81,6 +81,44 @@ func TestValidateNamesTheField(t *testing.T) {
 	}
 }
 
+// A mode outside of the percentiles, or one value for both with another mode.
+func TestPercentilesThatNothingFits(t *testing.T) {
+	for _, c := range []struct {
+		s    Spread
+		want string
+	}{
+		{NewTriangular(10, 7, 15), "likely: found 7 with P10 10 and P90 15, which no triangular distribution fits with its mode between its P10 and P90; accepted: a likely value (the mode) from 10 to 15; or low and high as limits"},
+		{NewPERT(10, 16, 15), "likely: found 16 with P10 10 and P90 15, which no pert distribution fits"},
+		{NewPERT(10, 12, 10), "likely: found 12 with P10 10 and P90 10, which no pert"},
+		{NewTriangular(15, 12, 10), "high: found 10; accepted: at least low, 15"},
+	} {
+		c.s.Bounds = BoundsPercentiles
+		err := c.s.Validate()
+		if err == nil || !strings.Contains(err.Error(), c.want) {
+			t.Errorf("%+v: error %v, want %q in it", c.s, err, c.want)
+		}
+	}
+}
+
+// Property: percentiles of any size and skew give limits that have them, or an
+// error; never a NaN.
+func TestPercentilesOfAnySize(t *testing.T) {
+	for _, d := range []Distribution{Triangular, PERT} {
+		for _, scale := range []float64{1e-90, 1e-9, 1, 1e9, 1e99} {
+			for _, mode := range []float64{0, 1e-12, 0.3, 1 - 1e-12, 1} {
+				s := Spread{Distribution: d, Low: scale, Likely: scale * (1 + mode*1e-3), High: scale * (1 + 1e-3), Bounds: BoundsPercentiles}
+				if err := s.Validate(); err != nil {
+					t.Errorf("%+v: %v", s, err)
+					continue
+				}
+				if p10, p90 := s.CDF(s.Low), s.CDF(s.High); !(math.Abs(p10-0.1) < 1e-6 && math.Abs(p90-0.9) < 1e-6) {
+					t.Errorf("%+v: probabilities %v and %v", s, p10, p90)
+				}
+			}
+		}
+	}
+}
+
 func TestDegenerateIsFixed(t *testing.T) {
 	for _, s := range []Spread{NewUniform(3, 3), NewTriangular(3, 3, 3), NewPERT(3, 3, 3), NewLognormal(3, 3), NewFixed(3), {Distribution: PERT, Low: 3, Likely: 3, High: 3, Bounds: BoundsPercentiles}} {
 		r, err := s.Sampler()
