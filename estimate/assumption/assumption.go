@@ -31,6 +31,7 @@ const (
 	Systemic   Kind = "systemic"   // a factor on the whole base
 	Structural Kind = "structural" // a simplification of the checks
 	Setting    Kind = "setting"    // a choice of the calculation, such as the confidence
+	Risk       Kind = "risk"       // a discrete event beside the spreads
 )
 
 // Confidence says how firmly a value is believed.
@@ -46,7 +47,7 @@ const (
 // Entry is one line of the register.
 type Entry struct {
 	ID         string         `json:"id" doc:"stable id; keys the random stream of a spread"`
-	Kind       Kind           `json:"kind" enum:"input,default,allowance,rate,multiplier,systemic,structural,setting"`
+	Kind       Kind           `json:"kind" enum:"input,default,allowance,rate,multiplier,systemic,structural,setting,risk"`
 	Statement  string         `json:"statement" doc:"what is assumed, in one sentence"`
 	Value      string         `json:"value,omitempty" doc:"the value taken, where it is not a spread"`
 	Unit       string         `json:"unit,omitempty"`

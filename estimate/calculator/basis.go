@@ -121,9 +121,9 @@ func checksOf(list []resistance.Check) []document.Check {
 	out := []document.Check{}
 	for _, c := range list {
 		d := document.Check{ID: c.ID, Clause: c.Clause, Formula: c.Formula, Demand: Number(c.Demand), Resistance: Number(c.Resistance),
-			Unit: c.Unit, Utilisation: Number(c.Utilisation), PassFail: c.PassFail, Note: c.Note, Inputs: []document.Quantity{}}
+			Unit: c.Unit, Utilisation: Number(c.Utilisation), PassFail: c.PassFail, Note: c.Note, Inputs: []document.Measure{}}
 		for _, q := range c.Inputs {
-			d.Inputs = append(d.Inputs, document.Quantity{Symbol: q.Symbol, Value: Number(q.Value), Unit: q.Unit})
+			d.Inputs = append(d.Inputs, document.Measure{Symbol: q.Symbol, Value: Number(q.Value), Unit: q.Unit})
 		}
 		out = append(out, d)
 	}

@@ -113,10 +113,10 @@ type ArrangementBase struct {
 
 // ArrangementNote is one thing assumed, left out or taken by default; values in SI.
 type ArrangementNote struct {
-	ID        string              `json:"id"`
-	Clause    string              `json:"clause"`
-	Statement string              `json:"statement"`
-	Values    []document.Quantity `json:"values" nullable:"false"`
+	ID        string             `json:"id"`
+	Clause    string             `json:"clause"`
+	Statement string             `json:"statement"`
+	Values    []document.Measure `json:"values" nullable:"false"`
 }
 
 // arrangementOf writes a candidate in kN, kNm and mm.
@@ -163,9 +163,9 @@ func partOf(r *sizing.Result) ArrangementPart {
 }
 
 func noteOf(n arrangement.Note) ArrangementNote {
-	out := ArrangementNote{ID: n.ID, Clause: n.Clause, Statement: n.Statement, Values: []document.Quantity{}}
+	out := ArrangementNote{ID: n.ID, Clause: n.Clause, Statement: n.Statement, Values: []document.Measure{}}
 	for _, q := range n.Values {
-		out.Values = append(out.Values, document.Quantity{Symbol: q.Symbol, Value: Number(q.Value), Unit: q.Unit})
+		out.Values = append(out.Values, document.Measure{Symbol: q.Symbol, Value: Number(q.Value), Unit: q.Unit})
 	}
 	return out
 }

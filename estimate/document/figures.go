@@ -12,9 +12,11 @@ import (
 //
 //	member/{mark}/check/{check}      utilisation
 //	member/{mark}/net                kg
-//	item/{item}/net|delivered|purchased
+//	item/{item}/net|delivered|purchased, item/{item}/{other driver}
 //	group/{group}/net|delivered|purchased|amount
-//	line/{item}/{category}, category/{category}, base, range, contingency
+//	line/{item}/{rate}, line/whole structure/{rate}, category/{category}
+//	base, range, contingency, tax
+//	carbon/{item}/{factor}, carbon/module/{module}, carbon/total, carbon/range
 func (d Document) Figures() map[string]string {
 	f := map[string]string{}
 	num := func(n Number) string { return fmt.Sprint(n.Rounded()) }
@@ -32,6 +34,11 @@ func (d Document) Figures() map[string]string {
 		f["item/"+it.ID+"/net"] = it.Net.String()
 		f["item/"+it.ID+"/delivered"] = it.Delivered.String()
 		f["item/"+it.ID+"/purchased"] = it.Purchased.String()
+		for _, q := range it.Quantities {
+			if q.Driver != "net tonnes" { // as drawn above; the quantity has the sizing bias
+				f[QuantityID(it.ID, q.Driver)] = q.Value.String()
+			}
+		}
 	}
 	for _, g := range d.Groups {
 		p := "group/" + assumption.Segment(g.Group)
@@ -55,5 +62,28 @@ func (d Document) Figures() map[string]string {
 		}
 	}
 	f["range"] = num(d.Range.Mean) + " " + strings.Join(p, " ")
+	if d.Totals.Tax.Sign() != 0 {
+		f["tax"] = d.Totals.Tax.String()
+	}
+	d.Carbon.figures(f)
 	return f
+}
+
+// figures adds those of carbon.
+func (c *Carbon) figures(f map[string]string) {
+	if c == nil {
+		return
+	}
+	f["carbon/total"] = c.Total.String()
+	p := []string{fmt.Sprint(c.Mean.Rounded())}
+	for _, q := range c.Percentiles {
+		p = append(p, fmt.Sprint(q.Value.Rounded()))
+	}
+	f["carbon/range"] = strings.Join(p, " ")
+	for _, m := range c.Modules {
+		f["carbon/module/"+m.Module] = m.Amount.String()
+	}
+	for _, l := range c.Lines {
+		f[l.ID] = l.Amount.String()
+	}
 }

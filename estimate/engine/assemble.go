@@ -2,12 +2,16 @@ package engine
 
 import (
 	"fmt"
+	"math"
+	"strconv"
 	"strings"
 
 	"spanwright/estimate/document"
 	"spanwright/estimate/job"
 	"spanwright/estimate/money"
+	"spanwright/estimate/ranges"
 	"spanwright/estimate/ratebook"
+	"spanwright/estimate/schedule"
 	"spanwright/estimate/takeoff"
 	"spanwright/structural/beam"
 	"spanwright/structural/sizing"
@@ -18,17 +22,28 @@ func (r *run) assemble() (document.Document, error) {
 	if err != nil {
 		return document.Document{}, err
 	}
+	plans, err := r.cutting()
+	if err != nil {
+		return document.Document{}, err
+	}
 	d := document.Document{
 		EngineVersion: document.EngineVersion, Caution: document.Caution, Job: head,
-		Range: r.rangeOf(), Categories: r.categories(), Items: items(r.items), Lines: r.lines(),
+		Items: r.itemList(), Lines: r.lines(), Cutting: plans, Shipping: r.shipping(), Carbon: r.carbonOf(), Class: r.class(),
 		Inclusions: r.inclusions(), Exclusions: r.exclusions(), Notes: r.textNotes(),
 		Assumptions: withResizing(r.register.Entries()),
 	}
 	d.Groups = groups(d.Items, d.Lines)
-	for _, s := range r.sized {
+	for _, s := range r.sized.members {
 		d.Members = append(d.Members, r.member(s))
 	}
 	if d.Totals, err = r.totals(d); err != nil {
+		return document.Document{}, err
+	}
+	if d.Range, err = r.rangeOf(d.Totals); err != nil {
+		return document.Document{}, err
+	}
+	d.Categories = r.categories()
+	if err := r.allocate(&d); err != nil {
 		return document.Document{}, err
 	}
 	d.Split = r.splitSummary()
@@ -49,16 +64,44 @@ func (r *run) head() (document.Job, error) {
 	if err != nil {
 		return document.Job{}, err
 	}
+	set := j.Settings
 	return document.Job{
-		Project: j.Settings.Project, Scheme: j.Settings.Scheme, Source: j.Source.Name, SourceSHA256: j.Source.SHA256, JobSHA256: sum,
-		Coating: j.Settings.Coating, ExecutionClass: j.Settings.ExecutionClass, StockLengths: j.Settings.StockLengths,
-		DesignBasis: j.Settings.DesignBasis, Factor: document.Number(j.Settings.Factor), EstimateClass: j.Settings.EstimateClass,
-		Currency: j.Settings.Currency, BaseDate: j.Settings.BaseDate,
-		Money:    "base-date money of " + j.Settings.BaseDate + ", net of taxes",
-		RateBook: j.Book.Name, RateBookNote: j.Book.Note, RateBookSHA256: j.BookSHA256, ReferencePrice: j.Book.ReferencePrice.String(),
+		Project: set.Project, Scheme: set.Scheme, Source: j.Source.Name, SourceSHA256: j.Source.SHA256, JobSHA256: sum,
+		Coating: set.Coating, ExecutionClass: set.ExecutionClass, StockLengths: lengths(set.StockLengths), Purchase: set.Purchase,
+		DesignBasis: set.DesignBasis, Factor: document.Number(set.Factor), EstimateClass: set.EstimateClass,
+		Currency: set.Currency, BaseDate: set.BaseDate, SpendDate: set.SpendDate, SiteConditions: set.SiteConditions, Money: r.moneyWords(),
+		RateBook: j.Book.Name, RateBookKind: j.Book.Kind, RateBookNote: j.Book.Note, RateBookSHA256: j.BookSHA256, ReferencePrice: r.referencePrice(),
 		CatalogueSHA256: j.Data.Catalogue, GradesSHA256: j.Data.Grades,
 		Seed: j.Sampling.Seed, Replicates: j.Sampling.Replicates, Trials: j.Sampling.Trials,
 	}, nil
+}
+
+// moneyWords say in which money the totals are, and that they are net of taxes.
+func (r *run) moneyWords() string {
+	s := r.job.Settings
+	if s.Money == schedule.MoneyOutturn {
+		return "outturn money, spent about " + s.SpendDate + ", escalated from " + s.BaseDate + ", net of taxes"
+	}
+	return "base-date money of " + s.BaseDate + ", net of taxes"
+}
+
+func (r *run) referencePrice() string {
+	if r.job.Book.Kind != ratebook.KindRatio {
+		return ""
+	}
+	return r.job.Book.ReferencePrice.String()
+}
+
+// lengths writes stock lengths in metres.
+func lengths(list []float64) string {
+	if len(list) == 0 {
+		return ""
+	}
+	words := make([]string, len(list))
+	for i, l := range list {
+		words[i] = strconv.FormatFloat(l, 'g', -1, 64)
+	}
+	return strings.Join(words, "; ") + " m"
 }
 
 func (r *run) totals(d document.Document) (document.Totals, error) {
@@ -77,6 +120,14 @@ func (r *run) totals(d document.Document) (document.Totals, error) {
 		return t, fmt.Errorf("the simulation did not return the percentile %g", r.job.Settings.Confidence)
 	}
 	t.Contingency = t.AtConfidence.Sub(t.Base)
+	t.Reserve = r.job.Settings.ManagementReserve
+	if rate := r.job.Settings.TaxRate; rate > 0 {
+		f, err := money.FromFloat(rate, 6)
+		if err != nil {
+			return t, fmt.Errorf("tax: %w", err)
+		}
+		t.Tax = r.currency.Round(t.AtConfidence.Mul(f))
+	}
 	for _, g := range d.Groups {
 		t.Net, t.Delivered, t.Purchased = t.Net.Add(g.Net), t.Delivered.Add(g.Delivered), t.Purchased.Add(g.Purchased)
 		t.Pieces += g.Pieces
@@ -84,15 +135,20 @@ func (r *run) totals(d document.Document) (document.Totals, error) {
 	return t, nil
 }
 
-func (r *run) rangeOf() document.Range {
+func (r *run) rangeOf(t document.Totals) (document.Range, error) {
 	out := document.Range{
 		Mean: document.Number(r.ranged.Mean), MeanSE: document.Number(r.ranged.MeanSE), SD: document.Number(r.ranged.SD),
-		BaseAt: document.Number(r.ranged.BasePercentile), Warnings: []string{},
-		Method: fmt.Sprintf("%d replicates of %d trials, seed %d; percentiles by linear interpolation (Hyndman and Fan, type 7) of the pooled totals; standard error: spread of the replicates' percentiles over the square root of their number",
+		BaseAt: document.Number(r.ranged.BasePercentile), Warnings: []string{}, Sensitivities: []document.Sensitivity{}, Risks: []document.RiskRange{},
+		SensitivityMethod: ranges.SensitivityMethod,
+		Method: fmt.Sprintf("%d replicates of %d trials, seed %d; percentiles by linear interpolation (Hyndman and Fan, type 7) of the pooled totals; standard error: spread of the replicates' percentiles over the square root of their number, widened by Student's t for it",
 			r.job.Sampling.Replicates, r.job.Sampling.Trials, r.job.Sampling.Seed),
 	}
 	for _, p := range r.ranged.Percentiles {
-		out.Percentiles = append(out.Percentiles, document.Percentile{P: document.Number(p.P), Value: document.Number(p.Value), SE: document.Number(p.SE)})
+		at, err := money.FromFloat(document.Number(p.Value).Rounded(), r.currency.MinorDigits)
+		if err != nil {
+			return out, fmt.Errorf("percentile %g: %w", p.P, err)
+		}
+		out.Percentiles = append(out.Percentiles, document.Percentile{P: document.Number(p.P), Value: document.Number(p.Value), SE: document.Number(p.SE), Contingency: at.Sub(t.Base)})
 	}
 	for _, v := range r.ranged.Curve {
 		out.Curve = append(out.Curve, document.Number(v))
@@ -100,7 +156,93 @@ func (r *run) rangeOf() document.Range {
 	for _, w := range r.ranged.Warnings {
 		out.Warnings = append(out.Warnings, w.Message)
 	}
-	return out
+	for _, s := range r.ranged.Sensitivities {
+		out.Sensitivities = append(out.Sensitivities, document.Sensitivity{Assumption: s.ID, Share: document.Measured(s.Share), Swing: document.Measured(s.Swing), Narrowing: document.Measured(s.Narrowing)})
+	}
+	return out, nil
+}
+
+// allocate shares the contingency out by covariance with the total, to categories
+// and discrete risks, so that the parts add up to it to the minor unit.
+func (r *run) allocate(d *document.Document) error {
+	var shares []ranges.Share
+	for _, c := range r.ranged.Categories {
+		shares = append(shares, ranges.Share{Name: "category/" + c.Category, Share: c.Share})
+	}
+	for _, k := range r.ranged.Risks {
+		shares = append(shares, ranges.Share{Name: k.ID, Share: k.Share})
+	}
+	parts, err := allot(d.Totals.Contingency, r.currency, shares)
+	if err != nil {
+		return fmt.Errorf("contingency: %w", err)
+	}
+	of, share := map[string]money.Decimal{}, map[string]float64{}
+	for i, s := range shares {
+		of[s.Name], share[s.Name] = parts[i], s.Share
+	}
+	for i := range d.Categories {
+		c := &d.Categories[i]
+		c.Share, c.Contingency = document.Measured(share["category/"+c.Category]), of["category/"+c.Category]
+	}
+	for _, k := range r.ranged.Risks {
+		d.Range.Risks = append(d.Range.Risks, document.RiskRange{Assumption: k.ID, Name: r.riskName(k.ID), Probability: document.Number(r.probability(k.ID)),
+			Mean: document.Number(k.Mean), Share: document.Measured(k.Share), Contingency: of[k.ID]})
+	}
+	return nil
+}
+
+// allot parts an amount by shares, to the minor unit. Where nothing varies it stays
+// whole, with the first.
+func allot(amount money.Decimal, c money.Currency, shares []ranges.Share) ([]money.Decimal, error) {
+	unit := money.FromInt(1)
+	for range c.MinorDigits {
+		unit = unit.Mul(money.FromInt(10))
+	}
+	minor, err := strconv.ParseInt(amount.Mul(unit).Round(0).String(), 10, 64)
+	if err != nil {
+		return nil, err
+	}
+	out := make([]money.Decimal, len(shares))
+	sum := 0.0
+	for _, s := range shares {
+		sum += s.Share
+	}
+	if !(sum > 0) {
+		if len(out) > 0 {
+			out[0] = amount
+		}
+		return out, nil
+	}
+	parts, err := ranges.Allocate(minor, shares)
+	if err != nil {
+		return nil, err
+	}
+	one, err := money.FromFloat(math.Pow10(-c.MinorDigits), c.MinorDigits)
+	if err != nil {
+		return nil, err
+	}
+	for i, n := range parts {
+		out[i] = money.FromInt(n).Mul(one)
+	}
+	return out, nil
+}
+
+func (r *run) riskName(id string) string {
+	for _, k := range r.job.Risks {
+		if riskID(k.Name) == id {
+			return k.Name
+		}
+	}
+	return id
+}
+
+func (r *run) probability(id string) float64 {
+	for _, k := range r.job.Risks {
+		if riskID(k.Name) == id {
+			return k.Probability
+		}
+	}
+	return 0
 }
 
 func (r *run) categories() []document.Category {
@@ -121,14 +263,28 @@ func (r *run) categories() []document.Category {
 	return out
 }
 
-func items(in []takeoff.Item) []document.Item {
-	out := make([]document.Item, len(in))
-	for i, it := range in {
+func (r *run) itemList() []document.Item {
+	out := make([]document.Item, len(r.items))
+	for i, it := range r.items {
+		area := r.byArea(it)
 		out[i] = document.Item{
-			ID: it.ID, Group: it.Group, Family: it.Family, Treatment: string(it.Treatment), Connection: it.Connection, Marks: it.Marks,
+			ID: it.ID, Group: it.Group, Family: it.Family, Treatment: it.Treatment, Connection: it.Connection, Marks: it.Marks,
+			Coating: it.Coating, Execution: it.Execution,
 			Pieces: it.Pieces, Length: document.Number(it.Length), Surface: document.Number(it.Surface),
-			Net: it.Net, Delivered: it.Delivered, Purchased: it.Purchased,
+			Net: it.Net, Delivered: it.Delivered, Purchased: it.Purchased, Quantities: []document.Quantity{},
 		}
+		for _, q := range it.Quantities {
+			out[i].Quantities = append(out[i].Quantities, quantity(q, dependsOn(it, q, area)))
+		}
+	}
+	return out
+}
+
+func quantity(q takeoff.Quantity, depends []string) document.Quantity {
+	out := document.Quantity{Driver: string(q.Driver), Value: q.Value, Unit: q.Driver.Unit(), Measured: document.Number(q.Measured),
+		Factors: []document.Factor{}, Assumptions: q.Fixed, Formula: q.Formula, Depends: depends}
+	for _, a := range q.Factors {
+		out.Factors = append(out.Factors, document.Factor{Assumption: a.ID, Value: document.Number(a.Value())})
 	}
 	return out
 }
@@ -152,8 +308,13 @@ func groups(items []document.Item, lines []document.Line) []document.Group {
 		g.Net, g.Delivered, g.Purchased = g.Net.Add(it.Net), g.Delivered.Add(it.Delivered), g.Purchased.Add(it.Purchased)
 	}
 	for _, l := range lines {
-		g := &out[at[l.Group]]
-		g.Amount = g.Amount.Add(l.Amount)
+		i, ok := at[l.Group]
+		if !ok { // the whole structure
+			i = len(out)
+			at[l.Group] = i
+			out = append(out, document.Group{Group: l.Group})
+		}
+		out[i].Amount = out[i].Amount.Add(l.Amount)
 	}
 	return out
 }
@@ -162,8 +323,12 @@ func (r *run) lines() []document.Line {
 	out := make([]document.Line, len(r.priced.Lines))
 	for i, l := range r.priced.Lines {
 		out[i] = document.Line{
-			ID: l.ID, Item: l.Item, Group: l.Group, Category: l.Category, Driver: l.Driver, Quantity: l.Quantity, Unit: "t",
-			Rate: l.Rate, RateFormula: l.Formula, Multipliers: []document.Multiplier{}, Amount: l.Amount, Assumptions: l.Assumptions,
+			ID: l.ID, Item: l.Item, Group: l.Group, Category: l.Category, Driver: string(l.Driver), Quantity: l.Quantity, Unit: l.Unit,
+			RateID: l.RateID, RateScope: string(l.RateScope), Rate: l.Rate, RateFormula: l.Formula, RateParts: []document.Part{},
+			Multipliers: []document.Multiplier{}, UnitPrice: l.UnitPrice, Amount: l.Amount, Of: l.Of, Assumptions: l.Assumptions, Note: l.Note,
+		}
+		for _, p := range l.Parts {
+			out[i].RateParts = append(out[i].RateParts, document.Part{Name: p.Name, Value: p.Value, Assumption: p.Assumption})
 		}
 		for _, a := range l.Multipliers {
 			out[i].Multipliers = append(out[i].Multipliers, document.Multiplier{
@@ -175,11 +340,21 @@ func (r *run) lines() []document.Line {
 
 func (r *run) member(s sizedMember) document.Member {
 	m := s.member
-	p := s.piece()
+	p := takeoff.NewPiece(m, s.chosen())
 	out := document.Member{
-		Mark: m.Mark, Group: m.Group, Kind: m.Kind, Description: m.Description, Item: r.itemOf[m.Mark], Quantity: m.Quantity,
+		Mark: m.Mark, Group: m.Group, Kind: m.Kind, Description: m.Description, Quantity: m.Quantity, Inputs: inputsOf(m),
 		Length: document.Number(m.Length), Treatment: string(m.Treatment), Arrangement: m.Arrangement,
 		LineMass: document.Number(p.LineMass), Net: document.Number(p.Net()), Passes: true,
+	}
+	for _, id := range r.itemsOf[m.Mark] {
+		switch it := r.items[r.itemAt[id]]; it.Treatment {
+		case takeoff.Joint:
+			out.JointItems = append(out.JointItems, id)
+		case takeoff.Concrete:
+			out.ConcreteItem = id
+		default:
+			out.Item = id
+		}
 	}
 	if s.result == nil {
 		return out
@@ -204,7 +379,7 @@ func (r *run) member(s sizedMember) document.Member {
 // have cut or simplified nothing.
 func (r *run) splitSummary() *document.SplitSummary {
 	sum := document.SplitSummary{Members: []document.SplitMember{}, UnsafeMembers: []string{}}
-	for _, s := range r.sized {
+	for _, s := range r.sized.members {
 		if s.split == nil {
 			continue
 		}
@@ -216,6 +391,9 @@ func (r *run) splitSummary() *document.SplitSummary {
 			m.Split, split = s.split.section.Designation, float64(metres*s.split.section.Mass)
 		}
 		m.DifferenceT = document.Number(split - exact)
+		if amount, ok := r.split.members[m.Mark]; ok {
+			m.Difference = &amount
+		}
 		if m.Unsafe {
 			sum.UnsafeMembers = append(sum.UnsafeMembers, m.Mark)
 		}
@@ -227,6 +405,9 @@ func (r *run) splitSummary() *document.SplitSummary {
 		return nil
 	}
 	sum.DifferenceT = sum.TonnesSplit - sum.TonnesExact
+	if r.split.priced {
+		sum.Difference, sum.UnsafeDifference = &r.split.total, &r.split.unsafe
+	}
 	return &sum
 }
 
@@ -237,9 +418,9 @@ func checks(res *sizing.Result) []document.Check {
 			continue // nothing acts that this check is about
 		}
 		d := document.Check{ID: c.ID, Clause: c.Clause, Formula: c.Formula, Demand: document.Measured(c.Demand), Resistance: document.Measured(c.Resistance),
-			Unit: c.Unit, Utilisation: document.Measured(c.Utilisation), PassFail: c.PassFail, Note: noteOf(res, i), Combination: res.Combinations[i], Inputs: []document.Quantity{}}
+			Unit: c.Unit, Utilisation: document.Measured(c.Utilisation), PassFail: c.PassFail, Note: noteOf(res, i), Combination: res.Combinations[i], Inputs: []document.Measure{}}
 		for _, q := range c.Inputs {
-			d.Inputs = append(d.Inputs, document.Quantity{Symbol: q.Symbol, Value: document.Measured(q.Value), Unit: q.Unit})
+			d.Inputs = append(d.Inputs, document.Measure{Symbol: q.Symbol, Value: document.Measured(q.Value), Unit: q.Unit})
 		}
 		out = append(out, d)
 	}

@@ -81,63 +81,101 @@ func Run(ctx context.Context, j job.Job, progress Progress) (document.Document, 
 	if j.EngineVersion != document.EngineVersion || j.Data != Data() {
 		return document.Document{}, fmt.Errorf("%w: it asks for version %d, this is version %d; or its catalogue differs", ErrOtherEngine, j.EngineVersion, document.EngineVersion)
 	}
-	currency, err := j.Money()
+	sized, err := Size(ctx, j, progress)
 	if err != nil {
 		return document.Document{}, err
 	}
-	sized, err := sizeAll(ctx, j, progress)
-	if err != nil {
-		return document.Document{}, err
-	}
-	r := &run{job: j, currency: currency, sized: sized, progress: progress}
-	return r.finish(ctx)
+	return sized.Estimate(ctx, j, progress)
 }
 
 // run carries one job through the stages after sizing.
 type run struct {
 	job      job.Job
 	currency money.Currency
-	sized    []sizedMember
+	sized    *Sized
 	progress Progress
 
-	allowances takeoff.Allowances
-	items      []takeoff.Item
-	itemOf     map[string]string // mark → item
-	priced     pricing.Priced
-	systemic   takeoff.Allowance
-	ranged     ranges.Result
-	register   assumption.Register
+	allowances  takeoff.Allowances
+	settings    takeoff.Settings
+	pieces      []takeoff.Piece
+	items       []takeoff.Item
+	breaches    []takeoff.Breach
+	itemsOf     map[string][]string // mark → items
+	itemAt      map[string]int
+	priced      pricing.Priced
+	conversions []assumption.Entry // exchange and escalation
+	unescalated []string           // categories without an index
+	systemic    takeoff.Allowance
+	ranged      ranges.Result
+	carbon      pricing.CarbonPriced
+	carbonRange *ranges.Result
+	split       splitMoney
+	register    assumption.Register
 }
 
 func (r *run) finish(ctx context.Context) (document.Document, error) {
-	var err error
-	if r.allowances, r.systemic, err = bookAllowances(r.job); err != nil {
-		return document.Document{}, err
-	}
-	if err := r.count(); err != nil {
-		return document.Document{}, err
-	}
-	r.priced, err = pricing.Price(r.items, pricing.Rates{
-		Book: r.job.Book, Multipliers: r.job.Multipliers, Currency: r.currency, Systemic: r.systemic,
-	})
-	if err != nil {
-		return document.Document{}, &RatesError{err}
-	}
-	r.ranged, err = ranges.Simulate(ctx, r.priced.Model, ranges.Settings{
-		Seed: r.job.Sampling.Seed, Replicates: r.job.Sampling.Replicates, Trials: r.job.Sampling.Trials,
-		Percentiles: percentiles(r.job.Settings.Confidence), Correlation: r.job.Book.Correlation,
-	}, func(done, total int) { r.progress("range", done, total) })
-	var faulty *ranges.Error
-	switch {
-	case errors.As(err, &faulty):
-		return document.Document{}, &RatesError{err}
-	case err != nil:
-		return document.Document{}, fmt.Errorf("range: %w", err)
+	steps := []func(context.Context) error{r.price, r.simulate, r.weighCarbon, r.priceSplit}
+	for _, step := range steps {
+		if err := step(ctx); err != nil {
+			return document.Document{}, err
+		}
 	}
 	if err := r.fillRegister(); err != nil {
 		return document.Document{}, err
 	}
 	return r.assemble()
+}
+
+// price counts the quantities and prices them.
+func (r *run) price(ctx context.Context) error {
+	if err := r.count(ctx); err != nil {
+		return err
+	}
+	rates, err := r.rates()
+	if err != nil {
+		return err
+	}
+	if r.priced, err = pricing.Price(r.items, rates); err != nil {
+		return &RatesError{err}
+	}
+	return nil
+}
+
+// rangeSettings are those of the simulation of the total.
+func (r *run) rangeSettings() ranges.Settings {
+	return ranges.Settings{
+		Seed: r.job.Sampling.Seed, Replicates: r.job.Sampling.Replicates, Trials: r.job.Sampling.Trials,
+		Percentiles: percentiles(r.job.Settings.Confidence), Correlation: r.correlation(r.priced.Model), Sensitivities: true,
+	}
+}
+
+// correlation is that of the groups which a model's assumptions are in.
+func (r *run) correlation(m pricing.Model) map[string]float64 {
+	out := map[string]float64{}
+	for _, in := range m.Inputs {
+		if rho, ok := r.job.Book.Correlation[in.Group]; ok {
+			out[in.Group] = rho
+		}
+	}
+	return out
+}
+
+func (r *run) simulate(ctx context.Context) error {
+	var err error
+	r.ranged, err = ranges.Simulate(ctx, r.priced.Model, r.rangeSettings(), func(done, total int) { r.progress("range", done, total) })
+	return rangeError(err)
+}
+
+// rangeError tells a fault of the rates from one of the program.
+func rangeError(err error) error {
+	var faulty *ranges.Error
+	switch {
+	case err == nil:
+		return nil
+	case errors.As(err, &faulty):
+		return &RatesError{err}
+	}
+	return fmt.Errorf("range: %w", err)
 }
 
 // percentiles are those shown for every estimate, with the chosen confidence.
@@ -150,37 +188,77 @@ func percentiles(confidence float64) []float64 {
 	return p
 }
 
-func (r *run) count() error {
-	pieces := make([]takeoff.Piece, len(r.sized))
-	for i, s := range r.sized {
-		pieces[i] = s.piece()
-		pieces[i].Split = r.overrides(pieces[i])
+func (r *run) count(ctx context.Context) error {
+	var err error
+	if r.allowances, err = takeoff.FromBook(r.job.Book, r.job.Settings); err != nil {
+		return err
+	}
+	if r.systemic, err = systemicFactor(r.job); err != nil {
+		return err
 	}
 	if err := r.knownClasses(); err != nil {
 		return err
 	}
-	items, err := takeoff.Count(pieces, r.allowances)
-	if err != nil {
-		return fmt.Errorf("take-off: %w", err)
+	r.settings = takeoff.SettingsOf(r.job.Book, r.job.Settings)
+	r.pieces = r.piecesOf(func(s sizedMember) *section.Section { return s.chosen() })
+	if r.settings.Plans, err = takeoff.Purchase(ctx, r.pieces, r.settings); err != nil {
+		return takeoffError(err)
 	}
-	r.items, r.itemOf = items, map[string]string{}
-	for _, it := range items {
+	if r.items, err = takeoff.Count(r.pieces, r.allowances, r.settings); err != nil {
+		return takeoffError(err)
+	}
+	r.breaches = takeoff.Breaches(r.pieces, r.allowances, r.settings)
+	r.itemsOf, r.itemAt = map[string][]string{}, map[string]int{}
+	for i, it := range r.items {
+		r.itemAt[it.ID] = i
 		for _, m := range it.Marks {
-			r.itemOf[m] = it.ID
+			r.itemsOf[m] = append(r.itemsOf[m], it.ID)
 		}
 	}
-	r.progress("take-off", len(pieces), len(pieces))
+	r.progress("take-off", len(r.pieces), len(r.pieces))
 	return nil
 }
 
-// knownClasses reports the members whose connection class the rate book lacks.
+// piecesOf are the rows with the section that pick gives each.
+func (r *run) piecesOf(pick func(sizedMember) *section.Section) []takeoff.Piece {
+	out := make([]takeoff.Piece, len(r.sized.members))
+	for i, s := range r.sized.members {
+		out[i] = takeoff.NewPiece(s.member, pick(s))
+		out[i].Split = r.overrides(s.member.Mark)
+	}
+	return out
+}
+
+// takeoffError hands on what members lack as faults of theirs.
+func takeoffError(err error) error {
+	var faults *takeoff.FaultsError
+	if !errors.As(err, &faults) {
+		return fmt.Errorf("take-off: %w", err)
+	}
+	out := &FaultsError{}
+	for _, f := range faults.Faults {
+		out.Faults = append(out.Faults, Fault{Mark: f.Mark, Problem: f.Problem, Remedy: f.Remedy})
+	}
+	return out
+}
+
+// knownClasses reports the members whose coating no rate of the book prices. A book
+// without rates by coating takes any.
 func (r *run) knownClasses() error {
+	known := r.job.Book.Coatings()
+	if len(known) == 0 {
+		return nil
+	}
 	var f FaultsError
-	for _, s := range r.sized {
-		if _, ok := r.job.Book.Connections[s.member.ConnectionClass]; !ok {
+	for _, s := range r.sized.members {
+		coating := s.member.Coating
+		if coating == "" {
+			coating = r.job.Settings.Coating
+		}
+		if coating != "" && !slices.Contains(known, coating) {
 			f.Faults = append(f.Faults, Fault{Mark: s.member.Mark,
-				Problem: fmt.Sprintf("the rate book %q has no connection class %q", r.job.Book.Name, s.member.ConnectionClass),
-				Remedy:  "one of " + strings.Join(sortedKeys(r.job.Book.Connections), ", ")})
+				Problem: fmt.Sprintf("the rate book %q has no rate for the coating %q", r.job.Book.Name, coating),
+				Remedy:  "one of " + strings.Join(known, ", ")})
 		}
 	}
 	if len(f.Faults) > 0 {
@@ -189,13 +267,18 @@ func (r *run) knownClasses() error {
 	return nil
 }
 
-// overrides names the multipliers that apply to this member alone; pieces with
-// some are counted by themselves.
-func (r *run) overrides(p takeoff.Piece) string {
+// overrides names the multipliers and rates that apply to this member alone; pieces
+// with some are counted by themselves.
+func (r *run) overrides(mark string) string {
 	s := ""
 	for _, m := range r.job.Multipliers {
-		if m.Scope == ratebook.MemberScope && m.Subject == p.Member.Mark {
+		if m.Scope == ratebook.MemberScope && m.Subject == mark {
 			s += m.Name + "\x00"
+		}
+	}
+	for _, rate := range r.job.Book.Rates {
+		if rate.Scope == ratebook.MemberScope && rate.Subject == mark {
+			s += "rate " + rate.ID + "\x00"
 		}
 	}
 	return s

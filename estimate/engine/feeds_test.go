@@ -3,7 +3,6 @@ package engine_test
 import (
 	"encoding/json"
 	"fmt"
-	"maps"
 	"slices"
 	"strings"
 	"testing"
@@ -57,22 +56,6 @@ func deepCopy(t *testing.T, j job.Job) job.Job {
 		t.Fatal(err)
 	}
 	return reread(t, data)
-}
-
-// expand turns the patterns of an entry into the figures that exist.
-func expand(d document.Document, feeds []string, m *document.Member) []string {
-	set := map[string]bool{}
-	for id := range d.Figures() {
-		for _, p := range feeds {
-			if m != nil {
-				p = strings.NewReplacer("{mark}", assumption.Segment(m.Mark), "{item}", m.Item, "{group}", assumption.Segment(m.Group)).Replace(p)
-			}
-			if id == p || (strings.HasSuffix(p, "/*") && strings.HasPrefix(id, strings.TrimSuffix(p, "*")) && !strings.Contains(id[len(p)-1:], "/")) {
-				set[id] = true
-			}
-		}
-	}
-	return slices.Sorted(maps.Keys(set))
 }
 
 func changed(before, after document.Document) []string {
@@ -285,7 +268,7 @@ func moveAll(t *testing.T, j job.Job, before document.Document, judge func(l lea
 		l.move(&moved)
 		after := run(t, moved)
 		sameSections(t, fmt.Sprintf("%s of %q", l.id, l.mark), before, after)
-		judge(l, changed(before, after), expand(before, entryOf(t, before, l.id).Feeds, members[l.mark]))
+		judge(l, changed(before, after), before.Fed(entryOf(t, before, l.id).Feeds, members[l.mark]))
 	}
 }
 

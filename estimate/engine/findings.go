@@ -3,12 +3,15 @@ package engine
 import (
 	"fmt"
 	"math"
+	"slices"
 	"sort"
 	"strings"
 
 	"spanwright/estimate/assumption"
 	"spanwright/estimate/document"
 	"spanwright/estimate/money"
+	"spanwright/estimate/ratebook"
+	"spanwright/estimate/takeoff"
 	"spanwright/structural/beam"
 	"spanwright/structural/resistance"
 )
@@ -20,7 +23,7 @@ const lowestCombinedFactor = 3
 // findings gathers what is unsafe or doubtful, gravest first, then by subject.
 func (r *run) findings(d document.Document) []document.Finding {
 	var f []document.Finding
-	for _, s := range r.sized {
+	for _, s := range r.sized.members {
 		f = append(f, memberFindings(s)...)
 	}
 	f = append(f, r.bandFindings(d.Groups)...)
@@ -164,6 +167,9 @@ func measure(name string, g document.Group, c money.Currency) (float64, string, 
 	case "kg/m":
 		return 1000 * g.Net.Float64() / float64(g.Length), "kg/m", g.Length > 0
 	case "price/t":
+		if !(g.Delivered.Sign() > 0) {
+			return 0, "", false
+		}
 		return g.Amount.Float64() / g.Delivered.Float64(), c.Code + "/t", g.Delivered.Sign() > 0
 	}
 	return math.NaN(), "", false
@@ -194,14 +200,8 @@ func (r *run) totalFindings(d document.Document) []document.Finding {
 	if d.Totals.Contingency.Sign() < 0 {
 		add(document.Doubtful, "negative-contingency", fmt.Sprintf("The contingency is negative: the base lies at P%.3g, above the chosen P%.3g.", 100*float64(d.Range.BaseAt), 100*float64(d.Totals.Confidence)), "contingency")
 	}
-	for _, id := range sortedKeys(r.job.Book.Ratios) {
-		if v := r.job.Book.Ratios[id].ValidUntil; v != "" && v < r.job.Settings.BaseDate {
-			add(document.Doubtful, "rate-expired", fmt.Sprintf("The rate of %s was valid until %s, before the base date %s.", id, v, r.job.Settings.BaseDate), "category/"+id)
-		}
-	}
-	if v := r.job.Book.MaterialPrice.ValidUntil; v != "" && v < r.job.Settings.BaseDate {
-		add(document.Doubtful, "rate-expired", fmt.Sprintf("The price of steel was valid until %s, before the base date %s.", v, r.job.Settings.BaseDate), "category/material")
-	}
+	out = append(out, r.priceFindings()...)
+	out = append(out, classFindings(d.Class)...)
 	if rho := zeroCorrelation(r.job.Book.Correlation); len(rho) > 0 {
 		add(document.Doubtful, "no-correlation", "Costs of the group "+strings.Join(rho, ", ")+" are taken as uncorrelated (ρ = 0), which narrows the range.", "range")
 	}
@@ -209,16 +209,54 @@ func (r *run) totalFindings(d document.Document) []document.Finding {
 		add(document.Notice, "split-summary", splitWords(*d.Split))
 	}
 	for _, it := range r.items {
+		if it.Treatment == takeoff.Concrete || it.Treatment == takeoff.Joint {
+			continue // bolts of joints are bought with them
+		}
 		if it.Net.Sign() == 0 || it.Delivered.Sign() == 0 || it.Purchased.Sign() == 0 {
 			out = append(out, document.Finding{Severity: document.Doubtful, Code: "too-light", Subject: it.Group, Figures: []string{"item/" + it.ID + "/net"},
 				Message: fmt.Sprintf("The pieces %s together weigh less than half a kilogram and are priced at nothing.", strings.Join(it.Marks, ", "))})
 		}
 	}
-	if s := r.job.Settings; s.Coating+s.ExecutionClass+s.StockLengths != "" {
-		add(document.Notice, "recorded-only", "Coating, execution class and stock lengths are recorded with the job; the ratio book does not price them apart.")
+	if s := r.job.Settings; r.job.Book.Kind == ratebook.KindRatio && s.Coating+s.ExecutionClass != "" {
+		add(document.Notice, "recorded-only", "Coating and execution class are recorded with the job; the ratio book does not price them apart.")
 	}
 	for _, o := range r.job.Omissions {
 		add(document.Notice, "possible-omission", o)
+	}
+	return out
+}
+
+// Codes of notes of the pricing that are treated apart.
+const (
+	noteExpired      = "expired"
+	noteNotTriggered = "not-triggered"
+	noteNoQuantity   = "no-quantity"
+)
+
+// priceFindings are what the pricing saw: prices past their date, minimum charges
+// and orders that bind, categories that could not be escalated.
+func (r *run) priceFindings() []document.Finding {
+	var out []document.Finding
+	for _, n := range r.priced.Notes {
+		severity := document.Notice
+		switch n.Code {
+		case noteExpired:
+			severity = document.Doubtful
+		case noteNotTriggered, noteNoQuantity:
+			continue // an exclusion, or a rate that this job has no use for
+		}
+		message := n.Message
+		if name, ok := strings.CutPrefix(n.Subject, "rate/"); ok {
+			message = "Rate “" + name + "”: " + message
+		}
+		out = append(out, document.Finding{Severity: severity, Code: "rate-" + n.Code, Subject: "total", Message: sentence(message), Figures: []string{"category/" + n.Category}})
+	}
+	for _, c := range slices.Compact(slices.Clone(r.unescalated)) {
+		if _, ok := r.priced.Categories[c]; !ok {
+			continue
+		}
+		out = append(out, document.Finding{Severity: document.Doubtful, Code: "not-escalated", Subject: "total", Figures: []string{"category/" + c},
+			Message: fmt.Sprintf("Prices of %s are those of %s: the rate book has no index that would bring them to %s.", c, r.job.Book.BaseDate, r.moneyWords())})
 	}
 	return out
 }
@@ -232,11 +270,18 @@ func splitWords(s document.SplitSummary) string {
 	case s.DifferenceT == 0:
 		diff = "no more and no less"
 	}
+	if s.Difference != nil && s.Difference.Sign() != 0 {
+		diff += fmt.Sprintf(" (%s of the base at likely values)", s.Difference)
+	}
 	text := fmt.Sprintf("Sized by the split method, %d members would weigh %.3f t net, %s than by the exact envelope", len(s.Members), float64(s.TonnesSplit), diff)
 	if len(s.UnsafeMembers) == 0 {
 		return text + "; none of these sections would fail the exact checks."
 	}
-	return text + "; its sections would fail the exact checks in " + strings.Join(s.UnsafeMembers, ", ") + "."
+	text += "; its sections would fail the exact checks in " + strings.Join(s.UnsafeMembers, ", ")
+	if s.UnsafeDifference != nil {
+		text += fmt.Sprintf(", which alone make %s of the difference", s.UnsafeDifference)
+	}
+	return text + "."
 }
 
 func zeroCorrelation(c map[string]float64) []string {

@@ -135,7 +135,8 @@ func variedBook(tb testing.TB, r *rand.Rand) ratebook.Book {
 		}
 		return f
 	}
-	b.MaterialPrice = vary(b.MaterialPrice)
+	price := vary(*b.MaterialPrice)
+	b.MaterialPrice = &price
 	for _, c := range ratebook.Categories() {
 		if f, ok := b.Ratios[c]; ok {
 			b.Ratios[c] = vary(f)

@@ -25,6 +25,21 @@ var given = map[string]func(schedule.Member) bool{
 	"input/deflection limit":        func(m schedule.Member) bool { return m.DeflectionLimit > 0 && m.Defaults["deflection_limit"] == "" },
 	"input/mass if not sized":       func(m schedule.Member) bool { return m.Treatment == schedule.ByMass },
 	"input/area":                    func(m schedule.Member) bool { return m.Area > 0 },
+	"input/joints":                  func(m schedule.Member) bool { return len(m.Joints) > 0 },
+	"input/concrete":                func(m schedule.Member) bool { return m.Concrete > 0 },
+}
+
+// stated tells for each input of the Job sheet that has no default whether the job
+// has it.
+var stated = map[string]func(job.Job) bool{
+	"input/stock lengths":      func(j job.Job) bool { return len(j.Settings.StockLengths) > 0 },
+	"input/kerf":               func(j job.Job) bool { return len(j.Settings.StockLengths) > 0 },
+	"input/haul distance":      func(j job.Job) bool { return j.Settings.HaulDistance > 0 },
+	"input/spend date":         func(j job.Job) bool { return j.Settings.SpendDate != "" },
+	"input/tax":                func(j job.Job) bool { return j.Settings.TaxRate > 0 },
+	"input/management reserve": func(j job.Job) bool { return j.Settings.ManagementReserve.Sign() > 0 },
+	"input/risk probability":   func(j job.Job) bool { return len(j.Risks) > 0 },
+	"input/risk amount":        func(j job.Job) bool { return len(j.Risks) > 0 },
 }
 
 func hasLoad(m schedule.Member, nature, kind, label string) bool {
@@ -43,6 +58,9 @@ func occurs(id string, j job.Job) bool {
 		if strings.TrimPrefix(id, "input/") == strings.TrimPrefix(e.ID, "default/") {
 			return false // the job took the default
 		}
+	}
+	if has, ok := stated[id]; ok {
+		return has(j)
 	}
 	has, ok := given[id]
 	if !ok {

@@ -59,10 +59,25 @@ func recompute(tb testing.TB, p printed, places int) (lines, cats map[string]*bi
 	lines, cats, total = map[string]*big.Rat{}, map[string]*big.Rat{}, new(big.Rat)
 	half := new(big.Rat).Quo(big.NewRat(1, 2), new(big.Rat).SetInt(new(big.Int).Exp(big.NewInt(10), big.NewInt(int64(places)), nil)))
 	for _, l := range p.Lines {
-		product := new(big.Rat).Mul(rat(tb, l["quantity"]), rat(tb, l["rate"]))
-		for _, m := range l["multipliers"].([]any) {
-			product.Mul(product, rat(tb, m.(map[string]any)["value"]))
+		price := big.NewRat(1, 1)
+		for _, part := range l["rate_parts"].([]any) {
+			price.Mul(price, rat(tb, part.(map[string]any)["value"]))
 		}
+		if price.Cmp(rat(tb, l["rate"])) != 0 {
+			tb.Errorf("%s: the parts of the rate make %s, not %s", l["id"], price.FloatString(8), l["rate"])
+		}
+		for _, m := range l["multipliers"].([]any) {
+			price.Mul(price, rat(tb, m.(map[string]any)["value"]))
+		}
+		unit := places + 2
+		if l["driver"] == "cost of categories" {
+			unit = 6
+		}
+		price = roundRat(roundRat(price, 8), unit)
+		if price.Cmp(rat(tb, l["unit_price"])) != 0 {
+			tb.Errorf("%s: the unit price is %s, recomputed %s", l["id"], l["unit_price"], price.FloatString(8))
+		}
+		product := new(big.Rat).Mul(rat(tb, l["quantity"]), price)
 		amount := roundRat(product, places)
 		if diff := new(big.Rat).Sub(amount, product); diff.Abs(diff).Cmp(half) == 0 {
 			ties++

@@ -10,9 +10,7 @@ import (
 	"sync/atomic"
 
 	"spanwright/estimate/job"
-	"spanwright/estimate/ratebook"
 	"spanwright/estimate/schedule"
-	"spanwright/estimate/takeoff"
 	"spanwright/structural/action"
 	"spanwright/structural/beam"
 	"spanwright/structural/section"
@@ -36,25 +34,12 @@ type lift struct {
 	combination string
 }
 
-func (s sizedMember) piece() takeoff.Piece {
-	p := takeoff.Piece{Member: s.member}
+// chosen is the section of the row, nil where it is not sized.
+func (s sizedMember) chosen() *section.Section {
 	if s.result == nil {
-		p.Family, p.LineMass, p.Waste = s.member.Kind, s.member.LineMass, ratebook.WasteSections
-		if s.member.AreaMass > 0 {
-			p.Waste = ratebook.WastePlate
-		}
-		return p
+		return nil
 	}
-	sec := s.result.Section
-	p.Family, p.LineMass, p.Surface = sec.Family, sec.Mass, sec.Perimeter
-	p.Waste = ratebook.WasteSections
-	switch sec.Shape {
-	case section.RoundTube, section.RectangularTube:
-		p.Waste = ratebook.WasteTube
-	case section.Flat:
-		p.Waste = ratebook.WastePlate
-	}
-	return p
+	return &s.result.Section
 }
 
 // sizeAll sizes every member on all cores. Members of one size group are sized

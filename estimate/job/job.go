@@ -14,6 +14,7 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"slices"
 	"sort"
 
 	"spanwright/estimate/assumption"
@@ -50,6 +51,7 @@ type Job struct {
 	Members       []schedule.Member     `json:"members"`
 	Defaults      []assumption.Entry    `json:"defaults"`
 	Omissions     []string              `json:"omissions"`
+	Risks         []schedule.Risk       `json:"risks,omitempty"`
 	Book          ratebook.Book         `json:"rate_book"`
 	BookSHA256    string                `json:"rate_book_sha256"`
 	Multipliers   []ratebook.Multiplier `json:"multipliers" doc:"in force: those of the book, then the edited ones"`
@@ -70,8 +72,8 @@ const (
 // those of the book, and the job sorts them so that their order of arrival does
 // not matter.
 func Freeze(s schedule.Schedule, src Source, book ratebook.Book, edited []ratebook.Multiplier, sampling Sampling) (Job, error) {
-	if s.Settings.Currency != book.Currency {
-		return Job{}, fmt.Errorf("the job is in %s and the rate book %q in %s; a book in the job's currency is needed", s.Settings.Currency, book.Name, book.Currency)
+	if _, err := book.ExchangeTo(s.Settings.Currency); err != nil {
+		return Job{}, fmt.Errorf("the job is in %s and the rate book %q in %s: %w", s.Settings.Currency, book.Name, book.Currency, err)
 	}
 	if err := sampling.Validate(); err != nil {
 		return Job{}, err
@@ -80,7 +82,7 @@ func Freeze(s schedule.Schedule, src Source, book ratebook.Book, edited []ratebo
 	if err != nil {
 		return Job{}, err
 	}
-	ms := append(append([]ratebook.Multiplier{}, book.Multipliers...), edited...)
+	ms := slices.Concat(book.Multipliers, siteMultipliers(book, s.Settings.SiteConditions), edited)
 	for _, m := range edited {
 		if err := m.Validate(); err != nil {
 			return Job{}, err
@@ -98,10 +100,54 @@ func Freeze(s schedule.Schedule, src Source, book ratebook.Book, edited []ratebo
 			Source: "rate book " + book.Name, Owner: "Spanwright", Confidence: assumption.Medium, Feeds: []string{},
 		})
 	}
+	defaults = takeSystems(&settings, book, defaults)
 	return Job{
-		Source: src, Settings: settings, Members: s.Members, Defaults: defaults, Omissions: s.Omissions,
+		Source: src, Settings: settings, Members: s.Members, Defaults: defaults, Omissions: s.Omissions, Risks: s.Risks,
 		Book: book, BookSHA256: sum, Multipliers: ms, Sampling: sampling,
 	}, nil
+}
+
+// takeSystems fills in the coating and the execution class that a job leaves blank,
+// where the book prices blank ones as a system of its own, and says so.
+func takeSystems(s *schedule.Settings, book ratebook.Book, defaults []assumption.Entry) []assumption.Entry {
+	for _, d := range []struct {
+		into     *string
+		what     string
+		category string
+		of       func(ratebook.Selection) []string
+	}{
+		{&s.Coating, "coating", ratebook.Coating, func(x ratebook.Selection) []string { return x.Coatings }},
+		{&s.ExecutionClass, "execution class", ratebook.Inspection, func(x ratebook.Selection) []string { return x.Executions }},
+	} {
+		if *d.into != "" {
+			continue
+		}
+		for _, r := range book.Rates {
+			list := d.of(r.Select)
+			i := slices.IndexFunc(list, func(n string) bool { return n != "" })
+			if r.Category != d.category || i < 0 || !slices.Contains(list, "") {
+				continue
+			}
+			*d.into = list[i]
+			defaults = append(defaults[:len(defaults):len(defaults)], assumption.Entry{
+				ID: "default/" + d.what, Kind: assumption.Default, Statement: "The " + d.what + " is that which the rate book takes where none is named", Value: list[i],
+				Source: "rate book " + book.Name, Owner: "Spanwright", Confidence: assumption.Low, Feeds: []string{},
+			})
+			break
+		}
+	}
+	return defaults
+}
+
+// siteMultipliers are those that the site conditions put in force.
+func siteMultipliers(book ratebook.Book, conditions []string) []ratebook.Multiplier {
+	var out []ratebook.Multiplier
+	for _, m := range book.Site {
+		if slices.Contains(conditions, m.Condition) {
+			out = append(out, m.Multiplier)
+		}
+	}
+	return out
 }
 
 func sortMultipliers(ms []ratebook.Multiplier) {

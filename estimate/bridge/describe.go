@@ -1,0 +1,249 @@
+package bridge
+
+import (
+	"cmp"
+	"fmt"
+	"maps"
+	"slices"
+	"strings"
+
+	"spanwright/estimate/document"
+	"spanwright/estimate/job"
+	"spanwright/estimate/money"
+	"spanwright/estimate/schedule"
+)
+
+// most is the number of differences that a sentence names.
+const most = 6
+
+// describe writes what moved and the sentence of a share.
+func describe(s *Share, from, to Side, c money.Currency) {
+	if s.Amount.Sign() == 0 && s.Cause != Engine && s.Cause != Sampling {
+		s.Moved = differences(s.Cause, from, to)
+		if len(s.Moved) == 0 {
+			s.Sentence = fmt.Sprintf("%s: nothing differs.", title(s.Cause))
+			return
+		}
+	}
+	s.Moved = differences(s.Cause, from, to)
+	verb := "raises"
+	amount := s.Amount
+	switch {
+	case s.Amount.Sign() < 0:
+		verb, amount = "lowers", s.Amount.Neg()
+	case s.Amount.Sign() == 0:
+		s.Sentence = fmt.Sprintf("%s moves nothing", title(s.Cause))
+		if len(s.Moved) > 0 {
+			s.Sentence += ": " + strings.Join(s.Moved, "; ")
+		}
+		s.Sentence += "."
+		return
+	}
+	s.Sentence = fmt.Sprintf("%s %s the cost by %s %s", title(s.Cause), verb, amount, c.Code)
+	if len(s.Groups) > 0 {
+		largest := slices.MaxFunc(s.Groups, func(a, b GroupShare) int { return abs(a.Amount).Cmp(abs(b.Amount)) })
+		s.Sentence += fmt.Sprintf(", most of it in %s (%s)", largest.Group, largest.Amount)
+	}
+	if len(s.Moved) > 0 {
+		shown := s.Moved
+		if len(shown) > most {
+			shown = append(slices.Clone(shown[:most]), fmt.Sprintf("and %d more", len(s.Moved)-most))
+		}
+		s.Sentence += ": " + strings.Join(shown, "; ")
+	}
+	s.Sentence += "."
+}
+
+func abs(d money.Decimal) money.Decimal {
+	if d.Sign() < 0 {
+		return d.Neg()
+	}
+	return d
+}
+
+func title(c Cause) string { return strings.ToUpper(string(c[:1])) + string(c[1:]) }
+
+// differences names what differs in the inputs of a cause, from the documents and
+// jobs alone.
+func differences(c Cause, from, to Side) []string {
+	a, b := from.Job, to.Job
+	out := []string{}
+	say := func(what string, x, y any) {
+		if fmt.Sprint(x) != fmt.Sprint(y) {
+			out = append(out, fmt.Sprintf("%s %v → %v", what, x, y))
+		}
+	}
+	switch c {
+	case Scope:
+		out = rows(a, b)
+		say("coating", a.Settings.Coating, b.Settings.Coating)
+		say("execution class", a.Settings.ExecutionClass, b.Settings.ExecutionClass)
+		say("purchase", a.Settings.Purchase, b.Settings.Purchase)
+		say("stock lengths", a.Settings.StockLengths, b.Settings.StockLengths)
+		say("haul distance", a.Settings.HaulDistance, b.Settings.HaulDistance)
+		say("site conditions", a.Settings.SiteConditions, b.Settings.SiteConditions)
+		say("owner's costs", a.Settings.OwnerCosts, b.Settings.OwnerCosts)
+	case Section:
+		return sections(a, b)
+	case Rate, Multiplier, Allowance, Escalation, Exchange:
+		return entries(c, from.Document, to.Document)
+	case DesignBasis:
+		say("basis", a.Settings.DesignBasis, b.Settings.DesignBasis)
+		say("factor", a.Settings.Factor, b.Settings.Factor)
+		say("deflection limit", a.Settings.DeflectionLimit, b.Settings.DeflectionLimit)
+	case BaseDate:
+		say("base date", a.Settings.BaseDate, b.Settings.BaseDate)
+		say("base date of the rate book", a.Book.BaseDate, b.Book.BaseDate)
+	case RiskPolicy:
+		say("confidence", a.Settings.Confidence, b.Settings.Confidence)
+		say("estimate class", a.Settings.EstimateClass, b.Settings.EstimateClass)
+		out = append(out, risks(a.Risks, b.Risks)...)
+		for _, g := range slices.Sorted(maps.Keys(correlations(nil, a.Book.Correlation, b.Book.Correlation))) {
+			say("correlation of "+g, a.Book.Correlation[g], b.Book.Correlation[g])
+		}
+	case Engine:
+		say("engine version", from.Document.EngineVersion, to.Document.EngineVersion)
+		say("catalogue", short(from.Document.Job.CatalogueSHA256), short(to.Document.Job.CatalogueSHA256))
+		say("grades", short(from.Document.Job.GradesSHA256), short(to.Document.Job.GradesSHA256))
+	case Sampling:
+		say("seed", a.Sampling.Seed, b.Sampling.Seed)
+		say("trials", a.Sampling.Replicates*a.Sampling.Trials, b.Sampling.Replicates*b.Sampling.Trials)
+	}
+	return out
+}
+
+func short(hash string) string { return hash[:min(8, len(hash))] }
+
+// rows names the rows that came, went or changed.
+func rows(a, b job.Job) []string {
+	at := map[string]int{}
+	for i, m := range a.Members {
+		at[m.Mark] = i
+	}
+	var out, added []string
+	seen := map[string]bool{}
+	for _, m := range b.Members {
+		seen[m.Mark] = true
+		i, ok := at[m.Mark]
+		if !ok {
+			added = append(added, m.Mark)
+			continue
+		}
+		old := a.Members[i]
+		for _, d := range []struct {
+			what string
+			x, y any
+		}{{"quantity", old.Quantity, m.Quantity}, {"length", old.Length, m.Length}, {"arrangement", old.Arrangement, m.Arrangement}} {
+			if fmt.Sprint(d.x) != fmt.Sprint(d.y) {
+				out = append(out, fmt.Sprintf("%s %s %v → %v", m.Mark, d.what, d.x, d.y))
+			}
+		}
+		if fmt.Sprint(old.Loads, old.Axial) != fmt.Sprint(m.Loads, m.Axial) {
+			out = append(out, m.Mark+" other loads")
+		}
+	}
+	var gone []string
+	for _, m := range a.Members {
+		if !seen[m.Mark] {
+			gone = append(gone, m.Mark)
+		}
+	}
+	for _, l := range []struct {
+		word  string
+		marks []string
+	}{{"gone", gone}, {"added", added}} {
+		if len(l.marks) > 0 {
+			out = append([]string{fmt.Sprintf("rows %s: %d (%s)", l.word, len(l.marks), strings.Join(l.marks[:min(most, len(l.marks))], ", "))}, out...)
+		}
+	}
+	return append([]string{}, out...)
+}
+
+// sections names the rows that ask for another section, family or grade. What a
+// sizing chose anew because of other causes is theirs.
+func sections(a, b job.Job) []string {
+	at := map[string]string{}
+	asked := func(m schedule.Member) string {
+		if m.Treatment == schedule.ByMass {
+			return ""
+		}
+		return strings.TrimSpace(strings.Join([]string{cmp.Or(m.Section, m.Family), m.Grade}, " "))
+	}
+	for _, m := range a.Members {
+		at[m.Mark] = asked(m)
+	}
+	out := []string{}
+	for _, m := range b.Members {
+		if old, y := at[m.Mark], asked(m); old != "" && y != "" && old != y {
+			out = append(out, fmt.Sprintf("%s %s → %s", m.Mark, old, y))
+		}
+	}
+	return out
+}
+
+// risks names the discrete risks that came, went or changed.
+func risks(a, b []schedule.Risk) []string {
+	words := func(list []schedule.Risk) map[string]string {
+		out := map[string]string{}
+		for _, k := range list {
+			out[k.Name] = fmt.Sprintf("%.3g %% of %.6g", 100*k.Probability, k.Impact.Base())
+		}
+		return out
+	}
+	x, y := words(a), words(b)
+	all := maps.Clone(x)
+	maps.Copy(all, y)
+	out := []string{}
+	for _, n := range slices.Sorted(maps.Keys(all)) {
+		p, inA := x[n]
+		q, inB := y[n]
+		switch {
+		case !inA:
+			out = append(out, fmt.Sprintf("risk “%s” new (%s)", n, q))
+		case !inB:
+			out = append(out, fmt.Sprintf("risk “%s” gone", n))
+		case p != q:
+			out = append(out, fmt.Sprintf("risk “%s” %s → %s", n, p, q))
+		}
+	}
+	return out
+}
+
+// leading are the first segments of the register ids of a cause.
+var leading = map[Cause][]string{
+	Rate: {"rate/", "setting/reference price"}, Multiplier: {"multiplier/"}, Allowance: {"allowance/", "norm/"},
+	Escalation: {"escalation to "}, Exchange: {"exchange/"},
+}
+
+// entries names the register entries of a cause that differ.
+func entries(c Cause, a, b document.Document) []string {
+	value := func(d document.Document) map[string]string {
+		out := map[string]string{}
+		for _, e := range d.Assumptions {
+			if slices.ContainsFunc(leading[c], func(p string) bool { return strings.HasPrefix(e.ID, p) }) {
+				out[e.ID] = e.Value
+				if e.Spread != nil {
+					out[e.ID] = fmt.Sprint(e.Spread.Base())
+				}
+			}
+		}
+		return out
+	}
+	x, y := value(a), value(b)
+	out := []string{}
+	all := maps.Clone(x)
+	maps.Copy(all, y)
+	for _, id := range slices.Sorted(maps.Keys(all)) {
+		p, inA := x[id]
+		q, inB := y[id]
+		switch {
+		case !inA:
+			out = append(out, fmt.Sprintf("%s new (%s)", id, q))
+		case !inB:
+			out = append(out, id+" no longer in force")
+		case p != q:
+			out = append(out, fmt.Sprintf("%s %s → %s", id, p, q))
+		}
+	}
+	return out
+}
