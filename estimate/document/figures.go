@@ -1,7 +1,7 @@
 package document
 
 import (
-	"fmt"
+	"strconv"
 	"strings"
 
 	"spanwright/estimate/assumption"
@@ -19,7 +19,7 @@ import (
 //	carbon/{item}/{factor}, carbon/module/{module}, carbon/total, carbon/range
 func (d Document) Figures() map[string]string {
 	f := map[string]string{}
-	num := func(n Number) string { return fmt.Sprint(n.Rounded()) }
+	num := Number.text
 	for _, m := range d.Members {
 		p := "member/" + assumption.Segment(m.Mark)
 		f[p+"/net"] = num(m.Net)
@@ -75,9 +75,9 @@ func (c *Carbon) figures(f map[string]string) {
 		return
 	}
 	f["carbon/total"] = c.Total.String()
-	p := []string{fmt.Sprint(c.Mean.Rounded())}
+	p := []string{c.Mean.text()}
 	for _, q := range c.Percentiles {
-		p = append(p, fmt.Sprint(q.Value.Rounded()))
+		p = append(p, q.Value.text())
 	}
 	f["carbon/range"] = strings.Join(p, " ")
 	for _, m := range c.Modules {
@@ -87,3 +87,6 @@ func (c *Carbon) figures(f map[string]string) {
 		f[l.ID] = l.Amount.String()
 	}
 }
+
+// text is the number as printed, without an exponent.
+func (n Number) text() string { return strconv.FormatFloat(n.Rounded(), 'f', -1, 64) }

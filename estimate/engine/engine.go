@@ -105,6 +105,7 @@ type run struct {
 	priced      pricing.Priced
 	conversions []assumption.Entry // exchange and escalation
 	unescalated []string           // categories without an index
+	stale       []string           // exchange rates past their date, in words
 	systemic    takeoff.Allowance
 	ranged      ranges.Result
 	carbon      pricing.CarbonPriced

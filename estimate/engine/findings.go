@@ -251,6 +251,9 @@ func (r *run) priceFindings() []document.Finding {
 		}
 		out = append(out, document.Finding{Severity: severity, Code: "rate-" + n.Code, Subject: "total", Message: sentence(message), Figures: []string{"category/" + n.Category}})
 	}
+	for _, words := range r.stale {
+		out = append(out, document.Finding{Severity: document.Doubtful, Code: "exchange-expired", Subject: "total", Message: words, Figures: []string{"base"}})
+	}
 	for _, c := range slices.Compact(slices.Clone(r.unescalated)) {
 		if _, ok := r.priced.Categories[c]; !ok {
 			continue

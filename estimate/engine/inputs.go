@@ -1,6 +1,7 @@
 package engine
 
 import (
+	"strconv"
 	"strings"
 
 	"spanwright/estimate/assumption"
@@ -79,8 +80,28 @@ func occurs(id string, j job.Job) bool {
 func withResizing(entries []assumption.Entry) []assumption.Entry {
 	for i := range entries {
 		for _, f := range entries[i].Feeds {
-			entries[i].Resizes = entries[i].Resizes || strings.Contains(f, "/check/")
+			entries[i].Resizes = entries[i].Resizes || strings.HasPrefix(f, "member/") && strings.Contains(f, "/check/")
 		}
 	}
 	return entries
+}
+
+// inputValue is the value of an input of the Job sheet, as a reader would write it.
+func inputValue(id string, s schedule.Settings) string {
+	number := func(x float64, unit string) string { return strconv.FormatFloat(x, 'g', 12, 64) + " " + unit }
+	switch id {
+	case "input/haul distance":
+		return number(s.HaulDistance/1000, "km")
+	case "input/tax":
+		return number(s.TaxRate*100, "%")
+	case "input/kerf":
+		return number(s.Kerf*1000, "mm")
+	case "input/stock lengths":
+		return lengths(s.StockLengths)
+	case "input/spend date":
+		return s.SpendDate
+	case "input/management reserve":
+		return s.ManagementReserve.String()
+	}
+	return ""
 }

@@ -84,7 +84,7 @@ func (r *run) swapped(ctx context.Context, marks []string) (money.Decimal, error
 		return money.Zero, takeoffError(err)
 	}
 	other := *r
-	other.items, other.conversions, other.unescalated = items, nil, nil
+	other.items, other.conversions, other.unescalated, other.stale = items, nil, nil, nil
 	rates, err := other.rates()
 	if err != nil {
 		return money.Zero, err

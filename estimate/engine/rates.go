@@ -32,6 +32,9 @@ func (r *run) rates() (pricing.Rates, error) {
 	}
 	for _, from := range sortedKeys(exchanges) {
 		x := exchanges[from]
+		if x.ValidUntil != "" && x.ValidUntil < s.BaseDate {
+			r.stale = append(r.stale, fmt.Sprintf("The exchange rate of %s into %s was valid until %s, before the base date %s.", from, s.Currency, x.ValidUntil, s.BaseDate))
+		}
 		out.Exchange[from] = pricing.Conversion{Name: pricing.ExchangeRate, ID: x.ID, Value: x.Value, Spread: x.Spread, Group: x.Group}
 		r.conversions = append(r.conversions, assumption.Entry{
 			ID: x.ID, Kind: assumption.Rate, Statement: fmt.Sprintf("One %s in %s: %s", from, s.Currency, x.Note), Unit: s.Currency + "/" + from,

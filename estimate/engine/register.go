@@ -43,6 +43,7 @@ func (r *run) addSchedule() error {
 		if !occurs(e.ID, r.job) {
 			continue
 		}
+		e.Value = inputValue(e.ID, r.job.Settings)
 		if err := r.register.Add(e); err != nil {
 			return err
 		}

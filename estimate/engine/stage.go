@@ -126,7 +126,7 @@ func (s *Sized) Takeoff(ctx context.Context, j job.Job) (*Takeoff, error) {
 // allowances and limits of its book must be those of the job that was counted.
 func (t *Takeoff) Price(j job.Job) (pricing.Priced, error) {
 	r := *t.run
-	r.job, r.conversions, r.unescalated = j, nil, nil
+	r.job, r.conversions, r.unescalated, r.stale = j, nil, nil, nil
 	rates, err := r.rates()
 	if err != nil {
 		return pricing.Priced{}, err

@@ -100,6 +100,9 @@ func Freeze(s schedule.Schedule, src Source, book ratebook.Book, edited []ratebo
 			Source: "rate book " + book.Name, Owner: "Spanwright", Confidence: assumption.Medium, Feeds: []string{},
 		})
 	}
+	if s := settings; s.SpendDate != "" && s.SpendDate < s.BaseDate {
+		return Job{}, fmt.Errorf("spend date: found %s, before the base date %s; accepted: a date not before it", s.SpendDate, s.BaseDate)
+	}
 	defaults = takeSystems(&settings, book, defaults)
 	return Job{
 		Source: src, Settings: settings, Members: s.Members, Defaults: defaults, Omissions: s.Omissions, Risks: s.Risks,

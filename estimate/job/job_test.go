@@ -38,6 +38,8 @@ func TestFreezeRefuses(t *testing.T) {
 	yen := settings()
 	yen.Currency = "JPY"
 	bad := ratebook.Multiplier{Name: "x", Scope: ratebook.ProjectScope, Categories: []string{"roofing"}, Spread: spread.NewFixed(1), Reason: "r"}
+	early := settings()
+	early.SpendDate = "2020-01-01"
 	for name, c := range map[string]struct {
 		s        schedule.Settings
 		edited   []ratebook.Multiplier
@@ -45,6 +47,7 @@ func TestFreezeRefuses(t *testing.T) {
 		want     string
 	}{
 		"another currency": {yen, nil, DefaultSampling(), "JPY"},
+		"spent too early":  {early, nil, DefaultSampling(), "2020-01-01"},
 		"few replicates":   {settings(), nil, Sampling{Replicates: 31, Trials: 4096}, "31"},
 		"few trials":       {settings(), nil, Sampling{Replicates: 32, Trials: 63}, "63"},
 		"too many trials":  {settings(), nil, Sampling{Replicates: 4000, Trials: 4096}, "4000 × 4096"},
@@ -101,5 +104,39 @@ func TestCanonicalRoundTrip(t *testing.T) {
 		if _, err := Parse([]byte(bad)); err == nil {
 			t.Errorf("Parse(%q) was accepted", bad)
 		}
+	}
+}
+
+// A unit-rate book prices a blank coating as one of its systems; the job says which.
+func TestFreezeTakesTheSystemsOfTheBookAndSaysSo(t *testing.T) {
+	j, err := Freeze(schedule.Schedule{Settings: settings()}, Source{}, ratebook.UnitRate(), nil, DefaultSampling())
+	if err != nil {
+		t.Fatal(err)
+	}
+	ids := map[string]string{}
+	for _, d := range j.Defaults {
+		ids[d.ID] = d.Value
+	}
+	if j.Settings.Coating == "" || ids["default/coating"] != j.Settings.Coating || j.Settings.ExecutionClass == "" || ids["default/execution class"] != j.Settings.ExecutionClass {
+		t.Errorf("coating %q and class %q were taken; the register says %v", j.Settings.Coating, j.Settings.ExecutionClass, ids)
+	}
+	given := settings()
+	given.Coating, given.ExecutionClass = "none", "EXC3"
+	if j, err = Freeze(schedule.Schedule{Settings: given}, Source{}, ratebook.UnitRate(), nil, DefaultSampling()); err != nil || j.Settings.Coating != "none" || j.Settings.ExecutionClass != "EXC3" {
+		t.Errorf("what was given was replaced: %q, %q, %v", j.Settings.Coating, j.Settings.ExecutionClass, err)
+	}
+}
+
+// The conditions of a site put the book's multipliers for them in force, no others.
+func TestSiteConditionsPutMultipliersInForce(t *testing.T) {
+	s := settings()
+	s.SiteConditions = []string{"tidal"}
+	book := ratebook.UnitRate()
+	j, err := Freeze(schedule.Schedule{Settings: s}, Source{}, book, nil, DefaultSampling())
+	if err != nil {
+		t.Fatal(err)
+	}
+	if got, want := len(j.Multipliers), len(book.Multipliers)+1; got != want {
+		t.Errorf("%d multipliers are in force, want %d: those of the book and that of the tide", got, want)
 	}
 }
