@@ -29,6 +29,7 @@ type Builder struct {
 	stream  *excelize.StreamWriter
 	streams []*excelize.StreamWriter
 	row     int
+	widths  []float64 // of the current sheet's columns, in characters
 	styles  map[look]int
 	err     error
 }
@@ -93,7 +94,9 @@ func (b *Builder) layOut(name string) {
 
 func (b *Builder) addColumns(name string, columns []Column) {
 	heads, headed := make([]Value, len(columns)), false
+	b.widths = make([]float64, len(columns))
 	for i, c := range columns {
+		b.widths[i] = c.Width
 		if c.Width > 0 && b.err == nil {
 			b.do(b.stream.SetColWidth(i+1, i+1, c.Width))
 		}
@@ -122,7 +125,7 @@ func (b *Builder) Row(values ...Value) int {
 		cells[i] = cell
 	}
 	if b.err == nil {
-		b.do(b.stream.SetRow("A"+strconv.Itoa(b.row), cells))
+		b.do(b.stream.SetRow("A"+strconv.Itoa(b.row), cells, excelize.RowOpts{Height: b.height(values)}))
 	}
 	return b.row
 }

@@ -222,3 +222,49 @@ func TestLargeWorkbookLeavesNoTemporaryFile(t *testing.T) {
 		t.Errorf("left behind: %v, %v", entries, err)
 	}
 }
+
+// A wrapped text asks for line breaks in its style and keeps what else it is.
+func TestWrappedTexts(t *testing.T) {
+	b := NewBuilder()
+	b.Sheet("S", Column{Width: 8}, Column{Width: 40})
+	b.Row(TextOf("a long text of five lines or so").Wrap(), TextOf("UNSAFE").Wrap().Total())
+	b.Row(TextOf("short").Wrap(), TextOf("a text that is too long for its column, but not wrapped"))
+	data, err := b.Bytes()
+	if err != nil {
+		t.Fatal(err)
+	}
+	f, err := excelize.OpenReader(bytes.NewReader(data))
+	if err != nil {
+		t.Fatal(err)
+	}
+	for cell, bold := range map[string]bool{"A1": false, "B1": true} {
+		id, err := f.GetCellStyle("S", cell)
+		if err != nil {
+			t.Fatal(err)
+		}
+		s, err := f.GetStyle(id)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if s.Alignment == nil || !s.Alignment.WrapText || (s.Font != nil && s.Font.Bold) != bold {
+			t.Errorf("%s is drawn with %+v, %+v", cell, s.Alignment, s.Font)
+		}
+	}
+	for row, want := range map[int]float64{1: 5 * lineHeight, 2: lineHeight} {
+		if got, err := f.GetRowHeight("S", row); err != nil || got != want {
+			t.Errorf("row %d is %v points high, %v, want %v", row, got, err, want)
+		}
+	}
+}
+
+func TestLinesOfWrappedTexts(t *testing.T) {
+	for _, c := range []struct {
+		text  string
+		width int
+		want  int
+	}{{"", 10, 1}, {"ten chars.", 10, 1}, {"ten chars. and more", 10, 2}, {strings.Repeat("x", 25), 10, 3}, {"a " + strings.Repeat("x", 20) + " b", 10, 4}, {"ä ö ü", 5, 1}} {
+		if got := lines(c.text, c.width); got != c.want {
+			t.Errorf("%q in %d characters: %d lines, want %d", c.text, c.width, got, c.want)
+		}
+	}
+}

@@ -42,6 +42,9 @@ func (l look) style() *excelize.Style {
 	if l.input {
 		s.Fill = fill(fillInput)
 	}
+	if l.wrap {
+		s.Alignment = &excelize.Alignment{WrapText: true}
+	}
 	if l.note {
 		s.Font = &excelize.Font{Italic: true, Color: inkNote, Family: fontFamily, Size: fontSize}
 		s.Alignment = &excelize.Alignment{WrapText: true, Vertical: "top"}

@@ -37,6 +37,7 @@ const (
 type look struct {
 	format                   NumberFormat
 	head, total, note, input bool
+	wrap                     bool
 }
 
 // Value is one cell to write. The zero Value is blank.
@@ -79,6 +80,9 @@ func (v Value) Total() Value { v.drawn.total = true; return v }
 
 // Note draws the cell as a note: grey, wrapped.
 func (v Value) Note() Value { v.drawn.note = true; return v }
+
+// Wrap breaks a long text into lines within its column.
+func (v Value) Wrap() Value { v.drawn.wrap = true; return v }
 
 // Input draws the cell as one that is meant to be changed.
 func (v Value) Input() Value { v.drawn.input = true; return v }

@@ -8,10 +8,11 @@ import (
 	"spanwright/estimate/sheet"
 )
 
-// CSV returns the priced lines as CSV: one row a line with its multipliers in
-// columns m1 to mk, then one row a category and one for the base, whose ids are
-// those of the document's figures. Amounts are exact decimals. It refuses what
-// XLSX refuses.
+// CSV returns the priced lines as CSV: one row a line with its rate (the product
+// of its parts, to 15 significant digits), its multipliers in columns m1 to mk,
+// unit price and amount, then one row a category and one for the base, whose ids
+// are those of the document's figures. Quantities, unit prices and amounts are
+// exact decimals. It refuses what XLSX refuses.
 func CSV(d document.Document) ([]byte, error) {
 	b, err := newBook(d)
 	if err != nil {
@@ -24,7 +25,7 @@ func CSV(d document.Document) ([]byte, error) {
 	for i := range b.width {
 		head = append(head, sheet.TextOf(fmt.Sprintf("m%d", i+1)))
 	}
-	head = append(head, sheet.TextOf("amount"), sheet.TextOf("currency"), sheet.TextOf("multipliers"))
+	head = append(head, sheet.TextOf("unit price"), sheet.TextOf("amount"), sheet.TextOf("currency"), sheet.TextOf("multipliers"))
 	rows := [][]sheet.Value{head}
 	for _, l := range d.Lines {
 		rows = append(rows, b.csvLine(l))
@@ -43,7 +44,7 @@ func CSV(d document.Document) ([]byte, error) {
 func (b *book) csvLine(l document.Line) []sheet.Value {
 	row := []sheet.Value{
 		sheet.TextOf(l.ID), sheet.TextOf(l.Group), sheet.TextOf(l.Category), sheet.TextOf(l.Driver),
-		sheet.NumberOf(l.Quantity.String(), sheet.General), sheet.TextOf(l.Unit), sheet.NumberOf(l.Rate.String(), sheet.General),
+		sheet.NumberOf(l.Quantity.String(), sheet.General), sheet.TextOf(l.Unit), sheet.NumberOf(shown(b.rateOf(l).product), sheet.General),
 	}
 	for i := range b.width {
 		if i < len(l.Multipliers) {
@@ -52,12 +53,12 @@ func (b *book) csvLine(l document.Line) []sheet.Value {
 			row = append(row, sheet.Blank())
 		}
 	}
-	return append(row, sheet.NumberOf(l.Amount.String(), sheet.General), sheet.TextOf(b.currency.Code), sheet.TextOf(multiplierNames(l)))
+	return append(row, sheet.NumberOf(l.UnitPrice.String(), sheet.General), sheet.NumberOf(l.Amount.String(), sheet.General), sheet.TextOf(b.currency.Code), sheet.TextOf(multiplierNames(l)))
 }
 
 func (b *book) csvTotal(id, category, amount string) []sheet.Value {
 	row := []sheet.Value{sheet.TextOf(id), sheet.Blank(), sheet.TextOf(category)}
-	for range 4 + b.width {
+	for range 5 + b.width {
 		row = append(row, sheet.Blank())
 	}
 	return append(row, sheet.NumberOf(amount, sheet.General), sheet.TextOf(b.currency.Code), sheet.Blank())

@@ -23,15 +23,15 @@ func decimal(t testing.TB, text string) money.Decimal {
 	return d
 }
 
-// priced is a line before its product is known: the factors as text.
-type priced struct {
+// plainLine is a line before its product is known: the factors as text.
+type plainLine struct {
 	group, category, quantity, rate string
 	multipliers                     []string
 }
 
 // estimate makes a document of lines: amounts, categories, groups and base are
 // sums of exact decimals, as the engine's are.
-func estimate(t testing.TB, currency string, lines []priced) document.Document {
+func estimate(t testing.TB, currency string, lines []plainLine) document.Document {
 	t.Helper()
 	c, err := money.FindCurrency(currency)
 	if err != nil {
@@ -48,16 +48,18 @@ func estimate(t testing.TB, currency string, lines []priced) document.Document {
 		l := document.Line{ID: fmt.Sprintf("line/item %d/%s", i+1, p.category), Item: fmt.Sprintf("item %d", i+1), Group: p.group,
 			Category: p.category, Driver: "delivered tonnes", Quantity: decimal(t, p.quantity), Unit: "t", Rate: decimal(t, p.rate),
 			RateFormula: "reference price × ratio", Multipliers: []document.Multiplier{}, Assumptions: []string{"rate/" + p.category}}
-		factors := []money.Decimal{l.Quantity, l.Rate}
+		l.RateID, l.RateScope = "rate/"+p.category, "rate book"
+		product := l.Rate
 		for j, m := range p.multipliers {
 			l.Multipliers = append(l.Multipliers, document.Multiplier{Name: fmt.Sprintf("multiplier %d", j+1), Scope: "group", Subject: p.group, Value: decimal(t, m)})
-			factors = append(factors, decimal(t, m))
+			product = product.Mul(decimal(t, m))
 		}
-		product, err := money.Product(factors...)
+		l.UnitPrice = product.Round(8).Round(c.MinorDigits + 2)
+		exact, err := money.Product(l.Quantity, l.UnitPrice)
 		if err != nil {
 			t.Fatal(err)
 		}
-		l.Amount = c.Round(product)
+		l.Amount = c.Round(exact)
 		d.Lines = append(d.Lines, l)
 		categories[p.category] = categories[p.category].Add(l.Amount)
 		d.Totals.Base = d.Totals.Base.Add(l.Amount)
@@ -108,7 +110,7 @@ func fillRange(t testing.TB, d *document.Document, c money.Currency) {
 // brackwater is an estimate with everything in it: sized members, an unsafe
 // shortcut, a failing section, secondary steel, spreads of every kind.
 func brackwater(t testing.TB) document.Document {
-	d := estimate(t, "EUR", []priced{
+	d := estimate(t, "EUR", []plainLine{
 		{"boom", "material", "81.915", "900", nil}, {"boom", "fabrication", "78.203", "2160.0", []string{"1.15", "1.0500"}},
 		{"boom", "coating", "78.203", "450.0", []string{"0.9725"}}, {"boom", "erection", "78.203", "1350.0", []string{"1.1"}},
 		{"trestles", "material", "39.115", "900", nil}, {"trestles", "fabrication", "36.590", "2160.0", []string{"1.05"}},
@@ -122,6 +124,29 @@ func brackwater(t testing.TB) document.Document {
 			Length: 96, Surface: 201, Net: decimal(t, "31.877"), Delivered: decimal(t, "36.590"), Purchased: decimal(t, "39.115")},
 		{ID: "walkway/grating/not sized/simple beams", Group: "walkway", Family: "grating", Treatment: "not sized", Connection: "simple beams",
 			Marks: []string{"W1"}, Pieces: 1, Length: 60, Net: decimal(t, "12.940"), Delivered: decimal(t, "14.803"), Purchased: decimal(t, "15.275")},
+	}
+	for i := range d.Items {
+		it := &d.Items[i]
+		bolts := document.Factor{Assumption: "allowance/bolts", Value: 1.02}
+		for _, q := range []struct {
+			driver string
+			value  money.Decimal
+			on     []document.Factor
+		}{{"net tonnes", it.Net, nil}, {"delivered tonnes", it.Delivered, []document.Factor{bolts}}, {"purchased tonnes", it.Purchased, nil}} {
+			measured := q.value.Float64()
+			for _, f := range q.on {
+				measured /= float64(f.Value)
+			}
+			it.Quantities = append(it.Quantities, document.Quantity{Driver: q.driver, Unit: "t", Value: q.value, Measured: document.Number(measured), Factors: q.on, Formula: "drawn mass × factors"})
+		}
+	}
+	for i := range d.Lines {
+		l := &d.Lines[i]
+		l.Item = d.Items[slices.IndexFunc(d.Items, func(it document.Item) bool { return it.Group == l.Group })].ID
+		l.ID = "line/" + l.Item + "/" + l.Category
+		if l.Category == "material" {
+			l.Driver = "purchased tonnes"
+		}
 	}
 	for i, it := range d.Items { // sorted as the groups are
 		g := &d.Groups[i]
@@ -156,8 +181,30 @@ func brackwater(t testing.TB) document.Document {
 		{ID: "systemic/class 4", Kind: assumption.Systemic, Statement: "Systemic factor on the whole base", Source: "rate book", Owner: "starting book",
 			Confidence: assumption.Low, Spread: &spread.Spread{Distribution: spread.Lognormal, Low: 0.794, Likely: 1, High: 1.2595}, Feeds: []string{"range"}},
 	}
+	brackwaterParts(t, &d)
 	d.Inclusions = []string{"Steelwork as scheduled", "Connections, bolts, growth"}
 	d.Exclusions = []string{"Foundations", "Taxes", "Fatigue checks"}
 	d.Notes = []string{"Rates are invented."}
 	return d
+}
+
+// brackwaterParts adds what goes beyond masses and money.
+func brackwaterParts(t testing.TB, d *document.Document) {
+	m := &d.Members[2]
+	m.Inputs = []document.Measure{{Symbol: "permanent load", Value: 6, Unit: "kN/m"}, {Symbol: "axial load", Value: 1180, Unit: "kN"}}
+	m.Checks = []document.Check{{ID: "flexural buckling", Clause: "EN 1993-1-1, 6.3.1", Formula: "NEd / Nb,Rd", Demand: 1204, Resistance: 1110.6, Unit: "kN",
+		Utilisation: 1.0841, Inputs: []document.Measure{{Symbol: "Lcr", Value: 12, Unit: "m"}, {Symbol: "χ", Value: 0.317}}}}
+	d.Range.Sensitivities = []document.Sensitivity{{Assumption: "systemic/class 4", Share: 0.61, Swing: 182_000, Narrowing: 121_000},
+		{Assumption: "rate/fabrication", Share: 0.22, Swing: 101_000, Narrowing: 32_500}}
+	d.Range.SensitivityMethod = "Share by covariance; swing and narrowing on the same draws."
+	d.Range.Risks = []document.RiskRange{{Assumption: "risk/late permit", Name: "permit for the quay comes late", Probability: 0.2, Mean: 9000, Share: 0.012, Contingency: decimal(t, "2194.38")}}
+	d.Shipping = document.Shipping{Limits: []string{"vehicle 13.6 × 2.55 × 2.7 m, 25 t", "galvanising bath 12.5 × 1.8 × 2.8 m"},
+		Loads:    []document.Load{{Group: "boom", Pieces: 4, Splices: 8, ByMass: 3.13, ByLength: 4.2, ByVolume: 2.1, Vehicles: 6, Permits: 4, Governing: "length"}},
+		Breaches: []document.Breach{{Mark: "B1", Envelope: "vehicle", Measure: "length", Value: 37, Limit: 13.6, Unit: "m", Needs: "two site splices in each piece"}}}
+	d.Cutting = []document.CuttingPlan{{Section: "HEB 300", Grade: "S235", Method: "first fit", Kerf: 0.005, Stock: 120.8, Used: 96, Yield: 0.7947, Bound: 120.8, Proven: true,
+		Bars: []document.Bars{{Length: 15.1, Count: 8}}, Purchased: decimal(t, "14.134"),
+		Patterns: []document.Pattern{{Stock: 15.1, Count: 8, Cuts: []document.Cut{{Mark: "T1", Length: 12, Count: 1}}}}, Hint: "12.1 m bars would save 24 m"}}
+	d.Class = document.Class{Stated: 4, Suggested: 4, Why: "two of eight items are defined", Low: -0.21, High: 0.29,
+		Definition: []document.Definition{{Item: "loads", State: "preliminary"}, {Item: "connections", State: "none"}},
+		Typical:    []document.Typical{{Industry: "process plant", LowFrom: -0.3, LowTo: -0.15, HighFrom: 0.2, HighTo: 0.5, Source: "AACE 18R-97 (from memory)"}}}
 }

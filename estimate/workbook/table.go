@@ -111,9 +111,39 @@ func (p *page) headline(d document.Document) {
 	p.row("contingency", fmt.Sprintf("%s (%s), which reaches %s at %s", money(t.Contingency.Float64()), t.Contingency,
 		percentileLabel(t.Confidence), money(t.AtConfidence.Float64())))
 	p.row("tonnage", fmt.Sprintf("net %s t, delivered %s t, purchased %s t; %d members, %d pieces", t.Net, t.Delivered, t.Purchased, t.Members, t.Pieces))
+	if d.Carbon != nil {
+		p.row("carbon", fmt.Sprintf("%s kg CO₂e, %.4g for each delivered tonne; %s", d.Carbon.Total, float64(d.Carbon.PerTonne), carbonModules(d.Carbon)))
+	}
+	if t.Reserve.Sign() > 0 {
+		p.row("reserve", t.Reserve.String()+" held outside the range by who approves")
+	}
+	if t.Tax.Sign() > 0 {
+		p.row("tax", t.Tax.String()+" on the cost at "+percentileLabel(t.Confidence)+", outside every other figure")
+	}
+	for i, s := range d.Range.Sensitivities {
+		label := ""
+		if i == 0 {
+			label = "firm up next"
+		}
+		if i < firmest && s.Narrowing > 0 {
+			p.row(label, fmt.Sprintf("%s: narrows P10 to P90 by %s, %.0f %% of the variance", s.Assumption, money(float64(s.Narrowing)), 100*float64(s.Share)))
+		}
+	}
 	for _, w := range d.Range.Warnings {
 		p.row("warning", w)
 	}
+}
+
+// firmest is how many assumptions the headline names that would narrow the range
+// most.
+const firmest = 3
+
+func carbonModules(c *document.Carbon) string {
+	var out []string
+	for _, m := range c.Modules {
+		out = append(out, m.Module+" "+m.Amount.String())
+	}
+	return strings.Join(out, ", ")
 }
 
 // percentileShort is a probability as a percentile to three figures.
@@ -150,11 +180,15 @@ func (p *page) members(d document.Document) {
 		if section == "" {
 			section, utilisation = m.Treatment, ""
 		}
+		length := strconv.FormatFloat(float64(m.Length), 'f', 2, 64) + " m"
+		if m.ConcreteItem != "" && m.Length == 0 {
+			length, section = "", "concrete"
+		}
 		mark := marks[m.Mark]
 		if _, reasons, found := strings.Cut(mark, ": "); found {
 			mark = unsafeMark + " " + reasons
 		}
-		g.add(m.Mark, strconv.Itoa(m.Quantity), strconv.FormatFloat(float64(m.Length), 'f', 2, 64)+" m", section, m.Grade, m.Governing, utilisation, mark)
+		g.add(m.Mark, strconv.Itoa(m.Quantity), length, section, m.Grade, m.Governing, utilisation, mark)
 	}
 	g.write(p)
 }

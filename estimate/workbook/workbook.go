@@ -1,13 +1,25 @@
 // Package workbook writes an estimate document for people who work in
 // spreadsheets or on a terminal.
 //
-//	Document → book (where each line and total will stand) → sheets → XLSX bytes
-//	each line: quantity, rate, multipliers as numbers, amount as a live formula
-//	    with the document's amount as its cached value
+//	Document → book: every input once (allowances, prices, multipliers, carbon
+//	    factors), its cell and its name; where each quantity and line will stand
+//	         → verified: each formula gives the document's figure
+//	         → sheets → XLSX bytes, live from the inputs to the base
 //	Document → CSV (the lines), Table (plain text)
 //
 // A document whose lines do not compute to its own amounts is refused, because
 // the recalculated workbook would show another total than the estimate.
+//
+// # Names of cells
+//
+// Formulas and other workbooks may rely on these: base, base_as_priced,
+// base_difference, at_confidence, contingency, percentile_10 (P10 itself is the
+// address of a cell), and for each input its id in the register in small letters,
+// with _ for whatever is no letter or digit: allowance_…, multiplier_…, carbon_….
+// A price is named by its part and its rate (price_shop_labour), what several
+// rates share by its part and register entry (exchange_usd), the price that a
+// line takes by its rate (rate_shop_labour). Two that would have one name are
+// told apart by _2, _3 in the order of their ids.
 package workbook
 
 import (
@@ -19,27 +31,41 @@ import (
 	"spanwright/estimate/sheet"
 )
 
-// Names of the cells that other workbooks and scripts may rely on. A percentile
-// is named percentile_10 and so on, because P10 is the address of a cell.
+// Names of single cells.
 const (
-	NameBase         = "base"
-	NameContingency  = "contingency"
-	NameAtConfidence = "at_confidence"
-	namePercentile   = "percentile_"
+	NameBase           = "base"
+	NameBaseAsPriced   = "base_as_priced"
+	NameBaseDifference = "base_difference"
+	NameContingency    = "contingency"
+	NameAtConfidence   = "at_confidence"
+	namePercentile     = "percentile_"
 )
 
-// Names of the sheets, in their order.
+// Names of the sheets, in their order. Those of a part that a document lacks are
+// left out.
 const (
 	summarySheet     = "Summary"
+	scheduleSheet    = "Schedule"
+	itemsSheet       = "Items"
+	takeoffSheet     = "Take-off"
+	allowancesSheet  = "Allowances"
+	ratesSheet       = "Rates"
+	conversionsSheet = "Conversions"
+	multipliersSheet = "Multipliers"
 	linesSheet       = "Lines"
+	partSumsSheet    = "Part sums"
 	categoriesSheet  = "Categories"
 	groupsSheet      = "Groups"
-	takeoffSheet     = "Take-off"
-	membersSheet     = "Members"
 	rangeSheet       = "Range"
+	classSheet       = "Class"
+	carbonSheet      = "Carbon"
+	factorsSheet     = "Carbon factors"
+	shippingSheet    = "Shipping"
+	cuttingSheet     = "Cutting"
 	assumptionsSheet = "Assumptions"
 	findingsSheet    = "Findings"
-	scopeSheet       = "Inclusions and exclusions"
+	scopeSheet       = "Scope"
+	traceSheet       = "Trace"
 )
 
 // book is a workbook on its way: the document with what several sheets must
@@ -50,30 +76,33 @@ type book struct {
 	sha256   string // of the document's canonical bytes
 	currency money.Currency
 	money    sheet.NumberFormat
-	width    int   // number of multiplier columns on the sheet Lines
-	inner    []int // per line: places of the inner rounding
+	inputs
+	quantities map[string]int // row on Take-off, by quantityKey
+	counted    []counted      // the rows of Take-off
+	factors    int            // most factors of a quantity
+	shapes     []lineShape    // the document's lines: how each is rounded and where its quantity comes from
+	lineRows   map[string]int // row on Lines, by id of the line
+	partSums   []partSum      // of sums too long for one formula
+	carbonAt   []int          // per carbon line: decimals of the inner rounding
 }
 
 // XLSX returns the workbook of a document. The bytes depend on the document
 // alone. It refuses a document in an unknown currency, with a figure that is no
-// number or has more than 15 significant digits, or whose lines, categories and
-// base do not agree.
+// number or an amount that needs more than 15 significant digits, or whose
+// quantities, lines, categories and base do not agree.
 func XLSX(d document.Document) ([]byte, error) {
 	b, err := newBook(d)
 	if err != nil {
 		return nil, fmt.Errorf("writing the workbook: %w", err)
 	}
 	b.Builder = sheet.NewBuilder()
-	b.summary()
-	b.lines()
-	b.categories()
-	b.groups()
-	b.takeoff()
-	b.members()
-	b.ranges()
-	b.assumptions()
-	b.findings()
-	b.scope()
+	for _, write := range []func(){
+		b.summary, b.schedule, b.items, b.takeoff, b.allowances, b.rates, b.conversions, b.multipliers,
+		b.lines, b.sums, b.categories, b.groups, b.ranges, b.class, b.carbon, b.carbonFactors, b.shipping,
+		b.cutting, b.assumptions, b.findings, b.scope, b.trace,
+	} {
+		write()
+	}
 	return b.Bytes()
 }
 
@@ -86,20 +115,13 @@ func newBook(d document.Document) (*book, error) {
 	if err != nil {
 		return nil, err
 	}
-	b := &book{doc: d, sha256: sum, currency: currency, money: moneyFormat(currency), width: mostMultipliers(d)}
-	if err := b.check(); err != nil {
-		return nil, err
+	b := &book{doc: d, sha256: sum, currency: currency, money: moneyFormat(currency.MinorDigits), inputs: gather(d)}
+	for _, step := range []func() error{b.countAll, b.priceAll, b.checkTotals, b.checkCarbon} {
+		if err := step(); err != nil {
+			return nil, err
+		}
 	}
 	return b, nil
-}
-
-// mostMultipliers is the largest number of multipliers on a line.
-func mostMultipliers(d document.Document) int {
-	most := 0
-	for _, l := range d.Lines {
-		most = max(most, len(l.Multipliers))
-	}
-	return most
 }
 
 // Formats of this workbook: each ends with a space as wide as a bracket, so that
@@ -111,111 +133,59 @@ const (
 	oneDigit                    = sheet.OneDigit + gap
 	length   sheet.NumberFormat = "#,##0.00" + gap
 	count                       = sheet.Whole + gap
+	free     sheet.NumberFormat = "#,##0.######" + gap // a price or a quantity of any driver
+	percent                     = sheet.Percent + gap
 )
 
-// moneyFormat shows an amount with the decimals of the currency's minor unit.
-func moneyFormat(c money.Currency) sheet.NumberFormat {
-	f := "#,##0"
-	for i := range c.MinorDigits {
+// moneyFormat shows an amount with a number of decimals.
+func moneyFormat(places int) sheet.NumberFormat { return digits(places) + gap }
+
+func digits(places int) sheet.NumberFormat {
+	f := sheet.Whole
+	for i := range places {
 		if i == 0 {
 			f += "."
 		}
 		f += "0"
 	}
-	return sheet.NumberFormat(f) + gap
-}
-
-// check proves that the formulas will give the document's amounts, and finds the
-// rounding that each line needs.
-func (b *book) check() error {
-	total := money.Zero
-	byCategory := map[string]money.Decimal{}
-	for _, l := range b.doc.Lines {
-		places, err := innerPlaces(l, b.currency)
-		if err != nil {
-			return err
-		}
-		b.inner = append(b.inner, places)
-		total = total.Add(l.Amount)
-		byCategory[l.Category] = byCategory[l.Category].Add(l.Amount)
-	}
-	if !total.Equal(b.doc.Totals.Base) {
-		return fmt.Errorf("the lines add up to %s, the document's base is %s", total, b.doc.Totals.Base)
-	}
-	sum := money.Zero
-	for _, c := range b.doc.Categories {
-		if !byCategory[c.Category].Equal(c.Amount) {
-			return fmt.Errorf("the lines of category %q add up to %s, the document says %s", c.Category, byCategory[c.Category], c.Amount)
-		}
-		sum = sum.Add(c.Amount)
-	}
-	if !sum.Equal(total) {
-		return fmt.Errorf("the categories add up to %s, the document's base is %s", sum, total)
-	}
-	return nil
-}
-
-// linePlaces is the usual rounding of a product before it is rounded to the
-// minor unit. It takes off the noise of binary multiplication, which would turn
-// a tie such as 1.005 into 1.00499999….
-const linePlaces = 8
-
-// innerPlaces returns the decimals to which the product of a line is rounded
-// first: 8, fewer where a large product leaves no more within the 15 digits of a
-// spreadsheet's numbers, and all of the product's own where its ninth decimal
-// decides. It is an error when no rounding gives the document's amount.
-func innerPlaces(l document.Line, c money.Currency) (int, error) {
-	factors := []money.Decimal{l.Quantity, l.Rate}
-	for _, m := range l.Multipliers {
-		factors = append(factors, m.Value)
-	}
-	product, err := money.Product(factors...)
-	if err != nil {
-		return 0, fmt.Errorf("%s: %w", l.ID, err)
-	}
-	usual := max(0, min(linePlaces, money.WorkbookDigits-wholeDigits(product)))
-	for _, places := range []int{usual, decimals(product)} {
-		if c.Round(product.Round(places)).Equal(l.Amount) {
-			return places, nil
-		}
-	}
-	return 0, fmt.Errorf("%s: quantity × rate × multipliers is %s, the document says %s", l.ID, product, l.Amount)
-}
-
-// wholeDigits is the number of digits before the point.
-func wholeDigits(d money.Decimal) int {
-	if d.Sign() < 0 {
-		d = d.Neg()
-	}
-	whole, _, _ := cutPoint(d)
-	if whole == "0" {
-		return 0
-	}
-	return len(whole)
-}
-
-// decimals is the number of decimals without trailing zeros.
-func decimals(d money.Decimal) int {
-	_, fraction, _ := cutPoint(d)
-	return len(fraction)
+	return f
 }
 
 // number is a figure of the document as a workbook cell.
 func number(n document.Number, format sheet.NumberFormat) sheet.Value {
-	return sheet.NumberOf(strconv.FormatFloat(n.Rounded(), 'f', -1, 64), format)
+	return sheet.NumberOf(plainNumber(n), format)
+}
+
+// plainNumber is a figure as it is printed, without an exponent.
+func plainNumber(n document.Number) string { return strconv.FormatFloat(n.Rounded(), 'f', -1, 64) }
+
+// given is a figure that 0 means the absence of.
+func given(n document.Number, format sheet.NumberFormat) sheet.Value {
+	if n == 0 {
+		return sheet.Blank()
+	}
+	return number(n, format)
 }
 
 // whole is a count as a workbook cell.
 func whole(n int) sheet.Value { return sheet.NumberOf(strconv.Itoa(n), count) }
 
+// exactly is a decimal as a workbook cell.
+func exactly(d money.Decimal, format sheet.NumberFormat) sheet.Value {
+	return sheet.NumberOf(d.String(), format)
+}
+
 // amount is a sum of money as a workbook cell.
-func (b *book) amount(d money.Decimal) sheet.Value { return sheet.NumberOf(d.String(), b.money) }
+func (b *book) amount(d money.Decimal) sheet.Value { return exactly(d, b.money) }
 
 // rounded wraps a formula in a rounding to the minor unit, which takes off the
 // noise of binary addition.
-func (b *book) rounded(expr string) string {
-	return fmt.Sprintf("ROUND(%s,%d)", expr, b.currency.MinorDigits)
-}
+func (b *book) rounded(expr string) string { return round(expr, b.currency.MinorDigits) }
+
+func round(expr string, places int) string { return fmt.Sprintf("ROUND(%s,%d)", expr, places) }
+
+// wrapped is a text that breaks into lines within its column.
+func wrapped(s string) sheet.Value { return text(s).Wrap() }
 
 // text is a text cell, cut where it is longer than a cell may be.
 func text(s string) sheet.Value {

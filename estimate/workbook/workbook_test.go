@@ -90,9 +90,10 @@ func TestCachedValuesAreTheDocuments(t *testing.T) {
 		for j, m := range l.Multipliers {
 			same(t, l.ID+" multiplier", at(lines, sheet.Letters(8+j), row), m.Value)
 		}
-		same(t, l.ID+" amount", at(lines, "J", row), l.Amount)
+		same(t, l.ID+" unit price", at(lines, "J", row), l.UnitPrice)
+		same(t, l.ID+" amount", at(lines, "K", row), l.Amount)
 	}
-	same(t, "total of the lines", at(lines, "J", find(t, lines, "base estimate")), d.Totals.Base)
+	same(t, "total of the lines", at(lines, "K", find(t, lines, "base estimate")), d.Totals.Base)
 	categories := book[categoriesSheet]
 	for i, c := range d.Categories {
 		same(t, c.Category, at(categories, "B", firstRow+i), c.Amount)
@@ -111,7 +112,7 @@ func TestCachedValuesAreTheDocuments(t *testing.T) {
 		t.Fatal(err)
 	}
 	for label, want := range map[string]string{"project": d.Job.Project, "base date": "2026-06-01", "currency": "EUR",
-		"unsafe findings": "2", "engine version": "1", "estimate class": "4", "chosen confidence": "80%"} {
+		"unsafe findings": "2", "engine version": strconv.Itoa(document.EngineVersion), "estimate class": "4", "chosen confidence": "80%"} {
 		if got := at(s, "B", find(t, s, label)); got != want {
 			t.Errorf("%s is %q, want %q", label, got, want)
 		}
@@ -130,7 +131,7 @@ func TestCautionComesFirst(t *testing.T) {
 	if got := book[summarySheet]["A2"]; !strings.HasPrefix(got, "UNSAFE: 2 findings") {
 		t.Errorf("Summary goes on with %q", got)
 	}
-	if got := book[membersSheet]["A2"]; got != document.Caution {
+	if got := book[scheduleSheet]["A2"]; got != document.Caution {
 		t.Errorf("Members begins with %q", got)
 	}
 	if got := Table(d); !strings.HasPrefix(strings.Join(strings.Fields(got), " "), document.Caution) {
@@ -139,7 +140,7 @@ func TestCautionComesFirst(t *testing.T) {
 }
 
 func TestMembersShowSizingAndUnsafeMarks(t *testing.T) {
-	m := cells(t, write(t, brackwater(t)))[membersSheet]
+	m := cells(t, write(t, brackwater(t)))[scheduleSheet]
 	for _, c := range []struct{ mark, section, governing, utilisation, unsafe string }{
 		{"B1", "CHS 508 × 16", "deflection", "0.9712", "UNSAFE: shortcut"}, {"B2", "CHS 711 × 20", "bending", "0.8123", ""},
 		{"T1", "HEB 300", "flexural buckling", "1.0841", "UNSAFE: fails"}, {"W1", "", "", "", ""},
@@ -190,27 +191,33 @@ func TestScopeListsEverything(t *testing.T) {
 	}
 }
 
-// Percentiles stand in rows 2 to 5, mean and deviation below them, the curve of
-// 101 points from row 10 on.
+// Percentiles stand in rows 2 to 5 with the contingency that each needs, mean and
+// deviation below them, then what the reader must know, then the curve of 101 points.
 func TestRangeSheet(t *testing.T) {
 	d := brackwater(t)
+	d.Range.Percentiles[3].Contingency = decimal(t, "259999.99")
+	d.Range.Sensitivities = []document.Sensitivity{{Assumption: "allowance/bolts", Share: 0.25, Swing: 1234.5, Narrowing: 4321}}
+	d.Range.Risks = []document.RiskRange{{Assumption: "risk/1", Name: "late permit", Probability: 0.2, Mean: 900, Share: 0.01, Contingency: decimal(t, "12.34")}}
 	r := cells(t, write(t, d))[rangeSheet]
+	curve := find(t, r, "cumulative curve")
 	for _, c := range []struct {
-		row   int
-		label string
-		value document.Number
+		row           int
+		label, column string
+		value         float64
 	}{
-		{2, "10%", d.Range.Percentiles[0].Value}, {5, "90%", d.Range.Percentiles[3].Value}, {6, "mean", d.Range.Mean},
-		{10, "0%", d.Range.Curve[0]}, {60, "50%", d.Range.Curve[50]}, {110, "100%", d.Range.Curve[100]},
+		{2, "10%", "B", d.Range.Percentiles[0].Value.Rounded()}, {5, "90%", "B", d.Range.Percentiles[3].Value.Rounded()}, {5, "90%", "D", 259999.99},
+		{6, "mean", "B", d.Range.Mean.Rounded()}, {find(t, r, "allowance/bolts"), "allowance/bolts", "B", 4321}, {find(t, r, "late permit"), "late permit", "D", 12.34},
+		{curve + 1, "0%", "B", d.Range.Curve[0].Rounded()}, {curve + 51, "50%", "B", d.Range.Curve[50].Rounded()}, {curve + 101, "100%", "B", d.Range.Curve[100].Rounded()},
 	} {
 		if got := at(r, "A", c.row); got != c.label {
 			t.Errorf("row %d is %q, want %q", c.row, got, c.label)
 		}
-		value, err := strconv.ParseFloat(at(r, "B", c.row), 64)
-		if err != nil || value != c.value.Rounded() {
-			t.Errorf("row %d holds %q, want %v", c.row, at(r, "B", c.row), c.value.Rounded())
+		value, err := strconv.ParseFloat(at(r, c.column, c.row), 64)
+		if err != nil || value != c.value {
+			t.Errorf("%s%d holds %q, want %v", c.column, c.row, at(r, c.column, c.row), c.value)
 		}
 	}
+	find(t, r, fromSimulation)
 }
 
 func TestSameBytesEveryTime(t *testing.T) {
@@ -268,7 +275,7 @@ func TestRefusals(t *testing.T) {
 		change func(*document.Document)
 		want   string
 	}{
-		{"a line that does not compute", func(d *document.Document) { d.Lines[1].Amount = d.Lines[1].Amount.Add(decimal(t, "0.01")) }, "line/item 2/fabrication: quantity × rate × multipliers is"},
+		{"a line that does not compute", func(d *document.Document) { d.Lines[1].Amount = d.Lines[1].Amount.Add(decimal(t, "0.01")) }, "line/boom/CHS/size/tube boom/fabrication: quantity × unit price is"},
 		{"lines and base", func(d *document.Document) { d.Totals.Base = decimal(t, "1.00") }, "the document's base is 1.00"},
 		{"lines and category", func(d *document.Document) { d.Categories[0].Amount = decimal(t, "1.00") }, `category "material" add up to`},
 		{"a missing category", func(d *document.Document) { d.Categories = d.Categories[1:] }, "the categories add up to"},
@@ -292,7 +299,7 @@ func nan() float64 { z := 0.0; return z / z }
 func TestEmptyDocument(t *testing.T) {
 	d := document.Document{Caution: document.Caution, Job: document.Job{Currency: "JPY"}}
 	book := cells(t, write(t, d))
-	if got := book[linesSheet]["H2"]; got != "0" {
+	if got := book[linesSheet]["I2"]; got != "0" {
 		t.Errorf("base of no lines is %q, want 0", got)
 	}
 	if got := Table(d); !strings.Contains(got, "base estimate") {
@@ -301,7 +308,7 @@ func TestEmptyDocument(t *testing.T) {
 }
 
 func TestCSV(t *testing.T) {
-	d := estimate(t, "EUR", []priced{
+	d := estimate(t, "EUR", []plainLine{
 		{"boom", "material", "1.005", "1", nil},
 		{"boom, inner", "fabrication", "2.000", "0.5", []string{"1.10"}},
 	})
@@ -310,12 +317,12 @@ func TestCSV(t *testing.T) {
 		t.Fatal(err)
 	}
 	want := strings.Join([]string{
-		"id,group,category,driver,quantity,unit,rate,m1,amount,currency,multipliers",
-		"line/item 1/material,boom,material,delivered tonnes,1.005,t,1,,1.01,EUR,",
-		`line/item 2/fabrication,"boom, inner",fabrication,delivered tonnes,2.000,t,0.5,1.10,1.10,EUR,"m1 multiplier 1 (group boom, inner)"`,
-		"category/material,,material,,,,,,1.01,EUR,",
-		"category/fabrication,,fabrication,,,,,,1.10,EUR,",
-		"base,,,,,,,,2.11,EUR,", "",
+		"id,group,category,driver,quantity,unit,rate,m1,unit price,amount,currency,multipliers",
+		"line/item 1/material,boom,material,delivered tonnes,1.005,t,1,,1.0000,1.01,EUR,",
+		`line/item 2/fabrication,"boom, inner",fabrication,delivered tonnes,2.000,t,0.5,1.10,0.5500,1.10,EUR,"m1 multiplier 1 (group boom, inner)"`,
+		"category/material,,material,,,,,,,1.01,EUR,",
+		"category/fabrication,,fabrication,,,,,,,1.10,EUR,",
+		"base,,,,,,,,,2.11,EUR,", "",
 	}, "\r\n")
 	if diff := cmp.Diff(want, string(got)); diff != "" {
 		t.Error(diff)
