@@ -36,7 +36,7 @@ func mustRead(t *testing.T, name string) []byte {
 func demoWorkbook(t *testing.T, name string) []byte {
 	t.Helper()
 	b := sheet.NewBuilder()
-	for _, part := range []struct{ sheet, file string }{{"Schedule", name + ".csv"}, {"Job", name + "-job.csv"}} {
+	for _, part := range []struct{ sheet, file string }{{"Schedule", name + ".csv"}, {"Job", name + "-job.csv"}, {"Risks", name + "-risks.csv"}, {"Definition", name + "-definition.csv"}} {
 		rows, err := csv.NewReader(bytes.NewReader(mustRead(t, part.file))).ReadAll()
 		if err != nil {
 			t.Fatal(err)
@@ -92,7 +92,7 @@ func TestDemoWorkbooksAreThoseOfTheirCSV(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		o.JobTable = mustRead(t, name+"-job.csv")
+		o.JobTable, o.RiskTable, o.DefinitionTable = mustRead(t, name+"-job.csv"), mustRead(t, name+"-risks.csv"), mustRead(t, name+"-definition.csv")
 		fromCSV, err := readSchedule(t.Context(), mustRead(t, name+".csv"), name+".csv", o)
 		if err != nil {
 			t.Fatal(err)

@@ -31,6 +31,8 @@ var calculations = map[string]calculation{
 		return calculator.Size(r)
 	}),
 	"arrangements": calculated(calculator.Arrangements),
+	"cutting-plan": calculated(calculator.CuttingPlan),
+	"range":        calculated(calculator.Range),
 }
 
 // calculated reads the request of a calculator as strictly as the API does.
@@ -45,10 +47,10 @@ func calculated[I, O any](f func(context.Context, I) (O, error)) calculation {
 }
 
 // calculators are the names of the calculators, in the order of their work.
-var calculators = []string{"beam", "section", "resistance", "sizing", "arrangements"}
+var calculators = []string{"beam", "section", "resistance", "sizing", "arrangements", "cutting-plan", "range"}
 
 func calculateCommand() command {
-	c := command{name: "calculate", args: "beam|section|resistance|sizing|arrangements [flags] [FILE]", short: "one structural calculation offline: JSON in, JSON or a drawing out"}
+	c := command{name: "calculate", args: "beam|section|resistance|sizing|arrangements|cutting-plan|range [flags] [FILE]", short: "one calculation offline: JSON in, JSON or a drawing out"}
 	c.long = `
 Reads the request of a calculator as JSON, the same as POST /v1/calculators/…
 takes, from FILE or standard input (“-”, or none), and prints the answer. Faults

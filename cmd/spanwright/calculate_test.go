@@ -33,6 +33,8 @@ func TestCalculate(t *testing.T) {
 		"resistance":   {`{"section": "IPE 300", "grade": "S235", "design_basis": "en1993", "demand": {"shear_kn": 10}}`, `"id": "shear"`},
 		"sizing":       {`{"length_m": 5, "upright": true, "axial_kn": 300, ` + steelJSON + `}`, `"passes": true`},
 		"arrangements": {`{"length_m": 20, "kinds": ["equal spans"], "equal_spans": [2], ` + steelJSON + `}`, `"kind": "equal spans"`},
+		"cutting-plan": {`{"pieces": [{"mark": "B1", "length_m": 6.05, "count": 24}], "stock": [{"length_m": 12.1}, {"length_m": 15.1}], "kerf_mm": 5}`, `"bars": 12`},
+		"range":        {`{"lines": [{"id": "steel", "amount": 1000, "spread": {"distribution": "fixed", "likely": 1}}], "trials": 64}`, `"mean": 1000`},
 	} {
 		code, out, errs := calculateWith(row.request, name)
 		var answer struct{ Caution string }

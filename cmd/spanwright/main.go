@@ -44,7 +44,7 @@ type program struct {
 var errUsage = errors.New("usage")
 
 func commands() []command {
-	return []command{priceCommand(), templateCommand(), calculateCommand(), demoCommand(), serveCommand(), migrateCommand(), tokenCommand()}
+	return []command{priceCommand(), templateCommand(), traceCommand(), compareCommand(), arrangementsCommand(), bridgeCommand(), calibrateCommand(), calculateCommand(), demoCommand(), serveCommand(), migrateCommand(), tokenCommand()}
 }
 
 func main() {

@@ -3,6 +3,7 @@ package main
 import (
 	"context"
 	"errors"
+	"flag"
 	"fmt"
 	"io"
 	"os"
@@ -32,6 +33,7 @@ schedule are listed by cell, all at once, and nothing is printed.
 
   spanwright price testdata/brackwater.xlsx
   spanwright price --job testdata/brackwater-job.csv testdata/brackwater.csv
+  spanwright price --rate-book unit-rate testdata/brackwater.xlsx
   spanwright price --format json --out estimate.json testdata/brackwater.xlsx
   spanwright price --format xlsx --out priced.xlsx testdata/brackwater.xlsx`
 	c.run = func(ctx context.Context, p *program, args []string) error { return p.price(ctx, c, args) }
@@ -39,25 +41,19 @@ schedule are listed by cell, all at once, and nothing is printed.
 }
 
 type priceOptions struct {
-	rateBook, jobTable, project, scheme, format, out string
-	check                                            bool
-	seed                                             uint64
-	replicates, trials                               int
+	rateBook, jobTable, definition, risks, project, scheme, format, out string
+	check                                                               bool
+	seed                                                                uint64
+	replicates, trials                                                  int
 }
 
 func (p *program) price(ctx context.Context, c command, args []string) error {
 	var o priceOptions
 	f := p.flags(c)
-	f.StringVar(&o.rateBook, "rate-book", "", "rate book `FILE` (JSON); the starting book ratio when absent")
-	f.StringVar(&o.jobTable, "job", "", "CSV `FILE` with the keys and values of a Job sheet, for a schedule that has none")
-	f.StringVar(&o.project, "project", "", "project `NAME`; overrides the Job sheet")
-	f.StringVar(&o.scheme, "scheme", "", "scheme `NAME`; overrides the Job sheet")
+	o.define(f)
 	f.StringVar(&o.format, "format", "table", "table, json (the estimate document), xlsx (the priced workbook) or csv (its lines)")
 	f.StringVar(&o.out, "out", "-", "`FILE` to write to; - is standard output")
 	f.BoolVar(&o.check, "check", false, "only read the schedule: print the load of each member, tonnes of each group, defaults taken and possible omissions")
-	f.Uint64Var(&o.seed, "seed", 1, "seed of the simulation")
-	f.IntVar(&o.replicates, "replicates", 32, "replicates of the simulation, 32 or more")
-	f.IntVar(&o.trials, "trials", 4096, "trials of each replicate")
 	rest, err := parse(f, args)
 	if err != nil {
 		return err
@@ -88,6 +84,19 @@ func (p *program) price(ctx context.Context, c command, args []string) error {
 	return os.WriteFile(o.out, data, 0o644)
 }
 
+// define adds the flags of what decides an estimate.
+func (o *priceOptions) define(f *flag.FlagSet) {
+	f.StringVar(&o.rateBook, "rate-book", ratebook.KindRatio, "rate book: the starting book ratio or unit-rate, or a `FILE` (JSON)")
+	f.StringVar(&o.jobTable, "job", "", "CSV `FILE` with the keys and values of a Job sheet, for a schedule that has none")
+	f.StringVar(&o.definition, "definition", "", "CSV `FILE` with what is defined so far, item by item")
+	f.StringVar(&o.risks, "risks", "", "CSV `FILE` with discrete risks")
+	f.StringVar(&o.project, "project", "", "project `NAME`; overrides the Job sheet")
+	f.StringVar(&o.scheme, "scheme", "", "scheme `NAME`; overrides the Job sheet")
+	f.Uint64Var(&o.seed, "seed", 1, "seed of the simulation")
+	f.IntVar(&o.replicates, "replicates", 32, "replicates of the simulation, 32 or more")
+	f.IntVar(&o.trials, "trials", 4096, "trials of each replicate")
+}
+
 func renderer(format string) (func(document.Document) ([]byte, error), error) {
 	switch format {
 	case "table":
@@ -105,10 +114,13 @@ func renderer(format string) (func(document.Document) ([]byte, error), error) {
 	return nil, fmt.Errorf("format: found %q; accepted: table, json, xlsx, csv", format)
 }
 
-// readBook reads the rate book of a file, or the starting one.
+// readBook reads the rate book of a file, or takes a starting one.
 func readBook(file string) (ratebook.Book, error) {
-	if file == "" {
+	switch file {
+	case ratebook.KindRatio, "":
 		return ratebook.Ratio(), nil
+	case ratebook.KindUnitRate:
+		return ratebook.UnitRate(), nil
 	}
 	raw, err := os.ReadFile(file)
 	if err != nil {
@@ -124,8 +136,14 @@ func (p *program) read(ctx context.Context, path string, book ratebook.Book, o p
 		return schedule.Schedule{}, job.Source{}, err
 	}
 	options := schedule.Options{MaxMembers: offlineMembers, Project: o.project, Scheme: o.scheme, ConnectionClasses: book.ConnectionClasses()}
-	if o.jobTable != "" {
-		if options.JobTable, err = os.ReadFile(o.jobTable); err != nil {
+	for _, t := range []struct {
+		file string
+		into *[]byte
+	}{{o.jobTable, &options.JobTable}, {o.definition, &options.DefinitionTable}, {o.risks, &options.RiskTable}} {
+		if t.file == "" {
+			continue
+		}
+		if *t.into, err = os.ReadFile(t.file); err != nil {
 			return schedule.Schedule{}, job.Source{}, err
 		}
 	}
@@ -136,22 +154,30 @@ func (p *program) read(ctx context.Context, path string, book ratebook.Book, o p
 
 // estimate takes a file through the same stages as the service does.
 func (p *program) estimate(ctx context.Context, path string, o priceOptions) (document.Document, error) {
-	book, err := readBook(o.rateBook)
+	j, err := p.freeze(ctx, path, o)
 	if err != nil {
 		return document.Document{}, err
+	}
+	d, err := engine.Run(ctx, j, nil)
+	return d, p.explain(err)
+}
+
+// freeze reads a schedule and joins it with the rate book and the sampling.
+func (p *program) freeze(ctx context.Context, path string, o priceOptions) (job.Job, error) {
+	book, err := readBook(o.rateBook)
+	if err != nil {
+		return job.Job{}, err
 	}
 	sch, source, err := p.read(ctx, path, book, o)
 	if err != nil {
-		return document.Document{}, err
+		return job.Job{}, err
 	}
-	j, err := job.Freeze(sch, source, book, nil,
-		job.Sampling{Seed: o.seed, Replicates: o.replicates, Trials: o.trials})
+	j, err := job.Freeze(sch, source, book, nil, job.Sampling{Seed: o.seed, Replicates: o.replicates, Trials: o.trials})
 	if err != nil {
-		return document.Document{}, err
+		return job.Job{}, err
 	}
 	j.EngineVersion, j.Data, j.Build = document.EngineVersion, engine.Data(), build()
-	d, err := engine.Run(ctx, j, nil)
-	return d, p.explain(err)
+	return j, nil
 }
 
 // checkSchedule prints what was read, in tables for a terminal.

@@ -46,7 +46,7 @@ func TestReadmeIsTrue(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	code, out, errs := runProgram(t, nil, "price", testFile("brackwater.xlsx"))
+	code, out, errs := runProgram(t, nil, "price", "--rate-book", "unit-rate", testFile("brackwater.xlsx"))
 	if code != 0 {
 		t.Fatal(errs)
 	}
@@ -55,6 +55,8 @@ func TestReadmeIsTrue(t *testing.T) {
 	want := block(t, string(data), "price", "```text\n"+excerpt+"…\n```\n")
 	want = block(t, want, "columns", columnTable(schedule.Columns()))
 	want = block(t, want, "job", columnTable(schedule.JobKeys()))
+	want = block(t, want, "risks", columnTable(schedule.RiskColumns()))
+	want = block(t, want, "definition", columnTable(schedule.DefinitionColumns()))
 	if *update {
 		if err := os.WriteFile(file, []byte(want), 0o644); err != nil {
 			t.Fatal(err)

@@ -78,10 +78,10 @@ func TestRatesThatWouldStopLaterEstimatesAreRefused(t *testing.T) {
 	got := s.take(t, token, "brackwater.xlsx", mustRead(t, "brackwater.xlsx"), nil)
 	var books struct{ Items []struct{ ID, Name string } }
 	s.do(t, http.MethodGet, "/v1/rate-books", token, nil).decode(t, &books)
-	if len(books.Items) != 1 || books.Items[0].Name != "ratio" {
+	if len(books.Items) != 2 || books.Items[0].Name != "unit-rate" || books.Items[1].Name != "ratio" {
 		t.Fatalf("books: %+v", books)
 	}
-	path := "/v1/rate-books/" + books.Items[0].ID
+	path := "/v1/rate-books/" + books.Items[1].ID
 	renamed := ratebook.Ratio()
 	renamed.Name = "other"
 	data, _, err := renamed.Canonical()

@@ -1,5 +1,5 @@
-// Package calculator is the structural engine as stateless calculators: plain
-// requests in, plain answers out, nothing stored.
+// Package calculator is the structural engine, the cutting plan and the range as
+// stateless calculators: plain requests in, plain answers out, nothing stored.
 //
 //	JSON ─ Decode ─▶ request (lengths in m, forces in kN: units stand in the field names)
 //	  ─ faults, all at once, by JSON pointer ─▶ Faults

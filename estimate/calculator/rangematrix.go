@@ -76,14 +76,18 @@ func (r RangeRequest) tryMatrix(ctx context.Context, f *Faults) error {
 	return nil
 }
 
-// fromRanges turns errors of the simulation into faults; any other error is returned
-// as it is.
+// fromRanges turns errors of the simulation into faults; that of the context is
+// returned as it is.
 func (r RangeRequest) fromRanges(err error) error {
+	if errors.Is(err, context.Canceled) || errors.Is(err, context.DeadlineExceeded) {
+		return err
+	}
 	var f Faults
 	for _, e := range flat(err) {
 		var x *ranges.Error
 		if !errors.As(e, &x) {
-			return err
+			f.add("", "lines that no sample of this size stands for", e.Error(), "spreads whose high is not so many times their low")
+			continue
 		}
 		f.add(r.pointer(x.Field), x.Found, "not accepted: "+x.Field, x.Accepted)
 	}

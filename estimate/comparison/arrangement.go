@@ -32,6 +32,11 @@ type ArrangementStudy struct {
 	Build       string   // of the program
 }
 
+// ArrangementSampling is that of a comparison of arrangements where nothing else is
+// asked: a quarter of an estimate's trials, because each way is an estimate of its own
+// with its sensitivities. Standard errors say what that costs.
+func ArrangementSampling() job.Sampling { return job.Sampling{Seed: 1, Replicates: 32, Trials: 1024} }
+
 // Run computes the estimate of a job: engine.Run without its progress.
 type Run func(ctx context.Context, j job.Job) (document.Document, error)
 
@@ -96,13 +101,14 @@ var ErrFreeze = errors.New("the job cannot be frozen")
 // error wraps ErrFreeze and that of job.Freeze.
 func (s ArrangementStudy) Jobs() ([]job.Job, error) {
 	var jobs []job.Job
+	names := s.names()
 	for i := range s.Candidates {
 		c := &s.Candidates[i]
 		if !c.Feasible || len(jobs) == Most {
 			continue
 		}
 		sch := s.Schedule
-		sch.Settings.Scheme = c.Name
+		sch.Settings.Scheme = names[i]
 		sch.Members = s.members(c)
 		j, err := job.Freeze(sch, s.Source, s.Book, s.Multipliers, s.Sampling)
 		if err != nil {
@@ -112,6 +118,20 @@ func (s ArrangementStudy) Jobs() ([]job.Job, error) {
 		jobs = append(jobs, j)
 	}
 	return jobs, nil
+}
+
+// names are those of the candidates, numbered where two are alike, such as of supports
+// a millimetre apart.
+func (s ArrangementStudy) names() []string {
+	out := make([]string, len(s.Candidates))
+	seen := map[string]int{}
+	for i, c := range s.Candidates {
+		out[i] = c.Name
+		if seen[c.Name]++; seen[c.Name] > 1 {
+			out[i] = fmt.Sprintf("%s (%d)", c.Name, seen[c.Name])
+		}
+	}
+	return out
 }
 
 // CompareArrangements prices the feasible candidates of a study and compares them on
@@ -156,19 +176,18 @@ func (s ArrangementStudy) tooFew(n int) error {
 // summaries are the priced candidates in the order of sides, then the others.
 func (s ArrangementStudy) summaries(sides []Side) []PricedArrangement {
 	var out []PricedArrangement
+	names := s.names()
 	for _, side := range sides {
-		i := slices.IndexFunc(s.Candidates, func(c arrangement.Candidate) bool { return c.Name == side.ID })
-		a := s.summary(&s.Candidates[i])
-		a.Priced, a.Parts = true, parts(side)
+		a := s.summary(slices.Index(names, side.ID))
+		a.Name, a.Priced, a.Parts = side.ID, true, parts(side)
 		out = append(out, a)
 	}
-	for i := range s.Candidates {
-		c := &s.Candidates[i]
-		if slices.ContainsFunc(sides, func(x Side) bool { return x.ID == c.Name }) {
+	for i, name := range names {
+		if slices.ContainsFunc(sides, func(x Side) bool { return x.ID == name }) {
 			continue
 		}
-		a := s.summary(c)
-		if c.Feasible {
+		a := s.summary(i)
+		if a.Name = name; a.Feasible {
 			a.Reason = "not priced: a comparison takes " + strconv.Itoa(Most) + " schemes, and these are the lightest; ask for fewer kinds, fractions or spans"
 		}
 		out = append(out, a)
@@ -176,7 +195,8 @@ func (s ArrangementStudy) summaries(sides []Side) []PricedArrangement {
 	return out
 }
 
-func (s ArrangementStudy) summary(c *arrangement.Candidate) PricedArrangement {
+func (s ArrangementStudy) summary(i int) PricedArrangement {
+	c := &s.Candidates[i]
 	out := PricedArrangement{
 		Name: c.Name, Kind: string(c.Kind), Feasible: c.Feasible, Reason: c.Reason, WaysOut: append([]string{}, c.WaysOut...),
 		Section: c.Result.Section.Designation, Steel: document.Number(c.Mass.Steel), PlanBracing: document.Number(planBracing(c, &s.Study)),

@@ -110,7 +110,13 @@ func (s *ArrangementStudy) main(c *arrangement.Candidate) schedule.Member {
 }
 
 // rootOf is how far the root lies from the member's left end: the tail, m.
-func rootOf(c *arrangement.Candidate) float64 { return max(0, -c.Supports[0].X) }
+func rootOf(c *arrangement.Candidate) float64 {
+	root := 0.0
+	for _, u := range c.Supports {
+		root = max(root, -u.X)
+	}
+	return root
+}
 
 func isBoom(kind string) bool { return strings.Contains(strings.ToLower(kind), "boom") }
 

@@ -61,7 +61,7 @@ func (s *ArrangementStudy) notesOfLoads(c *arrangement.Candidate) []string {
 		couples = couples || a.Kind == action.Moment
 	}
 	if partly {
-		out = append(out, "Loads on a part of the member, or not uniform, are rows of forces in the estimate's own check: it is up to 0.1 % higher than the study's, and more where supports are more than statics needs and the load is variable.")
+		out = append(out, "Loads on a part of the member, or not uniform, are rows of forces in the estimate's own check: it is up to 0.1 % higher than the study's, and more where a variable load crosses a support, because its parts may then be absent apart.")
 	}
 	if couples {
 		out = append(out, "Couples are left out of the estimate's own check of the main member; the study's check has them.")
@@ -74,9 +74,11 @@ func (s *ArrangementStudy) notesOfLoads(c *arrangement.Candidate) []string {
 
 // doubts are the notes about the comparison as a whole, the gravest first.
 func (s *ArrangementStudy) doubts(sides []Side) []string {
-	out := append(s.failing(sides), []string{
-		"The probabilities say how prices, growth, connections and risks that the ways share move their totals. They do not say whether the ground bears a support where one stands, nor that the design of one way may grow more than that of another: a lead of less than the difference in foundations and access is open.",
-	}...)
+	out := append(s.failing(sides),
+		"The probabilities say how prices, growth, connections and risks that the ways share move their totals. They do not say whether the ground bears a support where one stands, nor that the design of one way may grow more than that of another: a lead that foundations and access could take up decides nothing.")
+	if level := levelWith(sides); len(level) > 0 {
+		out = append(out, fmt.Sprintf("Level with the first at the depth of a study: %s lie within %.0f %% of its mean, whatever the probability says; decide by site, access and time (common practice, no source).", strings.Join(level, ", "), 100*levelWithin))
+	}
 	if !s.windy() {
 		out = append(out, "DOUBT: nothing acts sideways in the study. Towers, their footings and slender members are light without wind, which favours ways with many towers: give the study a horizontal load and the wind on the towers.")
 	}
@@ -94,6 +96,22 @@ func (s *ArrangementStudy) doubts(sides []Side) []string {
 	}
 	if n := s.feasible(); n > len(sides) {
 		out = append(out, fmt.Sprintf("%d ways are feasible; priced are the %d with the least steel, and a heavier one may be cheaper.", n, len(sides)))
+	}
+	return out
+}
+
+// levelWithin is the lead, as a part of the mean, that a study without site and details
+// does not bear out. Common practice, no source.
+const levelWithin = 0.1
+
+// levelWith names the schemes whose mean lies close to that of the first.
+func levelWith(sides []Side) []string {
+	var out []string
+	first := float64(sides[0].Document.Range.Mean)
+	for _, side := range sides[1:] {
+		if float64(side.Document.Range.Mean)-first < levelWithin*first {
+			out = append(out, side.ID)
+		}
 	}
 	return out
 }

@@ -16,8 +16,10 @@ import (
 // their mass. Of a single leg, which is fixed at its foot, the wind bends it.
 func (s *ArrangementStudy) tower(c *arrangement.Candidate, i int) []schedule.Member {
 	t := &c.Towers[i]
-	at := slices.IndexFunc(c.Supports, func(u arrangement.Support) bool { return u.X == t.X })
-	u := c.Supports[at]
+	var u arrangement.Support
+	if at := slices.IndexFunc(c.Supports, func(u arrangement.Support) bool { return u.X == t.X }); at >= 0 {
+		u = c.Supports[at]
+	}
 	mark := fmt.Sprintf("TOWER-%d", i+1)
 	leg := s.given(mark+"-LEG", towerGroup, towerClass, t.Leg.Section, t.Height)
 	leg.Kind, leg.Quantity, leg.Upright = "tower leg", t.Legs, true

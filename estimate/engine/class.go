@@ -57,7 +57,7 @@ func classFindings(c document.Class) []document.Finding {
 		narrow = narrow && c.High < t.HighFrom && c.Low > max(t.LowFrom, t.LowTo)
 		wide = wide && (c.High > t.HighTo || c.Low < min(t.LowFrom, t.LowTo))
 	}
-	word := ""
+	var word string
 	switch {
 	case narrow:
 		word = "narrower"

@@ -100,6 +100,7 @@ type run struct {
 	pieces      []takeoff.Piece
 	items       []takeoff.Item
 	breaches    []takeoff.Breach
+	facts       pricing.Facts
 	itemsOf     map[string][]string // mark → items
 	itemAt      map[string]int
 	priced      pricing.Priced
@@ -209,6 +210,7 @@ func (r *run) count(ctx context.Context) error {
 		return takeoffError(err)
 	}
 	r.breaches = takeoff.Breaches(r.pieces, r.allowances, r.settings)
+	r.facts = r.askedFacts()
 	r.itemsOf, r.itemAt = map[string][]string{}, map[string]int{}
 	for i, it := range r.items {
 		r.itemAt[it.ID] = i

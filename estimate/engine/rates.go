@@ -18,7 +18,7 @@ func (r *run) rates() (pricing.Rates, error) {
 	b, s := r.job.Book, r.job.Settings
 	out := pricing.Rates{
 		Rates: b.PricedRates(), Reference: b.ReferencePrice, Book: b.Currency, Multipliers: r.job.Multipliers,
-		Currency: r.currency, Systemic: r.systemic, BaseDate: s.BaseDate, Facts: r.facts(),
+		Currency: r.currency, Systemic: r.systemic, BaseDate: s.BaseDate, Facts: r.facts,
 		Exchange: map[string]pricing.Conversion{}, Escalation: map[string][]pricing.Conversion{},
 	}
 	for _, c := range ratebook.Categories() {
@@ -107,8 +107,8 @@ func (r *run) spentOn(category string) (string, error) {
 
 func riskID(name string) string { return "risk/" + assumption.Segment(name) }
 
-// facts are what the triggers of lumps ask.
-func (r *run) facts() pricing.Facts {
+// askedFacts are what the triggers of lumps ask.
+func (r *run) askedFacts() pricing.Facts {
 	f := pricing.Facts{SiteConditions: r.job.Settings.SiteConditions}
 	for _, s := range r.sized.members {
 		f.Kinds = append(f.Kinds, s.member.Kind)
