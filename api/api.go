@@ -79,7 +79,9 @@ func build(c Config) (*api, *echo.Echo) {
 	a.huma.UseMiddleware(a.authenticate, a.precondition, a.oneKey, a.readBody)
 	for _, register := range []func(){
 		a.intake, a.projects, a.schemes, a.schedules, a.estimates, a.estimateParts,
+		a.traces, a.previews, a.comparisons, a.bridges, a.arrangementPrices,
 		a.rateBooks, a.multipliers, a.tokens, a.auditEvents, a.calculators, a.health,
+		a.outturns, a.calibrations,
 	} {
 		register()
 	}

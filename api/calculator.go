@@ -11,6 +11,7 @@ import (
 
 	"spanwright/api/service"
 	"spanwright/estimate/calculator"
+	"spanwright/estimate/spread"
 )
 
 const (
@@ -40,6 +41,8 @@ func (a *api) calculators() {
 	calculate(a, "resistance", "Check a section under a demand", "Every check of the design basis with its clause, formula and inputs. What the basis does not cover is a check that is not met and names the clause.", a.service.CalculateResistance)
 	calculate(a, "sizing", "Choose the section of a member", "The lightest candidate that passes every check, why the next lighter ones fail, the split method's ratios; where nothing passes, the nearest miss and the ways out.", a.service.CalculateSizing)
 	calculate(a, "arrangements", "Compare ways to hold a length", "Cantilever with counterweight, tower at the end, inner support, two inner supports, equal spans, propped, lattice: each with sections, exact reactions, towers, ballast and footings.", a.service.CalculateArrangements)
+	calculate(a, "cutting-plan", "Plan how bars are cut", "Bars of one or several lengths cut into pieces: first fit with its lower bound, or column generation with an exactly checked bound and a hint when a small change of length saves bars.", a.service.CalculateCuttingPlan)
+	calculate(a, "range", "Simulate the sum of uncertain lines", "Percentiles with standard errors, sensitivities and what discrete risks add, under rank correlations by group or by matrix. A matrix that is not possible is replaced by the nearest that is, with a warning; beyond 0.05 it is refused, naming the lines.", a.service.CalculateRange)
 }
 
 // calculation describes a calculator.
@@ -98,6 +101,19 @@ var calculatorExamples = sync.OnceValue(func() map[string]any {
 		Towers: calculator.ArrangementTowers{Height: 8}, MemberLimits: calculator.MemberLimits{DeflectionLimit: 200}, Steel: boom},
 		func(r calculator.ArrangementsRequest) (calculator.ArrangementsAnswer, error) {
 			return calculator.Arrangements(context.Background(), r)
+		})
+	illustrated(out, "CuttingPlan", calculator.CuttingPlanRequest{Pieces: []calculator.CuttingPiece{{Mark: "B1", Length: 6.05, Count: 24}}, Kerf: 5,
+		Stock: []calculator.CuttingStock{{Length: 12.1}, {Length: 15.1}}, Method: "least stock", HintLimit: 10},
+		func(r calculator.CuttingPlanRequest) (calculator.CuttingPlanAnswer, error) {
+			return calculator.CuttingPlan(context.Background(), r)
+		})
+	steel, labour := 40_000.0, 65_000.0
+	illustrated(out, "Range", calculator.RangeRequest{Trials: 256, Correlation: map[string]float64{"labour": 0.5}, Systemic: 0.11,
+		Lines: []calculator.RangeLine{{ID: "steel", Amount: &steel, Spread: spread.NewTriangular(0.88, 1, 1.2)},
+			{ID: "shop", Amount: &labour, Spread: spread.NewPERT(0.8, 1, 1.5), Group: "labour"}, {ID: "site", Spread: spread.NewPERT(20_000, 30_000, 55_000), Group: "labour"}},
+		Risks: []calculator.RangeRisk{{ID: "late access to the quay", Probability: 0.2, Impact: spread.NewUniform(10_000, 30_000)}}},
+		func(r calculator.RangeRequest) (calculator.RangeAnswer, error) {
+			return calculator.Range(context.Background(), r)
 		})
 	return out
 })

@@ -25,6 +25,15 @@ func calculatorCall(name, body string) call {
 	return call{method: "POST", path: "/v1/calculators/" + name, body: body}
 }
 
+// titleOf is the name of a calculator's types.
+func titleOf(name string) string {
+	var title strings.Builder
+	for word := range strings.SplitSeq(name, "-") {
+		title.WriteString(strings.ToUpper(word[:1]) + word[1:])
+	}
+	return title.String()
+}
+
 // at reads a number of an answer by its path.
 func at(t *testing.T, answer map[string]any, path ...any) float64 {
 	t.Helper()
@@ -147,6 +156,9 @@ func TestCalculatorFaults(t *testing.T) {
 		{"resistance", `{"section":"IPE 300","grade":"A53 B","design_basis":"en1993","demand":{"moment_knm":5}}`, []string{"/demand/lateral_spacing_m", "/grade"}},
 		{"sizing", `{"length_m":6,"candidates":["QQ"],"grade":"S355","design_basis":"en1993"}`, []string{"/supports", "/candidates/0"}},
 		{"arrangements", `{"length_m":6,"kinds":["sky hook"],"candidates":["IPE"],"grade":"S355","design_basis":"en1993"}`, []string{"/kinds/0"}},
+		{"cutting-plan", `{"pieces":[{"mark":"B1","length_m":16,"count":0}],"stock":[{"length_m":12}],"kerf_mm":60}`, []string{"/kerf_mm", "/pieces/0/length_m", "/pieces/0/count"}},
+		{"range", `{"lines":[{"id":"a","spread":{"distribution":"triangular","low":2,"likely":1,"high":3},"group":"g"}],"trials":1}`, []string{"/trials", "/lines/0/spread/likely", "/lines/0/group"}},
+		{"range", `{"lines":[{"id":"a","spread":{"distribution":"fixed","likely":1}},{"id":"b","spread":{"distribution":"fixed","likely":1}}],"matrix":{"ids":["a","b"],"rho":[[1,0.2],[0.3,1]]}}`, []string{"/matrix/rho/0/1"}},
 	} {
 		p := w.refused(http.StatusUnprocessableEntity, calculatorCall(row.name, row.body))
 		var got []string
@@ -170,8 +182,8 @@ func TestCalculatorsBusy(t *testing.T) {
 	done := make(chan int)
 	go func() { done <- w.do(intakeCall()).Code }()
 	<-entered
-	for _, name := range []string{"beam", "section", "resistance", "sizing", "arrangements"} {
-		title := strings.ToUpper(name[:1]) + name[1:]
+	for _, name := range []string{"beam", "section", "resistance", "sizing", "arrangements", "cutting-plan", "range"} {
+		title := titleOf(name)
 		rec, _ := w.want(http.StatusTooManyRequests, calculatorCall(name, exampleBody(t, title+"Request")))
 		if rec.Header().Get("Retry-After") == "" {
 			t.Errorf("%s: no Retry-After", name)
@@ -188,8 +200,8 @@ func TestCalculatorsBusy(t *testing.T) {
 func TestCalculatorExamples(t *testing.T) {
 	w := newWorld(t)
 	before := len(w.store.tenants[w.own].projects)
-	for _, name := range []string{"beam", "section", "resistance", "sizing", "arrangements"} {
-		title := strings.ToUpper(name[:1]) + name[1:]
+	for _, name := range []string{"beam", "section", "resistance", "sizing", "arrangements", "cutting-plan", "range"} {
+		title := titleOf(name)
 		rec, _ := w.want(200, calculatorCall(name, exampleBody(t, title+"Request")))
 		var got, want any
 		if err := json.Unmarshal(rec.Body.Bytes(), &got); err != nil {

@@ -77,6 +77,9 @@ func examples() map[string]any {
 		"DocumentFindingItems": Items[document.Finding]{d.Findings}, "DocumentMemberItems": Items[document.Member]{d.Members},
 	}
 	maps.Copy(all, calculatorExamples())
+	maps.Copy(all, arrangementPriceExamples())
+	maps.Copy(all, explanationExamples())
+	maps.Copy(all, outturnExamples())
 	return all
 }
 
@@ -92,7 +95,7 @@ func exampleEstimate() service.Estimate {
 func exampleReading() service.Reading {
 	return service.Reading{
 		Settings: schedule.Settings{Project: "Brackwater loading quay", Scheme: "Two trestles", DesignBasis: "allowable", Factor: 3, Grade: "S275",
-			DeflectionLimit: 250, EstimateClass: 4, Currency: "EUR", BaseDate: "2026-06-01", Confidence: 0.8},
+			DeflectionLimit: 250, EstimateClass: 4, Currency: "EUR", BaseDate: "2026-06-01", Confidence: 0.8, Money: "base date", Purchase: "waste"},
 		Echo: schedule.Echo{Members: []schedule.EchoMember{{Mark: "B1", Permanent: 12, Variable: 24}}, Groups: []schedule.EchoGroup{{Group: "Beams", Pieces: 4}}},
 		Defaults: []assumption.Entry{{ID: "default/restraint/full span", Kind: assumption.Default, Statement: "The compression flange is restrained at the supports alone.",
 			Value: "full span", Source: "common practice, no source", Owner: "Spanwright", Confidence: assumption.Medium, Feeds: []string{"member/B1/check/lateral-torsional buckling"}}},
@@ -110,6 +113,7 @@ func exampleDocument() document.Document {
 			CatalogueSHA256: exampleSum, GradesSHA256: exampleSum, Seed: 1, Replicates: 32, Trials: 4096},
 		Totals: document.Totals{Base: amount("3240.00"), Confidence: 0.8, AtConfidence: amount("3980.00"), Contingency: amount("740.00"),
 			Net: amount("1.200"), Delivered: amount("1.350"), Purchased: amount("1.450"), Members: 1, Pieces: 4},
+		Class: document.Class{Stated: 4},
 		Range: document.Range{Mean: 3510, MeanSE: 4, SD: 560, BaseAt: 0.36, Method: "simulation", Curve: []document.Number{}, Warnings: []string{},
 			Percentiles: []document.Percentile{{P: 0.1, Value: 2890, SE: 5}, {P: 0.8, Value: 3980, SE: 6}}},
 		Categories: []document.Category{{Category: ratebook.Fabrication, Amount: amount("3240.00"), Mean: 3510, P10: 2890, P90: 4330}},

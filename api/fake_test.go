@@ -37,18 +37,25 @@ type tenant struct {
 	hashes      map[uuid.UUID][]byte
 	memories    map[string]service.Memory
 	events      map[uuid.UUID]service.AuditEvent
+
+	outturns     map[uuid.UUID]service.Outturn
+	calibrations map[uuid.UUID]service.Calibration
+	jobs         map[uuid.UUID][]byte
 }
 
 func newTenant() *tenant {
 	return &tenant{projects: map[uuid.UUID]service.Project{}, schemes: map[uuid.UUID]service.Scheme{}, revisions: map[uuid.UUID]service.Revision{},
 		estimates: map[uuid.UUID]service.Estimate{}, documents: map[uuid.UUID][]byte{}, books: map[uuid.UUID][]service.RateBook{},
 		multipliers: map[uuid.UUID]service.Multiplier{}, tokens: map[uuid.UUID]service.Token{}, hashes: map[uuid.UUID][]byte{},
-		memories: map[string]service.Memory{}, events: map[uuid.UUID]service.AuditEvent{}}
+		memories: map[string]service.Memory{}, events: map[uuid.UUID]service.AuditEvent{},
+		outturns: map[uuid.UUID]service.Outturn{}, calibrations: map[uuid.UUID]service.Calibration{},
+		jobs: map[uuid.UUID][]byte{}}
 }
 
 func (t *tenant) clone() *tenant {
 	return &tenant{maps.Clone(t.projects), maps.Clone(t.schemes), maps.Clone(t.revisions), maps.Clone(t.estimates), maps.Clone(t.documents),
-		maps.Clone(t.books), maps.Clone(t.multipliers), maps.Clone(t.tokens), maps.Clone(t.hashes), maps.Clone(t.memories), maps.Clone(t.events)}
+		maps.Clone(t.books), maps.Clone(t.multipliers), maps.Clone(t.tokens), maps.Clone(t.hashes), maps.Clone(t.memories), maps.Clone(t.events),
+		maps.Clone(t.outturns), maps.Clone(t.calibrations), maps.Clone(t.jobs)}
 }
 
 func (s *fakeStore) InTenant(_ context.Context, organisation uuid.UUID, fn func(service.Tx) error) error {
@@ -226,8 +233,8 @@ func (x fakeTx) Revisions(_ context.Context, scheme uuid.UUID, p service.Page) (
 	return page(x.t.revisions, p, func(r service.Revision) bool { return r.Scheme == scheme })
 }
 
-func (x fakeTx) InsertEstimate(_ context.Context, e service.Estimate, _, document []byte) error {
-	x.t.estimates[e.ID], x.t.documents[e.ID] = e, document
+func (x fakeTx) InsertEstimate(_ context.Context, e service.Estimate, job, document []byte) error {
+	x.t.estimates[e.ID], x.t.jobs[e.ID], x.t.documents[e.ID] = e, job, document
 	return nil
 }
 
@@ -237,6 +244,10 @@ func (x fakeTx) Estimate(_ context.Context, id uuid.UUID) (service.Estimate, err
 
 func (x fakeTx) EstimateDocument(_ context.Context, id uuid.UUID) ([]byte, error) {
 	return get(x.t.documents, id, "estimate")
+}
+
+func (x fakeTx) EstimateJob(_ context.Context, id uuid.UUID) ([]byte, error) {
+	return get(x.t.jobs, id, "estimate")
 }
 
 func (x fakeTx) Estimates(_ context.Context, scheme uuid.UUID, p service.Page) (service.List[service.Estimate], error) {

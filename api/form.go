@@ -64,7 +64,7 @@ func readForm(r *request, known ...string) (form, error) {
 		return nil, brokenForm(nil)
 	}
 	if !f.has("file") {
-		faults = append(faults, service.Fault{Found: "no part named file", Problem: "the schedule is missing", Remedy: "a part named file with a workbook or CSV file"})
+		faults = append(faults, service.Fault{Found: "no part named file", Problem: "the file is missing", Remedy: "a part named file with a workbook or CSV file"})
 	}
 	if len(faults) > 0 {
 		return nil, newProblem(http.StatusUnprocessableEntity, "the form has faults; nothing was stored", faults...)
@@ -116,8 +116,10 @@ func (f form) id(name string) (*uuid.UUID, error) {
 func (f form) posting() service.Posting {
 	file := f.get("file")
 	p := service.Posting{Name: file.fileName, ContentType: file.contentType, Data: file.data}
-	if job := f.get("job"); len(job.data) > 0 {
-		p.JobTable = job.data
+	for name, into := range map[string]*[]byte{"job": &p.JobTable, "definition": &p.DefinitionTable, "risks": &p.RiskTable} {
+		if t := f.get(name); len(t.data) > 0 {
+			*into = t.data
+		}
 	}
 	return p
 }

@@ -41,6 +41,8 @@ func creating(w *world) map[string][2]call {
 		"book":       post("/v1/rate-books", bookJSON(w.t, "a"), bookJSON(w.t, "b")),
 		"schedule":   csv(csvSchedule, csvSchedule+"B2,1,5,simple,8,2,IPE,S355\n"),
 		"estimate":   post("/v1/schemes/"+ids["scheme"]+"/estimates", `{}`, `{"seed":2}`),
+		"outturns":   {postOutturns(outturnHead + outturnRows(20, 21)), postOutturns(outturnHead + outturnRows(21, 22))},
+		"fit":        post("/v1/calibrations", `{}`, `{"rate_book_id":"`+ids["book"]+`"}`),
 		"intake":     {intakeCall(fields("IA")...), intakeCall(fields("IB")...)},
 	}
 }

@@ -34,7 +34,11 @@ type content struct {
 	Body         []byte
 }
 
-const fileHelp = "The workbook or CSV file of the schedule. "
+const (
+	fileHelp       = "The workbook or CSV file of the schedule. "
+	definitionHelp = "CSV file that stands for the sheet Definition of a CSV schedule: what of the structure is defined. "
+	risksHelp      = "CSV file that stands for the sheet Risks of a CSV schedule: discrete risks. "
+)
 
 func (a *api) intake() {
 	o := described(operation(http.MethodPost, "/v1/intake", "intake", tagIntake, "Post a schedule, get the priced estimate",
@@ -48,7 +52,10 @@ func (a *api) intake() {
 		"project":      {Type: huma.TypeString, MaxLength: most(200), Description: "name of the project; that of the Job sheet when absent"},
 		"scheme":       {Type: huma.TypeString, MaxLength: most(200), Description: "name of the scheme; that of the Job sheet when absent"},
 		"rate_book_id": {Type: huma.TypeString, Format: "uuid", Description: "the rate book; the starting book when absent"},
+		"rate_book":    {Type: huma.TypeString, MaxLength: most(200), Description: "name of the rate book, such as unit-rate, in place of its id"},
 		"job":          fileSchema("CSV file of Key,Value that stands for the Job sheet of a CSV schedule. "),
+		"definition":   fileSchema(definitionHelp),
+		"risks":        fileSchema(risksHelp),
 	}), a.takeIn)
 }
 
@@ -57,7 +64,7 @@ func (a *api) takeIn(ctx context.Context, r *request, in *Keyed) (*content, erro
 	if err != nil {
 		return nil, err
 	}
-	f, err := readForm(r, "file", "project", "scheme", "rate_book_id", "job")
+	f, err := readForm(r, "file", "project", "scheme", "rate_book_id", "rate_book", "job", "definition", "risks")
 	if err != nil {
 		return nil, err
 	}
@@ -66,7 +73,7 @@ func (a *api) takeIn(ctx context.Context, r *request, in *Keyed) (*content, erro
 		return nil, err
 	}
 	t, err := a.service.Intake(ctx, r.Actor,
-		service.Intake{Project: f.text("project"), Scheme: f.text("scheme"), RateBook: book, Posting: f.posting()}, r.attempt(*in, f.content()...))
+		service.Intake{Project: f.text("project"), Scheme: f.text("scheme"), RateBook: book, BookName: f.text("rate_book"), Posting: f.posting()}, r.attempt(*in, f.content()...))
 	if err != nil {
 		return nil, err
 	}

@@ -1,12 +1,16 @@
 package api
 
 import (
+	"context"
 	"errors"
 	"net/http"
+	"slices"
 	"strings"
 	"testing"
 
 	"spanwright/estimate/document"
+	"spanwright/estimate/engine"
+	"spanwright/estimate/job"
 )
 
 func TestIntakeAsJSON(t *testing.T) {
@@ -81,7 +85,7 @@ func TestIntakeForm(t *testing.T) {
 		status int
 		says   string
 	}{
-		"no file":           {named, 422, "schedule is missing"},
+		"no file":           {named, 422, "file is missing"},
 		"unknown part":      {append([]filled{file, {name: "colour", data: "red"}}, named...), 422, "unknown part"},
 		"part twice":        {append([]filled{file, file}, named...), 422, "twice"},
 		"rate book":         {append([]filled{file, {name: "rate_book_id", data: "x"}}, named...), 422, "not an id"},
@@ -143,5 +147,72 @@ func TestIntakeAgain(t *testing.T) {
 	_, second := w.want(201, intakeCall())
 	if id(t, first, "scheme", "id") != id(t, second, "scheme", "id") || second["schedule"].(map[string]any)["number"] != 2.0 {
 		t.Errorf("first %v, second %v", first["schedule"], second["schedule"])
+	}
+}
+
+// A posting names its rate book by id or by name, and not by both.
+func TestRateBookByName(t *testing.T) {
+	w := newWorld(t)
+	named := func(extra ...filled) call {
+		return intakeCall(append([]filled{{"file", "quay.csv", "text/csv", csvSchedule}, {name: "project", data: "P"}, {name: "scheme", data: "S"}}, extra...)...)
+	}
+	_, taken := w.want(201, named(filled{name: "rate_book", data: "ratio"}))
+	book := id(t, taken, "estimate", "rate_book_id")
+	estimates := "/v1/schemes/" + id(t, taken, "scheme", "id") + "/estimates"
+	_, e := w.want(201, call{method: "POST", path: estimates, body: `{"rate_book":"ratio"}`})
+	if got := id(t, e, "rate_book_id"); got != book {
+		t.Errorf("rate book %s, want %s", got, book)
+	}
+	for status, calls := range map[int][]call{
+		404: {named(filled{name: "rate_book", data: "rates of nobody"}), {method: "POST", path: estimates, body: `{"rate_book":"rates of nobody"}`}},
+		422: {named(filled{name: "rate_book", data: "ratio"}, filled{name: "rate_book_id", data: book}), {method: "POST", path: estimates, body: `{"rate_book":"ratio","rate_book_id":"` + book + `"}`}},
+	} {
+		for _, c := range calls {
+			p := w.refused(status, c)
+			if len(p.Faults) != 1 || p.Faults[0].Pointer != "/rate_book" || p.Faults[0].Remedy == "" {
+				t.Errorf("%s: faults %+v", c.path, p.Faults)
+			}
+		}
+	}
+}
+
+// A CSV schedule hands in its risks and what is defined as parts of the form; they are
+// kept with the revision, so that a later estimate has them too, and are part of what
+// an idempotency key stands for.
+func TestDefinitionAndRisksBesideACSV(t *testing.T) {
+	w := newWorld(t)
+	var jobs []job.Job
+	stub := w.run
+	w.run = func(ctx context.Context, j job.Job, p engine.Progress) (document.Document, error) {
+		jobs = append(jobs, j)
+		return stub(ctx, j, p)
+	}
+	parts := []filled{{"file", "quay.csv", "text/csv", csvSchedule}, {name: "project", data: "P"}, {name: "scheme", data: "S"},
+		{"definition", "definition.csv", "text/csv", "Item,State,Remark\nExecution class,Defined,EXC3 agreed\n"},
+		{"risks", "risks.csv", "text/csv", "Risk,Probability (%),Low,Likely,High\nice,1,4000,5000,6000\n"}}
+	first := intakeCall(parts...).with("Idempotency-Key", "k")
+	_, taken := w.want(201, first)
+	scheme := "/v1/schemes/" + id(t, taken, "scheme", "id")
+	w.want(201, call{method: "POST", path: scheme + "/estimates", body: `{}`})
+	body, contentType := formOf(parts[0], parts[3], parts[4])
+	posted := call{method: "POST", path: scheme + "/schedules", body: body, contentType: contentType}
+	_, revision := w.want(201, posted)
+	if got, want := revision["source_sha256"], taken["schedule"].(map[string]any)["source_sha256"]; got != want {
+		t.Errorf("the same posting has the hashes %v and %v", got, want)
+	}
+	w.want(201, call{method: "POST", path: scheme + "/estimates", body: `{}`})
+	for i, j := range jobs {
+		if len(j.Risks) != 1 || j.Risks[0].Name != "ice" || len(j.Settings.Definition) != 1 {
+			t.Errorf("job %d has risks %+v and defined %+v", i, j.Risks, j.Settings.Definition)
+		}
+	}
+	if len(jobs) != 3 {
+		t.Errorf("%d jobs, want 3", len(jobs))
+	}
+	other := append(slices.Clone(parts[:4]), filled{"risks", "risks.csv", "text/csv", strings.Replace(parts[4].data, "ice,1", "ice,2", 1)})
+	w.refused(409, intakeCall(other...).with("Idempotency-Key", "k"))
+	bad := append(slices.Clone(parts[:4]), filled{"risks", "risks.csv", "text/csv", strings.Replace(parts[4].data, "ice,1", "ice,often", 1)})
+	if p := w.refused(422, intakeCall(bad...)); len(p.Faults) != 1 || p.Faults[0].Found != "often" {
+		t.Errorf("faults %+v", p.Faults)
 	}
 }

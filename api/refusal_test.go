@@ -52,6 +52,12 @@ func endpoints(t *testing.T) []endpoint {
 		{"get-estimate-range", "GET", "/v1/estimates/{estimate}/range", "", auth.Viewer, 200},
 		{"get-estimate-findings", "GET", "/v1/estimates/{estimate}/findings", "", auth.Viewer, 200},
 		{"get-estimate-members", "GET", "/v1/estimates/{estimate}/members", "", auth.Viewer, 200},
+		{"trace-estimate", "GET", "/v1/estimates/{estimate}/trace?figure=base", "", auth.Viewer, 200},
+		{"list-estimate-figures", "GET", "/v1/estimates/{estimate}/figures", "", auth.Viewer, 200},
+		{"preview-estimate", "POST", "/v1/estimates/{estimate}/preview", exampleBody(t, "NewPreview"), auth.Viewer, 200},
+		{"compare-estimates", "POST", "/v1/comparisons", `{"estimates":["{estimate}","{second}"]}`, auth.Viewer, 200},
+		{"compare-arrangements", "POST", "/v1/comparisons/arrangements", "{" + quayWays + "}", auth.Viewer, 200},
+		{"bridge-estimates", "POST", "/v1/bridges", `{"from":"{estimate}","to":"{second}"}`, auth.Viewer, 200},
 		{"intake", "POST", "/v1/intake", "form", auth.Estimator, 201},
 		{"list-rate-books", "GET", "/v1/rate-books", "", auth.Viewer, 200},
 		{"create-rate-book", "POST", "/v1/rate-books", bookJSON(t, "quay rates"), auth.Estimator, 201},
@@ -68,11 +74,22 @@ func endpoints(t *testing.T) []endpoint {
 		{"create-token", "POST", "/v1/tokens", `{"name":"spare","role":"viewer"}`, auth.Administrator, 201},
 		{"revoke-token", "DELETE", "/v1/tokens/{token}", "", auth.Administrator, 200},
 		{"list-audit-events", "GET", "/v1/audit-events", "", auth.Manager, 200},
+		{"list-outturns", "GET", "/v1/outturns", "", auth.Viewer, 200},
+		{"post-outturns", "POST", "/v1/outturns", csvOutturn, auth.Estimator, 201},
+		{"get-outturn-template", "GET", "/v1/outturns/template", "", auth.Viewer, 200},
+		{"get-outturn", "GET", "/v1/outturns/{outturn}", "", auth.Viewer, 200},
+		{"withdraw-outturn", "DELETE", "/v1/outturns/{outturn}", "", auth.Manager, 204},
+		{"list-calibrations", "GET", "/v1/calibrations", "", auth.Viewer, 200},
+		{"create-calibration", "POST", "/v1/calibrations", `{}`, auth.Estimator, 201},
+		{"get-calibration", "GET", "/v1/calibrations/{calibration}", "", auth.Viewer, 200},
+		{"decide-calibration", "POST", "/v1/calibrations/{calibration}/decision", `{"decision":"decline","reason":"too few kinds"}`, auth.Manager, 200},
 		{"calculate-beam", "POST", "/v1/calculators/beam", exampleBody(t, "BeamRequest"), auth.Viewer, 200},
 		{"calculate-section", "POST", "/v1/calculators/section", exampleBody(t, "SectionRequest"), auth.Viewer, 200},
 		{"calculate-resistance", "POST", "/v1/calculators/resistance", exampleBody(t, "ResistanceRequest"), auth.Viewer, 200},
 		{"calculate-sizing", "POST", "/v1/calculators/sizing", exampleBody(t, "SizingRequest"), auth.Viewer, 200},
 		{"calculate-arrangements", "POST", "/v1/calculators/arrangements", exampleBody(t, "ArrangementsRequest"), auth.Viewer, 200},
+		{"calculate-cutting-plan", "POST", "/v1/calculators/cutting-plan", exampleBody(t, "CuttingPlanRequest"), auth.Viewer, 200},
+		{"calculate-range", "POST", "/v1/calculators/range", exampleBody(t, "RangeRequest"), auth.Viewer, 200},
 	}
 }
 
@@ -96,6 +113,9 @@ func stock(w *world) map[string]string {
 	ids["multiplier"] = id(w.t, m, "id")
 	_, k := w.want(201, call{method: "POST", path: "/v1/tokens", body: `{"name":"to be revoked","role":"viewer"}`})
 	ids["token"] = id(w.t, k, "token", "id")
+	stockOutturns(w, ids)
+	_, e := w.want(201, call{method: "POST", path: "/v1/schemes/" + ids["scheme"] + "/estimates", body: `{}`})
+	ids["second"] = id(w.t, e, "id")
 	return ids
 }
 
@@ -103,14 +123,15 @@ func (e endpoint) call(ids map[string]string) call {
 	c := call{method: e.method, path: e.path, body: e.body}
 	for name, id := range ids {
 		c.path = strings.ReplaceAll(c.path, "{"+name+"}", id)
+		c.body = strings.ReplaceAll(c.body, "{"+name+"}", id)
 	}
 	switch e.body {
 	case "form":
 		c = intakeCall()
-	case csvSchedule:
+	case csvSchedule, csvOutturn:
 		c.contentType = "text/csv"
 	}
-	if e.method == "PUT" || e.operation == "delete-multiplier" {
+	if e.method == "PUT" || e.operation == "delete-multiplier" || e.operation == "withdraw-outturn" {
 		c = c.with("If-Match", `"1"`)
 	}
 	return c
@@ -269,7 +290,7 @@ func newWorldIn(w *world) map[string]string {
 
 // limitOf is the largest body of an operation.
 func limitOf(e endpoint) int {
-	if e.operation == "intake" || e.operation == "post-schedule" || e.operation == "check-schedule" {
+	if e.operation == "intake" || e.operation == "post-schedule" || e.operation == "check-schedule" || e.operation == "post-outturns" {
 		return 2048 + formSlack
 	}
 	return smallBody
@@ -287,7 +308,7 @@ func TestEveryBodyAtItsLimit(t *testing.T) {
 		c.body = c.body[:len(c.body)-1] + strings.Repeat(" ", limit-len(c.body)) + c.body[len(c.body)-1:]
 		// A raw schedule of this size passes the door, and the limit of a file refuses
 		// it: see TestScheduleAtItsLimit.
-		if rec := w.do(c); len(c.body) != limit || rec.Code == http.StatusRequestEntityTooLarge && e.operation != "post-schedule" && e.operation != "check-schedule" {
+		if rec := w.do(c); len(c.body) != limit || rec.Code == http.StatusRequestEntityTooLarge && e.operation != "post-schedule" && e.operation != "check-schedule" && e.operation != "post-outturns" {
 			t.Errorf("%s: %d bytes, the limit: status %d: %s", e.operation, len(c.body), rec.Code, rec.Body)
 		}
 		c.body += " "
@@ -372,7 +393,7 @@ func TestEveryUnknownQuery(t *testing.T) {
 	ids := stock(w)
 	for _, e := range endpoints(t) {
 		c := e.call(ids)
-		c.path += "?colour=red"
+		c.path += map[bool]string{false: "?", true: "&"}[strings.Contains(c.path, "?")] + "colour=red"
 		if p := w.refused(http.StatusUnprocessableEntity, c); len(p.Faults) != 1 || !strings.Contains(p.Faults[0].Problem, "query parameter colour") {
 			t.Errorf("%s: faults %+v do not name the parameter", e.operation, p.Faults)
 		}

@@ -26,7 +26,8 @@ func (a *api) schedules() {
 			l, err := a.service.Revisions(ctx, r.Actor, in.ID, in.page())
 			return listed(r, in.Paged, l, err)
 		})
-	body := formBody(map[string]*huma.Schema{"file": fileSchema(fileHelp), "job": fileSchema("CSV file of Key,Value that stands for the Job sheet. ")})
+	body := formBody(map[string]*huma.Schema{"file": fileSchema(fileHelp), "job": fileSchema("CSV file of Key,Value that stands for the Job sheet. "),
+		"definition": fileSchema(definitionHelp), "risks": fileSchema(risksHelp)})
 	maps.Copy(body.Content, scheduleForms())
 	body.Content[mediaBytes] = &huma.MediaType{Schema: &huma.Schema{Type: huma.TypeString, Format: "binary"}}
 	registerRaw(a, described(operation(http.MethodPost, "/v1/schemes/{id}/schedules", "post-schedule", tagSchedules, "Post a schedule as the next revision",
@@ -70,7 +71,7 @@ func posting(r *request) (service.Posting, [][]byte, error) {
 	if r.MediaType != mediaMultipart {
 		return service.Posting{Name: r.FileName, ContentType: r.ContentType, Data: r.Body}, [][]byte{[]byte(r.MediaType), []byte(r.FileName), r.Body}, nil
 	}
-	f, err := readForm(r, "file", "job")
+	f, err := readForm(r, "file", "job", "definition", "risks")
 	if err != nil {
 		return service.Posting{}, nil, err
 	}

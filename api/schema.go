@@ -83,8 +83,16 @@ func prefixed(dir, name string) string {
 		return "Document" + name
 	case dir == "ratebook":
 		return "RateBook" + strings.Replace(name, "Book", "Content", 1)
+	case dir == "calibration":
+		return "Calibration" + name
 	case dir == "assumption":
 		return "Assumption" + name
+	case dir == "trace":
+		return "Trace" + name
+	case dir == "comparison" && name != "Comparison":
+		return "Comparison" + name
+	case dir == "bridge" && name != "Bridge":
+		return "Bridge" + name
 	case dir == "service" && name == "Revision":
 		return "Schedule"
 	}

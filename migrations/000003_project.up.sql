@@ -51,6 +51,8 @@ create table schedule_revision (
   source_sha256   bytea       not null check (octet_length(source_sha256) = 32),
   source          bytea       not null check (octet_length(source) between 1 and 67108864),
   job_defaults    bytea       check (octet_length(job_defaults) <= 1048576),
+  definition      bytea       check (octet_length(definition) <= 1048576),
+  risks           bytea       check (octet_length(risks) <= 1048576),
   members         integer     not null check (members >= 0),
   created_at      timestamptz not null default now(),
   created_by      uuid        not null,

@@ -41,6 +41,11 @@ func seed(t *testing.T, db *pgtest.Database) [2]uuid.UUID {
 			net_t, delivered_t, purchased_t, unsafe_findings, members, created_by)
 			values ($1, $1, $1, $1, $1, 1, 'x', ` + hash + `, 'x', ` + hash + `, 1, 'EUR', 100, 90, 105, 120, 130, 108, 20, 0.8, 1, 1, 1, 0, 1, $1)`,
 		`insert into idempotency (organisation_id, token_id, operation, key, fingerprint, status, resource_id) values ($1, $1, 'create', 'k', ` + hash + `, 201, $1)`,
+		`insert into outturn (organisation_id, id, posting_id, job, kind, completed, content, sha256, source_name, source_sha256, created_by)
+			values ($1, $1, $1, 'pan house footbridge', 'trestles', '2025-09-30', 'x', ` + hash + `, 'outturns.csv', ` + hash + `, $1)`,
+		`insert into calibration (organisation_id, id, rate_book_id, rate_book_number, proposal, sha256, evidence, jobs, left_out, recommended, statement,
+			state, decision, made_number, decided_at, decided_by, created_by)
+			values ($1, $1, $1, 1, 'x', ` + hash + `, 'x', 20, 0, true, 'better', 'accepted', '{}', 1, now(), $1, $1)`,
 		`insert into audit_event (organisation_id, id, actor_token_id, actor_name, actor_role, request_id, action, subject_kind, subject_id)
 			values ($1, $1, $1, 'quay', 'manager', 'r', 'create', 'project', $1)`,
 	}
@@ -295,7 +300,7 @@ where c.conrelid = $1::regclass and c.contype = 'f' and c.confrelid <> 'spanwrig
 		for column, value := range own {
 			values[column] = value
 		}
-		for column, value := range map[string]any{"id": uuid.NewString(), "public_id": uuid.NewString(), "name": uuid.NewString(), "key": uuid.NewString(), "number": 2} {
+		for column, value := range map[string]any{"id": uuid.NewString(), "public_id": uuid.NewString(), "name": uuid.NewString(), "key": uuid.NewString(), "job": uuid.NewString(), "number": 2} {
 			if _, has := values[column]; has {
 				values[column] = value
 			}

@@ -18,4 +18,4 @@ var FS embed.FS
 
 // Latest is the number of the newest migration, and so the version of the schema
 // that this program works with.
-const Latest = 6
+const Latest = 7

@@ -29,10 +29,12 @@ func TestPrivileges(t *testing.T) {
 	tests := map[string][]string{
 		"spanwright_service": {
 			"audit_event: INSERT SELECT",
+			"calibration: INSERT SELECT UPDATE(state,reason,decision,made_number,decided_at,decided_by,version)",
 			"estimate: INSERT SELECT",
 			"idempotency: DELETE INSERT SELECT UPDATE(status,resource_id,body)",
 			"multiplier: INSERT SELECT UPDATE(scope,subject,name,categories,spread,correlation_group,reason,author,version,updated_at,deleted_at)",
 			"organisation: SELECT",
+			"outturn: INSERT SELECT UPDATE(version,withdrawn_at)",
 			"project: INSERT SELECT UPDATE(name,currency,base_date,display_units,version,updated_at)",
 			"rate_book: INSERT SELECT UPDATE(name,version,current_number,updated_at)",
 			"rate_book_version: INSERT SELECT",
@@ -42,7 +44,7 @@ func TestPrivileges(t *testing.T) {
 			"token: INSERT SELECT UPDATE(name,expires_at,revoked_at,version)",
 		},
 		"spanwright_reader": {
-			"audit_event: SELECT", "estimate: SELECT", "idempotency: ", "multiplier: SELECT", "organisation: SELECT",
+			"audit_event: SELECT", "calibration: SELECT", "estimate: SELECT", "idempotency: ", "multiplier: SELECT", "organisation: SELECT", "outturn: SELECT",
 			"project: SELECT", "rate_book: SELECT", "rate_book_version: SELECT", "schedule_revision: SELECT", "scheme: SELECT", "session: ",
 			"token: SELECT(organisation_id,id,public_id,role,name,created_at,created_by,expires_at,revoked_at,version)",
 		},

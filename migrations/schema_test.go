@@ -176,6 +176,10 @@ func TestChecks(t *testing.T) {
 		{"confidence not a number", "update estimate set confidence = 'NaN'", "estimate_confidence_check"},
 		{"percentiles out of order", "update estimate set p50 = p80 + 1", "estimate_check"},
 		{"revision of another scheme", "update estimate set scheme_id = gen_random_uuid()", "estimate_organisation_id_scheme_id_fkey"},
+		{"outturn without a job", "update outturn set job = ''", "outturn_job_check"},
+		{"decided by nobody", "update calibration set decided_by = null", "calibration_decided"},
+		{"accepted without a version", "update calibration set made_number = null", "calibration_made"},
+		{"unknown state", "update calibration set state = 'perhaps', made_number = null", "calibration_state_check"},
 		{"status", "update idempotency set status = 42", "idempotency_status_check"},
 	}
 	for _, test := range tests {

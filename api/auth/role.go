@@ -50,12 +50,18 @@ const (
 	ManageTokens    Operation = "manage tokens"
 	UseCalculators  Operation = "use calculators"
 	ManageOwnAccess Operation = "sign in and out"
+
+	ReadOutturns       Operation = "read outturns and calibrations"
+	WriteOutturns      Operation = "post outturns and fit calibrations"
+	WithdrawOutturns   Operation = "withdraw outturns"
+	DecideCalibrations Operation = "decide on calibrations"
 )
 
 var least = map[Operation]Role{
 	ReadProjects: Viewer, UseCalculators: Viewer, ManageOwnAccess: Viewer, ReadRates: Viewer,
 	WriteProjects: Estimator, PostSchedules: Estimator, MakeEstimates: Estimator, WriteRates: Estimator,
 	ReadAudit: Manager, ManageTokens: Administrator,
+	ReadOutturns: Viewer, WriteOutturns: Estimator, WithdrawOutturns: Manager, DecideCalibrations: Manager,
 }
 
 // Allow reports whether the role may do the operation. An operation that the

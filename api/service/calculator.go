@@ -39,6 +39,16 @@ func (s *Service) CalculateArrangements(ctx context.Context, a Actor, r calculat
 	return calculate(ctx, s, a, r, calculator.Arrangements)
 }
 
+// CalculateCuttingPlan plans how bars are cut; errors as CalculateBeam.
+func (s *Service) CalculateCuttingPlan(ctx context.Context, a Actor, r calculator.CuttingPlanRequest) (calculator.CuttingPlanAnswer, error) {
+	return calculate(ctx, s, a, r, calculator.CuttingPlan)
+}
+
+// CalculateRange simulates the sum of uncertain lines; errors as CalculateBeam.
+func (s *Service) CalculateRange(ctx context.Context, a Actor, r calculator.RangeRequest) (calculator.RangeAnswer, error) {
+	return calculate(ctx, s, a, r, calculator.Range)
+}
+
 // plainly makes a calculator of one that is too quick to be given up.
 func plainly[I, O any](f func(I) (O, error)) func(context.Context, I) (O, error) {
 	return func(_ context.Context, in I) (O, error) { return f(in) }

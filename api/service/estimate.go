@@ -92,15 +92,15 @@ func (s *Service) basis(ctx context.Context, tx Tx, scheme uuid.UUID, n NewEstim
 	if b.revision.Scheme != scheme {
 		return b, invalid("/schedule_revision_id", b.revision.ID.String(), "belongs to another scheme", "a revision of this scheme")
 	}
-	if err := s.rates(ctx, tx, &b, n.RateBook); err != nil {
+	if err := s.rates(ctx, tx, &b, n.RateBook, n.BookName); err != nil {
 		return b, err
 	}
 	return b, nil
 }
 
 // rates fills in the rate book and the multipliers in force.
-func (s *Service) rates(ctx context.Context, tx Tx, b *basis, book *uuid.UUID) error {
-	stored, err := bookOf(ctx, tx, book)
+func (s *Service) rates(ctx context.Context, tx Tx, b *basis, book *uuid.UUID, name string) error {
+	stored, err := bookNamed(ctx, tx, book, name)
 	if err != nil {
 		return err
 	}
@@ -121,6 +121,22 @@ func bookOf(ctx context.Context, tx Tx, id *uuid.UUID) (RateBook, error) {
 		return tx.RateBookByName(ctx, StartingBook)
 	}
 	return tx.RateBook(ctx, *id)
+}
+
+// bookNamed reads a rate book by its id or by its name: NotFound, Invalid for both.
+func bookNamed(ctx context.Context, tx Tx, id *uuid.UUID, name string) (RateBook, error) {
+	switch {
+	case name == "":
+		return bookOf(ctx, tx, id)
+	case id != nil:
+		return RateBook{}, invalid("/rate_book", name, "the rate book is given twice", "rate_book with a name, or rate_book_id")
+	}
+	b, err := tx.RateBookByName(ctx, name)
+	if isKind(err, NotFound) {
+		err = &Error{Kind: NotFound, Message: "no such rate book", Faults: []Fault{{Pointer: "/rate_book", Found: shortened(name), Problem: "no rate book of this name",
+			Remedy: "the name of a rate book of this organisation; each begins with ratio and unit-rate"}}}
+	}
+	return b, err
 }
 
 func (n NewEstimate) sampling(limit int) (job.Sampling, error) {

@@ -28,7 +28,7 @@ func (s *Service) Intake(ctx context.Context, a Actor, in Intake, key Idempotenc
 	if t, found, err := s.takenBefore(ctx, a, key); err != nil || found {
 		return t, err
 	}
-	book, err := read(ctx, s, a, auth.MakeEstimates, func(tx Tx) (RateBook, error) { return bookOf(ctx, tx, in.RateBook) })
+	book, err := read(ctx, s, a, auth.MakeEstimates, func(tx Tx) (RateBook, error) { return bookNamed(ctx, tx, in.RateBook, in.BookName) })
 	if err != nil {
 		return Taken{}, err
 	}
@@ -100,7 +100,7 @@ func (s *Service) intakeBasis(ctx context.Context, a Actor, in Intake, sch sched
 		if err != nil {
 			return err
 		}
-		return s.rates(ctx, tx, &b, in.RateBook)
+		return s.rates(ctx, tx, &b, in.RateBook, in.BookName)
 	})
 	if err != nil {
 		return b, f, err

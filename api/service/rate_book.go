@@ -10,9 +10,11 @@ import (
 	"spanwright/estimate/ratebook"
 )
 
-// StartingBook is the name of the rate book that every organisation begins with
-// and that is used where none is named.
+// StartingBook is the name of the rate book that is used where none is named.
 const StartingBook = "ratio"
+
+// StartingBooks are the rate books that every organisation begins with.
+func StartingBooks() []ratebook.Book { return []ratebook.Book{ratebook.Ratio(), ratebook.UnitRate()} }
 
 // CreateRateBook stores a rate book as version 1: Invalid, Conflict.
 func (s *Service) CreateRateBook(ctx context.Context, a Actor, book ratebook.Book, key Idempotency) (RateBook, error) {

@@ -46,6 +46,9 @@ type Revision struct {
 	Author   uuid.UUID `json:"-"` // the token; CreatedBy is its name
 	Source   []byte    `json:"-"` // as posted
 	JobTable []byte    `json:"-"` // the job defaults posted beside it
+
+	DefinitionTable []byte `json:"-"` // what of the structure is defined, posted beside it
+	RiskTable       []byte `json:"-"` // the discrete risks posted beside it
 }
 
 // Estimate is the head of an immutable estimate; its document is read apart.

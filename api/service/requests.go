@@ -15,6 +15,9 @@ type Posting struct {
 	ContentType string
 	Data        []byte
 	JobTable    []byte // optional CSV of key and value, for postings without a Job sheet
+
+	DefinitionTable []byte // optional CSV for postings without a sheet Definition
+	RiskTable       []byte // optional CSV for postings without a sheet Risks
 }
 
 // Idempotency names one attempt; the zero value is none.
@@ -35,6 +38,7 @@ type NewProject struct {
 type NewEstimate struct {
 	Revision   *uuid.UUID `json:"schedule_revision_id,omitempty" doc:"the newest when absent"`
 	RateBook   *uuid.UUID `json:"rate_book_id,omitempty" doc:"the organisation's book named ratio when absent"`
+	BookName   string     `json:"rate_book,omitempty" maxLength:"200" doc:"name of the rate book, such as unit-rate, in place of its id" example:"unit-rate"`
 	Seed       *uint64    `json:"seed,omitempty" default:"1"`
 	Replicates int        `json:"replicates,omitempty" default:"32"`
 	Trials     int        `json:"trials,omitempty" default:"4096"`
@@ -46,6 +50,7 @@ type Intake struct {
 	Project  string
 	Scheme   string
 	RateBook *uuid.UUID
+	BookName string // in place of the id
 	Posting  Posting
 }
 

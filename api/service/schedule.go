@@ -22,7 +22,8 @@ import (
 
 // readPosting reads a schedule from what was posted, with every fault at once.
 func (s *Service) readPosting(ctx context.Context, p Posting, classes []string, project, scheme string) (schedule.Schedule, error) {
-	o := schedule.Options{MaxMembers: s.limits.Members, Project: project, Scheme: scheme, JobTable: p.JobTable, ConnectionClasses: classes}
+	o := schedule.Options{MaxMembers: s.limits.Members, Project: project, Scheme: scheme, JobTable: p.JobTable,
+		DefinitionTable: p.DefinitionTable, RiskTable: p.RiskTable, ConnectionClasses: classes}
 	if int64(len(p.Data)) > s.limits.Sheet.Bytes {
 		return schedule.Schedule{}, &Error{Kind: TooLarge, Message: "the schedule is larger than the limit"}
 	}
@@ -179,7 +180,8 @@ func (s *Service) revision(a Actor, scheme uuid.UUID, p Posting, sch schedule.Sc
 		return Revision{}, err
 	}
 	return Revision{ID: id, Scheme: scheme, SourceName: p.SourceName(), SourceSHA256: p.SHA256(), Members: len(sch.Members),
-		CreatedAt: s.now(), CreatedBy: a.Name, Author: a.Token, Source: p.Data, JobTable: p.JobTable}, nil
+		CreatedAt: s.now(), CreatedBy: a.Name, Author: a.Token, Source: p.Data, JobTable: p.JobTable,
+		DefinitionTable: p.DefinitionTable, RiskTable: p.RiskTable}, nil
 }
 
 func (s *Service) insertRevision(ctx context.Context, tx Tx, a Actor, r Revision) (Revision, error) {
@@ -190,12 +192,21 @@ func (s *Service) insertRevision(ctx context.Context, tx Tx, a Actor, r Revision
 	return r, s.audit(ctx, tx, a, "post", "schedule", r.ID, nil, r)
 }
 
-// SHA256 is the hash of the posted bytes, in hexadecimal; a job table posted
-// beside them is part of it.
+// SHA256 is the hash of the posted bytes, in hexadecimal; tables posted beside them
+// are part of it, each under its name where it is not the job's.
 func (p Posting) SHA256() string {
 	h := sha256.New()
 	h.Write(p.Data)
 	h.Write(p.JobTable)
+	for _, t := range []struct {
+		name string
+		data []byte
+	}{{"\x00definition\x00", p.DefinitionTable}, {"\x00risks\x00", p.RiskTable}} {
+		if len(t.data) > 0 {
+			h.Write([]byte(t.name))
+			h.Write(t.data)
+		}
+	}
 	return hex.EncodeToString(h.Sum(nil))
 }
 
@@ -220,7 +231,7 @@ func (p Posting) SourceName() string {
 
 // posting turns a stored revision back into what was posted.
 func (r Revision) posting() Posting {
-	p := Posting{Name: r.SourceName, Data: r.Source, JobTable: r.JobTable}
+	p := Posting{Name: r.SourceName, Data: r.Source, JobTable: r.JobTable, DefinitionTable: r.DefinitionTable, RiskTable: r.RiskTable}
 	if b := bytes.TrimLeft(r.Source, " \t\r\n"); len(b) > 0 && b[0] == '{' {
 		p.ContentType = "application/json"
 	}

@@ -75,12 +75,15 @@ type Service struct {
 	log    *slog.Logger
 	heavy  chan struct{} // estimates being computed
 	files  chan struct{} // large files being read or written
+
+	previews *previews
 }
 
 // New returns a Service.
 func New(c Config) *Service {
 	return &Service{store: c.Store, run: c.Run, limits: c.Limits, build: c.Build, now: c.Now, newID: c.NewID, log: c.Logger,
-		heavy: make(chan struct{}, max(1, c.Limits.Heavy)), files: make(chan struct{}, max(1, c.Limits.Heavy))}
+		heavy: make(chan struct{}, max(1, c.Limits.Heavy)), files: make(chan struct{}, max(1, c.Limits.Heavy)),
+		previews: newPreviews()}
 }
 
 // allow refuses what the actor's role may not do.

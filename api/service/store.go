@@ -78,6 +78,20 @@ type Tx interface {
 	UpdateMultiplier(ctx context.Context, m Multiplier) error                              // Stale
 	DeleteMultiplier(ctx context.Context, id uuid.UUID, version int64, at time.Time) error // Stale; kept as a row, out of force
 
+	// InsertOutturns stores all or none: Conflict when a job has one in force.
+	InsertOutturns(ctx context.Context, list []Outturn) error
+	Outturn(ctx context.Context, id uuid.UUID) (Outturn, error)
+	Outturns(ctx context.Context, p Page) (List[Outturn], error)
+	OutturnsInForce(ctx context.Context) ([]Outturn, error)                               // by job
+	OutturnsOfPosting(ctx context.Context, posting uuid.UUID) ([]Outturn, error)          // by job; withdrawn ones too
+	WithdrawOutturn(ctx context.Context, id uuid.UUID, version int64, at time.Time) error // Stale; kept as a row, out of force
+
+	InsertCalibration(ctx context.Context, c Calibration) error
+	Calibration(ctx context.Context, id uuid.UUID) (Calibration, error)
+	Calibrations(ctx context.Context, p Page) (List[Calibration], error) // without Proposal and Evidence
+	// DecideCalibration writes the decision of one that is proposed: Stale otherwise.
+	DecideCalibration(ctx context.Context, c Calibration) error
+
 	InsertToken(ctx context.Context, t Token, secretSHA256 []byte) error
 	Token(ctx context.Context, id uuid.UUID) (Token, error)
 	Tokens(ctx context.Context, p Page) (List[Token], error)

@@ -98,19 +98,29 @@ func (a *Admin) insertOrganisation(ctx context.Context, db pgx.Tx, name string) 
 	if err := a.audit(ctx, t, "organisation", id, map[string]string{"name": name}); err != nil {
 		return id, err
 	}
-	book := service.RateBook{Name: service.StartingBook, Version: 1, Number: 1, Content: ratebook.Ratio(), CreatedAt: now, UpdatedAt: now}
-	content, sum, err := book.Content.Canonical()
+	for _, b := range service.StartingBooks() {
+		if err := a.insertBook(ctx, t, b, now); err != nil {
+			return id, err
+		}
+	}
+	return id, nil
+}
+
+// insertBook stores a starting book of a new organisation.
+func (a *Admin) insertBook(ctx context.Context, t tenant, b ratebook.Book, now time.Time) error {
+	content, sum, err := b.Canonical()
 	if err != nil {
-		return id, fmt.Errorf("store: rate book: %w", err)
+		return fmt.Errorf("store: rate book: %w", err)
 	}
-	book.SHA256 = sum
-	if book.ID, err = a.newID(); err != nil {
-		return id, fmt.Errorf("store: rate book: %w", err)
+	id, err := a.newID()
+	if err != nil {
+		return fmt.Errorf("store: rate book: %w", err)
 	}
+	book := service.RateBook{ID: id, Name: b.Name, Version: 1, Number: 1, SHA256: sum, Content: b, CreatedAt: now, UpdatedAt: now}
 	if err := t.InsertRateBook(ctx, book, content, uuid.Nil); err != nil {
-		return id, err
+		return err
 	}
-	return id, a.audit(ctx, t, "rate book", book.ID, book)
+	return a.audit(ctx, t, "rate book", id, book)
 }
 
 // CreateToken makes a token for an organisation and returns its text, which is not

@@ -54,10 +54,14 @@ func TestEnsureOrganisation(t *testing.T) {
 		if diff := cmp.Diff(ratebook.Ratio(), b.Content, exact); diff != "" || b.Version != 1 || b.Number != 1 || b.SHA256 != sum || err != nil {
 			t.Errorf("starting book version %d, number %d, %s, want %s %v %s", b.Version, b.Number, b.SHA256, sum, err, diff)
 		}
-		if n := length(tx.RateBooks(t.Context(), service.Page{})); n != 1 {
-			t.Errorf("%d rate books, want 1", n)
+		unit := got[service.RateBook](f)(tx.RateBookByName(t.Context(), ratebook.KindUnitRate))
+		if diff := cmp.Diff(ratebook.UnitRate(), unit.Content, exact); diff != "" {
+			t.Errorf("the second starting book (-want +got):\n%s", diff)
 		}
-		f.trail(tx, "rate book", "organisation")
+		if n := length(tx.RateBooks(t.Context(), service.Page{})); n != 2 {
+			t.Errorf("%d rate books, want 2", n)
+		}
+		f.trail(tx, "rate book", "rate book", "organisation")
 		return nil
 	})
 	for _, name := range []string{"", " ", strings.Repeat("x", 201)} {

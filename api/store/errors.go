@@ -32,6 +32,7 @@ var taken = map[string]string{
 	"rate_book_organisation_id_name_key":                     "a rate book of this name exists already",
 	"rate_book_version_pkey":                                 "the rate book has a version of this number already",
 	"multiplier_in_force":                                    "a multiplier of this name, scope and subject is in force already: change that one",
+	"outturn_in_force":                                       "a job of this posting has an outturn in force already: withdraw that one first",
 	"token_organisation_id_public_id_key":                    "a token of this public id exists already",
 	"idempotency_pkey":                                       "a simultaneous request has used this Idempotency-Key",
 }
@@ -39,20 +40,25 @@ var taken = map[string]string{
 // missing is what a foreign key did not find, by the name of its constraint. One
 // that points into another organisation finds nothing either.
 var missing = map[string]string{
-	"estimate_organisation_id_created_by_fkey":                     "token",
-	"estimate_organisation_id_rate_book_id_rate_book_number_fkey":  "rate book version",
-	"estimate_organisation_id_scheme_id_fkey":                      "scheme",
-	"estimate_organisation_id_scheme_id_schedule_revision_id_fkey": "schedule revision of this scheme",
-	"idempotency_organisation_id_token_id_fkey":                    "token",
-	"multiplier_organisation_id_project_id_fkey":                   "project",
-	"multiplier_organisation_id_project_id_scheme_id_fkey":         "scheme of this project",
-	"rate_book_version_organisation_id_created_by_fkey":            "token",
-	"rate_book_version_organisation_id_rate_book_id_fkey":          "rate book",
-	"schedule_revision_organisation_id_created_by_fkey":            "token",
-	"schedule_revision_organisation_id_scheme_id_fkey":             "scheme",
-	"scheme_organisation_id_project_id_fkey":                       "project",
-	"session_organisation_id_token_id_fkey":                        "token",
-	"token_organisation_id_created_by_fkey":                        "token",
+	"calibration_organisation_id_created_by_fkey":                    "token",
+	"calibration_organisation_id_decided_by_fkey":                    "token",
+	"calibration_organisation_id_rate_book_id_made_number_fkey":      "rate book version",
+	"calibration_organisation_id_rate_book_id_rate_book_number_fkey": "rate book version",
+	"estimate_organisation_id_created_by_fkey":                       "token",
+	"estimate_organisation_id_rate_book_id_rate_book_number_fkey":    "rate book version",
+	"estimate_organisation_id_scheme_id_fkey":                        "scheme",
+	"estimate_organisation_id_scheme_id_schedule_revision_id_fkey":   "schedule revision of this scheme",
+	"idempotency_organisation_id_token_id_fkey":                      "token",
+	"multiplier_organisation_id_project_id_fkey":                     "project",
+	"multiplier_organisation_id_project_id_scheme_id_fkey":           "scheme of this project",
+	"outturn_organisation_id_created_by_fkey":                        "token",
+	"rate_book_version_organisation_id_created_by_fkey":              "token",
+	"rate_book_version_organisation_id_rate_book_id_fkey":            "rate book",
+	"schedule_revision_organisation_id_created_by_fkey":              "token",
+	"schedule_revision_organisation_id_scheme_id_fkey":               "scheme",
+	"scheme_organisation_id_project_id_fkey":                         "project",
+	"session_organisation_id_token_id_fkey":                          "token",
+	"token_organisation_id_created_by_fkey":                          "token",
 }
 
 // failure turns an error of the database into one of the service; noun is what the

@@ -37,6 +37,8 @@ type fixture struct {
 	multiplier   service.Multiplier
 	estimate     service.Estimate
 	job, doc     []byte
+	outturn      service.Outturn
+	calibration  service.Calibration
 }
 
 func newFixture(t *testing.T) fixture {
@@ -77,6 +79,11 @@ func populate(t *testing.T, db *pgtest.Database, s *store.Store) fixture {
 		return errors.Join(tx.InsertRateBook(ctx, f.book, canonical(t, f.book.Content), f.token.ID), tx.InsertMultiplier(ctx, f.multiplier),
 			tx.InsertEstimate(ctx, f.estimate, f.job, f.doc))
 	})
+	f.outturn, f.calibration = f.newOutturn("Pan house footbridge"), f.newCalibration()
+	f.do(func(tx service.Tx) error {
+		return errors.Join(tx.InsertOutturns(t.Context(), []service.Outturn{f.outturn}), tx.InsertCalibration(t.Context(), f.calibration))
+	})
+	f.outturn.Content, f.calibration.Content, f.calibration.EvidenceRaw = nil, nil, nil // of records to be stored alone
 	return f
 }
 
@@ -104,7 +111,8 @@ func canonical(t *testing.T, b ratebook.Book) []byte {
 func (f fixture) newRevision() service.Revision {
 	source := []byte("Mark;Length\x00\xff")
 	return service.Revision{ID: newID(), Scheme: f.scheme.ID, SourceName: "quay.csv", SourceSHA256: hexSum(source), Members: 12,
-		CreatedAt: at(3), CreatedBy: f.token.Name, Author: f.token.ID, Source: source, JobTable: []byte("Grade;S355")}
+		CreatedAt: at(3), CreatedBy: f.token.Name, Author: f.token.ID, Source: source, JobTable: []byte("Grade;S355"),
+		DefinitionTable: []byte("Item;State"), RiskTable: []byte("Risk;Low")}
 }
 
 func newBook(t *testing.T, name string) service.RateBook {

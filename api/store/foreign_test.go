@@ -28,13 +28,16 @@ func TestAnotherOrganisationIsNotThere(t *testing.T) {
 			t.Errorf("%s of another organisation: %d, want 0", name, n)
 		}
 	}
-	for _, name := range []string{"Projects", "RateBooks", "Tokens", "Audit", "ProjectByName", "RateBookByName"} {
+	for _, name := range []string{"Projects", "RateBooks", "Outturns", "OutturnsInForce", "Calibrations", "Tokens", "Audit", "ProjectByName", "RateBookByName"} {
 		covered[name] = true // see below: each organisation has its own
 	}
 	g.do(func(tx service.Tx) error {
 		ctx := t.Context()
 		g.same(got[service.List[service.Project]](g)(tx.Projects(ctx, service.Page{})).Items, []service.Project{g.project})
 		g.same(got[service.List[service.RateBook]](g)(tx.RateBooks(ctx, service.Page{})).Items, []service.RateBook{g.book})
+		g.same(got[service.List[service.Outturn]](g)(tx.Outturns(ctx, service.Page{})).Items, []service.Outturn{g.outturn})
+		g.same(got[[]service.Outturn](g)(tx.OutturnsInForce(ctx)), []service.Outturn{g.outturn})
+		g.same(got[service.List[service.Calibration]](g)(tx.Calibrations(ctx, service.Page{})).Items, []service.Calibration{listed(g.calibration)})
 		g.same(got[service.List[service.Token]](g)(tx.Tokens(ctx, service.Page{})).Items, []service.Token{g.token})
 		g.same(got[service.Project](g)(tx.ProjectByName(ctx, f.project.Name)), g.project)
 		g.same(got[service.RateBook](g)(tx.RateBookByName(ctx, f.book.Name)), g.book)
@@ -68,6 +71,8 @@ func (f fixture) untouched() {
 		f.same(got[service.Estimate](f)(tx.NewestEstimate(ctx, f.scheme.ID)), f.estimate)
 		f.same(got[service.RateBook](f)(tx.RateBook(ctx, f.book.ID)), f.book)
 		f.same(got[[]service.Multiplier](f)(tx.MultipliersInForce(ctx, f.project.ID, f.scheme.ID)), []service.Multiplier{f.multiplier})
+		f.same(got[service.Outturn](f)(tx.Outturn(ctx, f.outturn.ID)), f.outturn)
+		f.same(got[service.Calibration](f)(tx.Calibration(ctx, f.calibration.ID)), f.calibration)
 		f.same(got[service.Token](f)(tx.Token(ctx, f.token.ID)), f.token)
 		return nil
 	})
@@ -128,6 +133,7 @@ func foreignCalls(f, g fixture) map[string]call {
 		},
 	}
 	addForeignWrites(calls, f, g)
+	addForeignCalibrations(calls, f, g)
 	return calls
 }
 
@@ -164,6 +170,7 @@ func foreignLists(ctx context.Context, g, f fixture, covered map[string]bool) ma
 		counts["Revisions"] = length(tx.Revisions(ctx, f.scheme.ID, service.Page{}))
 		counts["Estimates"] = length(tx.Estimates(ctx, f.scheme.ID, service.Page{}))
 		counts["Multipliers"] = length(tx.Multipliers(ctx, f.project.ID, service.Page{}))
+		counts["OutturnsOfPosting"] = len(got[[]service.Outturn](g)(tx.OutturnsOfPosting(ctx, f.outturn.Posting)))
 		counts["MultipliersInForce"] = len(got[[]service.Multiplier](g)(tx.MultipliersInForce(ctx, f.project.ID, f.scheme.ID)))
 		return nil
 	})

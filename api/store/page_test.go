@@ -135,6 +135,8 @@ func lists(ctx context.Context, tx service.Tx, f fixture, p service.Page) map[st
 	counts["estimates"] = length(tx.Estimates(ctx, f.scheme.ID, p))
 	counts["rate books"] = length(tx.RateBooks(ctx, p))
 	counts["multipliers"] = length(tx.Multipliers(ctx, f.project.ID, p))
+	counts["outturns"] = length(tx.Outturns(ctx, p))
+	counts["calibrations"] = length(tx.Calibrations(ctx, p))
 	counts["tokens"] = length(tx.Tokens(ctx, p))
 	counts["audit events"] = length(tx.Audit(ctx, p))
 	return counts

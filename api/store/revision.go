@@ -19,14 +19,14 @@ from schedule_revision r join token t on t.organisation_id = r.organisation_id a
 }
 
 var (
-	selectWholeRevision  = selectRevision("r.source, r.job_defaults")
-	selectListedRevision = selectRevision("null::bytea, null::bytea")
+	selectWholeRevision  = selectRevision("r.source, r.job_defaults, r.definition, r.risks")
+	selectListedRevision = selectRevision("null::bytea, null::bytea, null::bytea, null::bytea")
 )
 
 func scanRevision(row pgx.CollectableRow) (service.Revision, error) {
 	var r service.Revision
 	err := row.Scan(&r.ID, &r.Scheme, &r.Number, &r.SourceName, (*digest)(&r.SourceSHA256), &r.Members, &r.CreatedAt, &r.Author, &r.CreatedBy,
-		&r.Source, &r.JobTable)
+		&r.Source, &r.JobTable, &r.DefinitionTable, &r.RiskTable)
 	return r, err
 }
 
@@ -44,10 +44,10 @@ func (t tenant) InsertRevision(ctx context.Context, r service.Revision) (service
 	}
 	// A statement of its own: it must see what was committed during the wait.
 	number, err := one(ctx, t, "schedule revision", pgx.RowTo[int], `
-insert into schedule_revision (organisation_id, id, scheme_id, number, source_name, source_sha256, source, job_defaults, members, created_at, created_by)
-values ($1, $2, $3, 1 + coalesce((select max(number) from schedule_revision where scheme_id = $3), 0), $4, $5, $6, $7, $8, $9, $10)
+insert into schedule_revision (organisation_id, id, scheme_id, number, source_name, source_sha256, source, job_defaults, definition, risks, members, created_at, created_by)
+values ($1, $2, $3, 1 + coalesce((select max(number) from schedule_revision where scheme_id = $3), 0), $4, $5, $6, $7, $8, $9, $10, $11, $12)
 returning number`,
-		t.organisation, r.ID, r.Scheme, r.SourceName, sum, r.Source, r.JobTable, r.Members, r.CreatedAt, r.Author)
+		t.organisation, r.ID, r.Scheme, r.SourceName, sum, r.Source, r.JobTable, r.DefinitionTable, r.RiskTable, r.Members, r.CreatedAt, r.Author)
 	if err != nil {
 		return r, err
 	}

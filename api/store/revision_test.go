@@ -16,7 +16,7 @@ func TestRevision(t *testing.T) {
 	f := newFixture(t)
 	ctx := t.Context()
 	second := f.newRevision()
-	second.JobTable, second.CreatedAt = nil, at(1) // a clock that went backwards does not make it the older one
+	second.JobTable, second.DefinitionTable, second.RiskTable, second.CreatedAt = nil, nil, nil, at(1) // a clock that went backwards does not make it the older one
 	f.do(func(tx service.Tx) error {
 		var err error
 		second, err = tx.InsertRevision(ctx, second)
@@ -27,7 +27,7 @@ func TestRevision(t *testing.T) {
 	}
 	listed := []service.Revision{f.revision, second} // by time
 	for i := range listed {
-		listed[i].Source, listed[i].JobTable = nil, nil
+		listed[i].Source, listed[i].JobTable, listed[i].DefinitionTable, listed[i].RiskTable = nil, nil, nil, nil
 	}
 	f.do(func(tx service.Tx) error {
 		f.same(got[service.Revision](f)(tx.Revision(ctx, f.revision.ID)), f.revision)

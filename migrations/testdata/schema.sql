@@ -56,6 +56,42 @@ CREATE TABLE spanwright.audit_event (
 );
 ALTER TABLE ONLY spanwright.audit_event FORCE ROW LEVEL SECURITY;
 ALTER TABLE spanwright.audit_event OWNER TO spanwright_owner;
+CREATE TABLE spanwright.calibration (
+    organisation_id uuid NOT NULL,
+    id uuid NOT NULL,
+    rate_book_id uuid NOT NULL,
+    rate_book_number integer NOT NULL,
+    proposal bytea NOT NULL,
+    sha256 bytea NOT NULL,
+    evidence bytea NOT NULL,
+    jobs integer NOT NULL,
+    left_out integer NOT NULL,
+    recommended boolean NOT NULL,
+    statement text NOT NULL,
+    state text NOT NULL,
+    reason text DEFAULT ''::text NOT NULL,
+    decision jsonb,
+    made_number integer,
+    decided_at timestamp with time zone,
+    decided_by uuid,
+    version bigint DEFAULT 1 NOT NULL,
+    created_at timestamp with time zone DEFAULT now() NOT NULL,
+    created_by uuid NOT NULL,
+    CONSTRAINT calibration_decided CHECK ((((state = 'proposed'::text) = (decided_at IS NULL)) AND ((state = 'proposed'::text) = (decided_by IS NULL)))),
+    CONSTRAINT calibration_decision_check CHECK (((jsonb_typeof(decision) = 'object'::text) AND (octet_length((decision)::text) <= 1048576))),
+    CONSTRAINT calibration_evidence_check CHECK (((octet_length(evidence) >= 1) AND (octet_length(evidence) <= 16777216))),
+    CONSTRAINT calibration_jobs_check CHECK ((jobs >= 1)),
+    CONSTRAINT calibration_left_out_check CHECK ((left_out >= 0)),
+    CONSTRAINT calibration_made CHECK (((state = 'accepted'::text) = (made_number IS NOT NULL))),
+    CONSTRAINT calibration_proposal_check CHECK (((octet_length(proposal) >= 1) AND (octet_length(proposal) <= 16777216))),
+    CONSTRAINT calibration_reason_check CHECK ((length(reason) <= 2000)),
+    CONSTRAINT calibration_sha256_check CHECK ((octet_length(sha256) = 32)),
+    CONSTRAINT calibration_state_check CHECK ((state = ANY (ARRAY['proposed'::text, 'accepted'::text, 'declined'::text]))),
+    CONSTRAINT calibration_statement_check CHECK ((length(statement) <= 2000)),
+    CONSTRAINT calibration_version_check CHECK ((version >= 1))
+);
+ALTER TABLE ONLY spanwright.calibration FORCE ROW LEVEL SECURITY;
+ALTER TABLE spanwright.calibration OWNER TO spanwright_owner;
 CREATE TABLE spanwright.estimate (
     organisation_id uuid NOT NULL,
     id uuid NOT NULL,
@@ -163,6 +199,31 @@ CREATE TABLE spanwright.organisation (
 );
 ALTER TABLE ONLY spanwright.organisation FORCE ROW LEVEL SECURITY;
 ALTER TABLE spanwright.organisation OWNER TO spanwright_owner;
+CREATE TABLE spanwright.outturn (
+    organisation_id uuid NOT NULL,
+    id uuid NOT NULL,
+    posting_id uuid NOT NULL,
+    job text NOT NULL,
+    kind text NOT NULL,
+    completed date NOT NULL,
+    content bytea NOT NULL,
+    sha256 bytea NOT NULL,
+    source_name text NOT NULL,
+    source_sha256 bytea NOT NULL,
+    version bigint DEFAULT 1 NOT NULL,
+    created_at timestamp with time zone DEFAULT now() NOT NULL,
+    created_by uuid NOT NULL,
+    withdrawn_at timestamp with time zone,
+    CONSTRAINT outturn_content_check CHECK (((octet_length(content) >= 1) AND (octet_length(content) <= 65536))),
+    CONSTRAINT outturn_job_check CHECK (((length(job) >= 1) AND (length(job) <= 200))),
+    CONSTRAINT outturn_kind_check CHECK (((length(kind) >= 1) AND (length(kind) <= 200))),
+    CONSTRAINT outturn_sha256_check CHECK ((octet_length(sha256) = 32)),
+    CONSTRAINT outturn_source_name_check CHECK (((length(source_name) >= 1) AND (length(source_name) <= 200))),
+    CONSTRAINT outturn_source_sha256_check CHECK ((octet_length(source_sha256) = 32)),
+    CONSTRAINT outturn_version_check CHECK ((version >= 1))
+);
+ALTER TABLE ONLY spanwright.outturn FORCE ROW LEVEL SECURITY;
+ALTER TABLE spanwright.outturn OWNER TO spanwright_owner;
 CREATE TABLE spanwright.project (
     organisation_id uuid NOT NULL,
     id uuid NOT NULL,
@@ -217,12 +278,16 @@ CREATE TABLE spanwright.schedule_revision (
     source_sha256 bytea NOT NULL,
     source bytea NOT NULL,
     job_defaults bytea,
+    definition bytea,
+    risks bytea,
     members integer NOT NULL,
     created_at timestamp with time zone DEFAULT now() NOT NULL,
     created_by uuid NOT NULL,
+    CONSTRAINT schedule_revision_definition_check CHECK ((octet_length(definition) <= 1048576)),
     CONSTRAINT schedule_revision_job_defaults_check CHECK ((octet_length(job_defaults) <= 1048576)),
     CONSTRAINT schedule_revision_members_check CHECK ((members >= 0)),
     CONSTRAINT schedule_revision_number_check CHECK ((number >= 1)),
+    CONSTRAINT schedule_revision_risks_check CHECK ((octet_length(risks) <= 1048576)),
     CONSTRAINT schedule_revision_source_check CHECK (((octet_length(source) >= 1) AND (octet_length(source) <= 67108864))),
     CONSTRAINT schedule_revision_source_name_check CHECK (((length(source_name) >= 1) AND (length(source_name) <= 255))),
     CONSTRAINT schedule_revision_source_sha256_check CHECK ((octet_length(source_sha256) = 32))
@@ -280,6 +345,8 @@ CREATE TABLE spanwright_migration.schema_migrations (
 ALTER TABLE spanwright_migration.schema_migrations OWNER TO spanwright_owner;
 ALTER TABLE ONLY spanwright.audit_event
     ADD CONSTRAINT audit_event_pkey PRIMARY KEY (organisation_id, id);
+ALTER TABLE ONLY spanwright.calibration
+    ADD CONSTRAINT calibration_pkey PRIMARY KEY (organisation_id, id);
 ALTER TABLE ONLY spanwright.estimate
     ADD CONSTRAINT estimate_pkey PRIMARY KEY (organisation_id, id);
 ALTER TABLE ONLY spanwright.idempotency
@@ -288,6 +355,8 @@ ALTER TABLE ONLY spanwright.multiplier
     ADD CONSTRAINT multiplier_pkey PRIMARY KEY (organisation_id, id);
 ALTER TABLE ONLY spanwright.organisation
     ADD CONSTRAINT organisation_pkey PRIMARY KEY (id);
+ALTER TABLE ONLY spanwright.outturn
+    ADD CONSTRAINT outturn_pkey PRIMARY KEY (organisation_id, id);
 ALTER TABLE ONLY spanwright.project
     ADD CONSTRAINT project_organisation_id_name_key UNIQUE (organisation_id, name);
 ALTER TABLE ONLY spanwright.project
@@ -320,6 +389,11 @@ ALTER TABLE ONLY spanwright_migration.schema_migrations
     ADD CONSTRAINT schema_migrations_pkey PRIMARY KEY (version);
 CREATE INDEX audit_event_listing ON spanwright.audit_event USING btree (organisation_id, at, id);
 CREATE INDEX audit_event_of_subject ON spanwright.audit_event USING btree (organisation_id, subject_kind, subject_id, at, id);
+CREATE INDEX calibration_created_by ON spanwright.calibration USING btree (organisation_id, created_by);
+CREATE INDEX calibration_decided_by ON spanwright.calibration USING btree (organisation_id, decided_by);
+CREATE INDEX calibration_listing ON spanwright.calibration USING btree (organisation_id, created_at, id);
+CREATE INDEX calibration_made_number ON spanwright.calibration USING btree (organisation_id, rate_book_id, made_number);
+CREATE INDEX calibration_rate_book ON spanwright.calibration USING btree (organisation_id, rate_book_id, rate_book_number);
 CREATE INDEX estimate_created_by ON spanwright.estimate USING btree (organisation_id, created_by);
 CREATE INDEX estimate_listing ON spanwright.estimate USING btree (organisation_id, created_at, id);
 CREATE INDEX estimate_listing_of_scheme ON spanwright.estimate USING btree (organisation_id, scheme_id, created_at, id);
@@ -330,6 +404,10 @@ CREATE UNIQUE INDEX multiplier_in_force ON spanwright.multiplier USING btree (or
 CREATE INDEX multiplier_listing ON spanwright.multiplier USING btree (organisation_id, created_at, id);
 CREATE INDEX multiplier_listing_of_project ON spanwright.multiplier USING btree (organisation_id, project_id, created_at, id);
 CREATE INDEX multiplier_scheme ON spanwright.multiplier USING btree (organisation_id, project_id, scheme_id);
+CREATE INDEX outturn_created_by ON spanwright.outturn USING btree (organisation_id, created_by);
+CREATE UNIQUE INDEX outturn_in_force ON spanwright.outturn USING btree (organisation_id, job) WHERE (withdrawn_at IS NULL);
+CREATE INDEX outturn_listing ON spanwright.outturn USING btree (organisation_id, created_at, id);
+CREATE INDEX outturn_of_posting ON spanwright.outturn USING btree (organisation_id, posting_id, id);
 CREATE INDEX project_listing ON spanwright.project USING btree (organisation_id, created_at, id);
 CREATE INDEX rate_book_listing ON spanwright.rate_book USING btree (organisation_id, created_at, id);
 CREATE INDEX rate_book_version_created_by ON spanwright.rate_book_version USING btree (organisation_id, created_by);
@@ -345,6 +423,16 @@ CREATE INDEX token_listing ON spanwright.token USING btree (organisation_id, cre
 CREATE INDEX token_public_id ON spanwright.token USING btree (public_id);
 ALTER TABLE ONLY spanwright.audit_event
     ADD CONSTRAINT audit_event_organisation_id_fkey FOREIGN KEY (organisation_id) REFERENCES spanwright.organisation(id);
+ALTER TABLE ONLY spanwright.calibration
+    ADD CONSTRAINT calibration_organisation_id_created_by_fkey FOREIGN KEY (organisation_id, created_by) REFERENCES spanwright.token(organisation_id, id);
+ALTER TABLE ONLY spanwright.calibration
+    ADD CONSTRAINT calibration_organisation_id_decided_by_fkey FOREIGN KEY (organisation_id, decided_by) REFERENCES spanwright.token(organisation_id, id);
+ALTER TABLE ONLY spanwright.calibration
+    ADD CONSTRAINT calibration_organisation_id_fkey FOREIGN KEY (organisation_id) REFERENCES spanwright.organisation(id);
+ALTER TABLE ONLY spanwright.calibration
+    ADD CONSTRAINT calibration_organisation_id_rate_book_id_made_number_fkey FOREIGN KEY (organisation_id, rate_book_id, made_number) REFERENCES spanwright.rate_book_version(organisation_id, rate_book_id, number);
+ALTER TABLE ONLY spanwright.calibration
+    ADD CONSTRAINT calibration_organisation_id_rate_book_id_rate_book_number_fkey FOREIGN KEY (organisation_id, rate_book_id, rate_book_number) REFERENCES spanwright.rate_book_version(organisation_id, rate_book_id, number);
 ALTER TABLE ONLY spanwright.estimate
     ADD CONSTRAINT estimate_organisation_id_created_by_fkey FOREIGN KEY (organisation_id, created_by) REFERENCES spanwright.token(organisation_id, id);
 ALTER TABLE ONLY spanwright.estimate
@@ -365,6 +453,10 @@ ALTER TABLE ONLY spanwright.multiplier
     ADD CONSTRAINT multiplier_organisation_id_project_id_fkey FOREIGN KEY (organisation_id, project_id) REFERENCES spanwright.project(organisation_id, id);
 ALTER TABLE ONLY spanwright.multiplier
     ADD CONSTRAINT multiplier_organisation_id_project_id_scheme_id_fkey FOREIGN KEY (organisation_id, project_id, scheme_id) REFERENCES spanwright.scheme(organisation_id, project_id, id);
+ALTER TABLE ONLY spanwright.outturn
+    ADD CONSTRAINT outturn_organisation_id_created_by_fkey FOREIGN KEY (organisation_id, created_by) REFERENCES spanwright.token(organisation_id, id);
+ALTER TABLE ONLY spanwright.outturn
+    ADD CONSTRAINT outturn_organisation_id_fkey FOREIGN KEY (organisation_id) REFERENCES spanwright.organisation(id);
 ALTER TABLE ONLY spanwright.project
     ADD CONSTRAINT project_organisation_id_fkey FOREIGN KEY (organisation_id) REFERENCES spanwright.organisation(id);
 ALTER TABLE ONLY spanwright.rate_book
@@ -394,15 +486,18 @@ ALTER TABLE ONLY spanwright.token
 ALTER TABLE ONLY spanwright.token
     ADD CONSTRAINT token_organisation_id_fkey FOREIGN KEY (organisation_id) REFERENCES spanwright.organisation(id);
 ALTER TABLE spanwright.audit_event ENABLE ROW LEVEL SECURITY;
+ALTER TABLE spanwright.calibration ENABLE ROW LEVEL SECURITY;
 ALTER TABLE spanwright.estimate ENABLE ROW LEVEL SECURITY;
 ALTER TABLE spanwright.idempotency ENABLE ROW LEVEL SECURITY;
 ALTER TABLE spanwright.multiplier ENABLE ROW LEVEL SECURITY;
 ALTER TABLE spanwright.organisation ENABLE ROW LEVEL SECURITY;
 CREATE POLICY organisation_isolation ON spanwright.audit_event TO spanwright_service, spanwright_reader USING ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid)) WITH CHECK ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid));
+CREATE POLICY organisation_isolation ON spanwright.calibration TO spanwright_service, spanwright_reader USING ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid)) WITH CHECK ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid));
 CREATE POLICY organisation_isolation ON spanwright.estimate TO spanwright_service, spanwright_reader USING ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid)) WITH CHECK ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid));
 CREATE POLICY organisation_isolation ON spanwright.idempotency TO spanwright_service, spanwright_reader USING ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid)) WITH CHECK ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid));
 CREATE POLICY organisation_isolation ON spanwright.multiplier TO spanwright_service, spanwright_reader USING ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid)) WITH CHECK ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid));
 CREATE POLICY organisation_isolation ON spanwright.organisation TO spanwright_service, spanwright_reader USING ((id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid)) WITH CHECK ((id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid));
+CREATE POLICY organisation_isolation ON spanwright.outturn TO spanwright_service, spanwright_reader USING ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid)) WITH CHECK ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid));
 CREATE POLICY organisation_isolation ON spanwright.project TO spanwright_service, spanwright_reader USING ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid)) WITH CHECK ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid));
 CREATE POLICY organisation_isolation ON spanwright.rate_book TO spanwright_service, spanwright_reader USING ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid)) WITH CHECK ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid));
 CREATE POLICY organisation_isolation ON spanwright.rate_book_version TO spanwright_service, spanwright_reader USING ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid)) WITH CHECK ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid));
@@ -410,6 +505,7 @@ CREATE POLICY organisation_isolation ON spanwright.schedule_revision TO spanwrig
 CREATE POLICY organisation_isolation ON spanwright.scheme TO spanwright_service, spanwright_reader USING ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid)) WITH CHECK ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid));
 CREATE POLICY organisation_isolation ON spanwright.session TO spanwright_service, spanwright_reader USING ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid)) WITH CHECK ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid));
 CREATE POLICY organisation_isolation ON spanwright.token TO spanwright_service, spanwright_reader USING ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid)) WITH CHECK ((organisation_id = (NULLIF(current_setting('app.organisation'::text, true), ''::text))::uuid));
+ALTER TABLE spanwright.outturn ENABLE ROW LEVEL SECURITY;
 ALTER TABLE spanwright.project ENABLE ROW LEVEL SECURITY;
 ALTER TABLE spanwright.rate_book ENABLE ROW LEVEL SECURITY;
 ALTER TABLE spanwright.rate_book_version ENABLE ROW LEVEL SECURITY;
@@ -428,6 +524,15 @@ REVOKE ALL ON FUNCTION spanwright.token_by_public_id(wanted text) FROM PUBLIC;
 GRANT ALL ON FUNCTION spanwright.token_by_public_id(wanted text) TO spanwright_service;
 GRANT SELECT,INSERT ON TABLE spanwright.audit_event TO spanwright_service;
 GRANT SELECT ON TABLE spanwright.audit_event TO spanwright_reader;
+GRANT SELECT,INSERT ON TABLE spanwright.calibration TO spanwright_service;
+GRANT SELECT ON TABLE spanwright.calibration TO spanwright_reader;
+GRANT UPDATE(state) ON TABLE spanwright.calibration TO spanwright_service;
+GRANT UPDATE(reason) ON TABLE spanwright.calibration TO spanwright_service;
+GRANT UPDATE(decision) ON TABLE spanwright.calibration TO spanwright_service;
+GRANT UPDATE(made_number) ON TABLE spanwright.calibration TO spanwright_service;
+GRANT UPDATE(decided_at) ON TABLE spanwright.calibration TO spanwright_service;
+GRANT UPDATE(decided_by) ON TABLE spanwright.calibration TO spanwright_service;
+GRANT UPDATE(version) ON TABLE spanwright.calibration TO spanwright_service;
 GRANT SELECT,INSERT ON TABLE spanwright.estimate TO spanwright_service;
 GRANT SELECT ON TABLE spanwright.estimate TO spanwright_reader;
 GRANT SELECT,INSERT,DELETE ON TABLE spanwright.idempotency TO spanwright_service;
@@ -449,6 +554,10 @@ GRANT UPDATE(updated_at) ON TABLE spanwright.multiplier TO spanwright_service;
 GRANT UPDATE(deleted_at) ON TABLE spanwright.multiplier TO spanwright_service;
 GRANT SELECT ON TABLE spanwright.organisation TO spanwright_service;
 GRANT SELECT ON TABLE spanwright.organisation TO spanwright_reader;
+GRANT SELECT,INSERT ON TABLE spanwright.outturn TO spanwright_service;
+GRANT SELECT ON TABLE spanwright.outturn TO spanwright_reader;
+GRANT UPDATE(version) ON TABLE spanwright.outturn TO spanwright_service;
+GRANT UPDATE(withdrawn_at) ON TABLE spanwright.outturn TO spanwright_service;
 GRANT SELECT,INSERT ON TABLE spanwright.project TO spanwright_service;
 GRANT SELECT ON TABLE spanwright.project TO spanwright_reader;
 GRANT UPDATE(name) ON TABLE spanwright.project TO spanwright_service;
