@@ -153,7 +153,7 @@ func TestProjectShowsTheDocument(t *testing.T) {
 	contains(t, "headline", headline, "Base estimate 766 k EUR 766 439.82 EUR; it lies at P44", "Range P10 – P90 591 k – 1.06 M EUR",
 		"P50 793 k EUR", "P80 962 k EUR", "Contingency 196 k EUR P80, 962 k EUR, less the base", "Delivered mass 127.858 t", "6 unsafe")
 	all := text(main)
-	contains(t, "page", all, document.Caution, d.Job.Money, d.Job.RateBookNote, d.Range.Method, "Engine version 1",
+	contains(t, "page", all, document.Caution, d.Job.Money, d.Job.RateBookNote, d.Range.Method, "Engine version 2",
 		f.estimates[0].DocumentSHA256, "Base date 2026-06-01", "fabrication 276 173.28 36.0 % 292 k 203 k – 392 k",
 		"Base estimate 766 439.82 100.0 % 813 k", "P50 793 k EUR 314 EUR", "Conveyor gallery 12 234 29.948 36.591 38.626 219 182.04",
 		"All groups 48 552 103.342 127.858 135.595 766 439.82", "3 / 12 / 25 % triangular", "0.794 / 1 / 1.26 lognormal, ends are P10 and P90")
@@ -290,7 +290,7 @@ func TestFiles(t *testing.T) {
 	h := handler(t, f)
 	path := "/estimates/" + f.estimates[0].ID.String() + "/document."
 	for extension, want := range map[string]struct{ contentType, begin string }{
-		"json": {"application/json", `{"engine_version":1,`},
+		"json": {"application/json", `{"engine_version":2,`},
 		"csv":  {"text/csv; charset=utf-8", ""},
 		"xlsx": {"application/vnd.openxmlformats-officedocument.spreadsheetml.sheet", "PK"},
 	} {

@@ -2,7 +2,10 @@ package service
 
 import (
 	"context"
+	"errors"
 	"time"
+
+	"spanwright/estimate/document"
 )
 
 const (
@@ -22,7 +25,11 @@ func (s *Service) Export(ctx context.Context, work func() ([]byte, error)) ([]by
 		return nil, err
 	}
 	defer release()
-	return work()
+	data, err := work()
+	if errors.Is(err, document.ErrEarlier) {
+		return nil, &Error{Kind: Conflict, Message: document.ErrEarlier.Error(), Err: err}
+	}
+	return data, err
 }
 
 // place waits for one of the places for reading and writing large files.

@@ -152,7 +152,8 @@ func TestACSVWithItsJobTableGivesTheSameFiguresAsTheWorkbook(t *testing.T) {
 	s := newServer(t)
 	token := s.token(t, "Brackwater", auth.Estimator)
 	a := s.take(t, token, "brackwater.xlsx", mustRead(t, "brackwater.xlsx"), nil)
-	code, out, errs := runProgram(t, nil, "price", "--format", "json", "--job", testFile("brackwater-job.csv"), testFile("brackwater.csv"))
+	code, out, errs := runProgram(t, nil, "price", "--format", "json", "--job", testFile("brackwater-job.csv"),
+		"--definition", testFile("brackwater-definition.csv"), "--risks", testFile("brackwater-risks.csv"), testFile("brackwater.csv"))
 	if code != 0 {
 		t.Fatal(errs)
 	}
@@ -223,7 +224,7 @@ func TestCheckEchoesLoadsTonnesAndDefaults(t *testing.T) {
 		}
 	}
 	a.decode(t, &r)
-	if a.status != http.StatusOK || len(r.Echo.Members) != 48 {
+	if a.status != http.StatusOK || len(r.Echo.Members) != 50 {
 		t.Errorf("check over the API: %d, %d members", a.status, len(r.Echo.Members))
 	}
 	if after := s.rows(t); !maps.Equal(before, after) {

@@ -236,14 +236,22 @@ func (p *program) explain(err error) error {
 		for _, f := range faults {
 			fmt.Fprintln(p.stderr, f.Error())
 		}
-		return fmt.Errorf("%d faults in the schedule; nothing was priced", len(faults))
+		return fmt.Errorf("%s in the schedule; nothing was priced", counted(len(faults), "fault"))
 	case errors.As(err, &members):
 		for _, f := range members.Faults {
 			fmt.Fprintf(p.stderr, "member %s: %s; %s\n", f.Mark, f.Problem, f.Remedy)
 		}
-		return fmt.Errorf("%d members cannot be sized; nothing was priced", len(members.Faults))
+		return fmt.Errorf("%s cannot be estimated; nothing was priced", counted(len(members.Faults), "member"))
 	}
 	return err
+}
+
+// counted puts a number before a word, in the plural where it is not one.
+func counted(n int, word string) string {
+	if n == 1 {
+		return "1 " + word
+	}
+	return fmt.Sprintf("%d %ss", n, word)
 }
 
 func (p *program) readInput(path string) ([]byte, error) {

@@ -261,3 +261,52 @@ func TestEstimatesInTwoCurrenciesHaveNoBridge(t *testing.T) {
 		t.Errorf("got %v, want an error that names both currencies", err)
 	}
 }
+
+// From one starting book to the other every rate, norm and class changes at once: one
+// cause, and the bridge adds up. The schedule is read with the classes of each.
+func TestBetweenTheTwoStartingBooks(t *testing.T) {
+	ratio := side(t, demo(t, "brackwater", ""), ratebook.Ratio(), nil, quick)
+	s := demo(t, "brackwater", "")
+	unit := ratebook.UnitRate()
+	for i := range s.Members { // as the book's own classes would have it
+		if m := &s.Members[i]; m.Kind == "grating" && m.Defaults["connection_class"] != "" {
+			m.ConnectionClass = "platforms"
+		}
+	}
+	b := build(t, ratio, side(t, s, unit, nil, quick))
+	addsUp(t, b)
+	if got := share(t, b, bridge.Rate); got.Amount.Sign() == 0 || !strings.Contains(got.Sentence, "unit-rate") {
+		t.Errorf("the rates have %s: %s", got.Amount, got.Sentence)
+	}
+	if got := share(t, b, bridge.Allowance); got.Amount.Sign() != 0 {
+		t.Errorf("the allowances have %s of a change that came with the book", got.Amount)
+	}
+}
+
+// A sentence names what moved: price breaks, widened spreads, the money.
+func TestSentencesNameWhatMoved(t *testing.T) {
+	s := demo(t, "brackwater", "")
+	a := side(t, s, ratebook.UnitRate(), nil, quick)
+	breaks, wide := ratebook.UnitRate(), ratebook.UnitRate()
+	breaks.Rates[0].Breaks[1].Factor = breaks.Rates[0].Breaks[0].Factor
+	breaks.Rates[0].Breaks = breaks.Rates[0].Breaks[:1]
+	f := wide.Norms.LiftDays
+	f.Spread.High *= 2
+	wide.Norms.LiftDays = f
+	for name, c := range map[string]struct {
+		to    bridge.Side
+		cause bridge.Cause
+		want  string
+	}{
+		"price break": {side(t, s, breaks, nil, quick), bridge.Rate, "steel sections"},
+		"spread":      {side(t, s, wide, nil, quick), bridge.RiskPolicy, "norm/crane days per lift"},
+		"money":       {side(t, demo(t, "brackwater", "Money,outturn\nSpend date,2027-06-01\n"), ratebook.UnitRate(), nil, quick), bridge.Escalation, "outturn"},
+	} {
+		b := build(t, a, c.to)
+		addsUp(t, b)
+		zeroBut(t, b, c.cause)
+		if got := share(t, b, c.cause).Sentence; !strings.Contains(got, c.want) {
+			t.Errorf("%s: the sentence %q does not name %s", name, got, c.want)
+		}
+	}
+}

@@ -10,7 +10,9 @@ import (
 	"spanwright/estimate/document"
 	"spanwright/estimate/job"
 	"spanwright/estimate/money"
+	"spanwright/estimate/ratebook"
 	"spanwright/estimate/schedule"
+	"spanwright/estimate/spread"
 )
 
 // most is the number of differences that a sentence names.
@@ -81,15 +83,26 @@ func differences(c Cause, from, to Side) []string {
 		say("purchase", a.Settings.Purchase, b.Settings.Purchase)
 		say("stock lengths", a.Settings.StockLengths, b.Settings.StockLengths)
 		say("haul distance", a.Settings.HaulDistance, b.Settings.HaulDistance)
-		say("site conditions", a.Settings.SiteConditions, b.Settings.SiteConditions)
 		say("owner's costs", a.Settings.OwnerCosts, b.Settings.OwnerCosts)
 	case Section:
 		return sections(a, b)
-	case Rate, Multiplier, Allowance, Escalation, Exchange:
+	case Rate:
+		return prices(a, b)
+	case Multiplier:
+		say("site conditions", a.Settings.SiteConditions, b.Settings.SiteConditions)
+		return append(out, entries(c, from.Document, to.Document)...)
+	case Allowance, Exchange:
 		return entries(c, from.Document, to.Document)
+	case Escalation:
+		say("money", a.Settings.Money, b.Settings.Money)
+		say("spend date", a.Settings.SpendDate, b.Settings.SpendDate)
+		say("months of spending", a.Book.SpendMonths, b.Book.SpendMonths)
+		return append(out, indices(a.Book.Indices, b.Book.Indices)...)
 	case DesignBasis:
 		say("basis", a.Settings.DesignBasis, b.Settings.DesignBasis)
-		say("factor", a.Settings.Factor, b.Settings.Factor)
+		if a.Settings.DesignBasis == b.Settings.DesignBasis {
+			say("factor", a.Settings.Factor, b.Settings.Factor)
+		}
 		say("deflection limit", a.Settings.DeflectionLimit, b.Settings.DeflectionLimit)
 	case BaseDate:
 		say("base date", a.Settings.BaseDate, b.Settings.BaseDate)
@@ -98,6 +111,7 @@ func differences(c Cause, from, to Side) []string {
 		say("confidence", a.Settings.Confidence, b.Settings.Confidence)
 		say("estimate class", a.Settings.EstimateClass, b.Settings.EstimateClass)
 		out = append(out, risks(a.Risks, b.Risks)...)
+		out = append(out, widened(from.Document, to.Document)...)
 		for _, g := range slices.Sorted(maps.Keys(correlations(nil, a.Book.Correlation, b.Book.Correlation))) {
 			say("correlation of "+g, a.Book.Correlation[g], b.Book.Correlation[g])
 		}
@@ -190,7 +204,78 @@ func risks(a, b []schedule.Risk) []string {
 		}
 		return out
 	}
-	x, y := words(a), words(b)
+	return changes("risk ", words(a), words(b))
+}
+
+// prices names the rates of the two books that differ: their likely values, and the
+// terms on which they hold.
+func prices(a, b job.Job) []string {
+	words := func(book ratebook.Book) map[string]string {
+		out := map[string]string{}
+		for _, r := range book.PricedRates() {
+			id := strings.TrimSpace(r.ID + " " + string(r.Scope) + " " + r.Subject)
+			terms := ""
+			for _, x := range r.Breaks {
+				terms += fmt.Sprintf(", × %s from %s", x.Factor, x.From)
+			}
+			if r.MinimumOrder.Sign() > 0 {
+				terms += fmt.Sprintf(", least order %s", r.MinimumOrder)
+			}
+			if r.MinimumCharge.Sign() > 0 {
+				terms += fmt.Sprintf(", least charge %s", r.MinimumCharge)
+			}
+			out[id] = fmt.Sprintf("%g %s%s", r.Spread.Base(), r.Currency, terms)
+		}
+		return out
+	}
+	var out []string
+	if a.Book.Kind != b.Book.Kind {
+		return []string{fmt.Sprintf("rate book %s (%s) → %s (%s), with its norms, classes and allowances", a.Book.Name, a.Book.Kind, b.Book.Name, b.Book.Kind)}
+	}
+	if !a.Book.ReferencePrice.Equal(b.Book.ReferencePrice) {
+		out = append(out, fmt.Sprintf("reference price %s → %s", a.Book.ReferencePrice, b.Book.ReferencePrice))
+	}
+	return append(out, changes("rate ", words(a.Book), words(b.Book))...)
+}
+
+// indices names the indices that differ.
+func indices(a, b []ratebook.Index) []string {
+	words := func(list []ratebook.Index) map[string]string {
+		out := map[string]string{}
+		for _, x := range list {
+			if n := len(x.Values); n > 0 {
+				out[x.Name] = fmt.Sprintf("%s at %s", x.Values[n-1].Value, x.Values[n-1].Date)
+			}
+			if x.Growth != nil {
+				out[x.Name] += fmt.Sprintf(", then %.3g %% a year", 100*x.Growth.Spread.Base())
+			}
+		}
+		return out
+	}
+	return changes("index ", words(a), words(b))
+}
+
+// widened names the register entries whose likely value stands and whose spread
+// moved.
+func widened(a, b document.Document) []string {
+	old := map[string]spread.Spread{}
+	for _, e := range a.Assumptions {
+		if e.Spread != nil {
+			old[e.ID] = *e.Spread
+		}
+	}
+	out := []string{}
+	for _, e := range b.Assumptions {
+		x, ok := old[e.ID]
+		if ok && e.Spread != nil && x != *e.Spread && x.Base() == e.Spread.Base() && !strings.HasPrefix(e.ID, "risk/") && !strings.HasPrefix(e.ID, "systemic/") {
+			out = append(out, fmt.Sprintf("%s %g to %g → %g to %g", e.ID, x.Low, x.High, e.Spread.Low, e.Spread.High))
+		}
+	}
+	return out
+}
+
+// changes names what came, went or changed between two lists of words by name.
+func changes(lead string, x, y map[string]string) []string {
 	all := maps.Clone(x)
 	maps.Copy(all, y)
 	out := []string{}
@@ -199,11 +284,11 @@ func risks(a, b []schedule.Risk) []string {
 		q, inB := y[n]
 		switch {
 		case !inA:
-			out = append(out, fmt.Sprintf("risk “%s” new (%s)", n, q))
+			out = append(out, fmt.Sprintf("%s%s new (%s)", lead, n, q))
 		case !inB:
-			out = append(out, fmt.Sprintf("risk “%s” gone", n))
+			out = append(out, lead+n+" no longer in force")
 		case p != q:
-			out = append(out, fmt.Sprintf("risk “%s” %s → %s", n, p, q))
+			out = append(out, fmt.Sprintf("%s%s %s → %s", lead, n, p, q))
 		}
 	}
 	return out
@@ -211,8 +296,7 @@ func risks(a, b []schedule.Risk) []string {
 
 // leading are the first segments of the register ids of a cause.
 var leading = map[Cause][]string{
-	Rate: {"rate/", "setting/reference price"}, Multiplier: {"multiplier/"}, Allowance: {"allowance/", "norm/"},
-	Escalation: {"escalation to "}, Exchange: {"exchange/"},
+	Multiplier: {"multiplier/"}, Allowance: {"allowance/", "norm/"}, Exchange: {"exchange/"},
 }
 
 // entries names the register entries of a cause that differ.
@@ -229,21 +313,5 @@ func entries(c Cause, a, b document.Document) []string {
 		}
 		return out
 	}
-	x, y := value(a), value(b)
-	out := []string{}
-	all := maps.Clone(x)
-	maps.Copy(all, y)
-	for _, id := range slices.Sorted(maps.Keys(all)) {
-		p, inA := x[id]
-		q, inB := y[id]
-		switch {
-		case !inA:
-			out = append(out, fmt.Sprintf("%s new (%s)", id, q))
-		case !inB:
-			out = append(out, id+" no longer in force")
-		case p != q:
-			out = append(out, fmt.Sprintf("%s %s → %s", id, p, q))
-		}
-	}
-	return out
+	return changes("", value(a), value(b))
 }

@@ -108,8 +108,15 @@ func strip(v any) any {
 }
 
 // mix returns the job that takes each player from b where from says so, else from
-// a. Both jobs are left as they are.
-func mix(a, b job.Job, from func(Cause) bool) (job.Job, error) {
+// a. Both jobs are left as they are. Between books of two kinds the allowances and
+// norms are part of the rates: neither can be priced with those of the other.
+func mix(a, b job.Job, chosen func(Cause) bool) (job.Job, error) {
+	from := func(c Cause) bool {
+		if c == Allowance && a.Book.Kind != b.Book.Kind {
+			c = Rate
+		}
+		return chosen(c)
+	}
 	pick := func(c Cause) job.Job {
 		if from(c) {
 			return b
@@ -174,6 +181,9 @@ func members(a, b []schedule.Member, from func(Cause) bool) []schedule.Member {
 		if from(DesignBasis) != from(Scope) {
 			limits(m, match)
 		}
+		if from(Allowance) != from(Scope) && m.Defaults["connection_class"] != "" && match.Defaults["connection_class"] != "" {
+			m.ConnectionClass = match.ConnectionClass // by the classes of the rate book
+		}
 	}
 	return out
 }
@@ -227,18 +237,21 @@ func figure(a, b ratebook.Figure, own Cause, from func(Cause) bool) ratebook.Fig
 	return out
 }
 
-// figures joins the figures of two books by name; one in a single book goes with
-// its own cause.
+// figures joins the figures of two books by name. One that stands in a single book
+// is kept whatever the cause, because rows of that book's job may ask for it.
 func figures(a, b map[string]ratebook.Figure, own Cause, from func(Cause) bool) map[string]ratebook.Figure {
-	base, other := a, b
-	if from(own) {
-		base, other = b, a
+	if a == nil && b == nil {
+		return nil
 	}
-	out := maps.Clone(base)
-	for k := range base {
-		if _, ok := other[k]; ok {
-			out[k] = figure(a[k], b[k], own, from)
+	out := maps.Clone(b)
+	if out == nil {
+		out = map[string]ratebook.Figure{}
+	}
+	for k, x := range a {
+		if y, both := b[k]; both {
+			x = figure(x, y, own, from)
 		}
+		out[k] = x
 	}
 	return out
 }

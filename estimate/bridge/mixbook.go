@@ -18,7 +18,9 @@ func rates(out *ratebook.Book, a, b ratebook.Book, from func(Cause) bool) {
 		f := figure(*a.MaterialPrice, *b.MaterialPrice, Rate, from)
 		out.MaterialPrice = &f
 	}
-	out.Ratios = figures(a.Ratios, b.Ratios, Rate, from)
+	if out.Ratios = base.Ratios; a.Kind == b.Kind {
+		out.Ratios = figures(a.Ratios, b.Ratios, Rate, from)
+	}
 	out.Carbon, out.Bands = base.Carbon, base.Bands
 	out.Rates = slices.Clone(base.Rates)
 	for i, r := range out.Rates {
@@ -59,11 +61,14 @@ func allowances(out *ratebook.Book, base, a, b ratebook.Book, from func(Cause) b
 	n.Surface, n.LoadUse = figure(x.Surface, y.Surface, Allowance, from), figure(x.LoadUse, y.LoadUse, Allowance, from)
 	n.LiftDays, n.Crew = figure(x.LiftDays, y.LiftDays, Allowance, from), figure(x.Crew, y.Crew, Allowance, from)
 	n.WeekHours, n.HaulDistance = figure(x.WeekHours, y.WeekHours, Allowance, from), figure(x.HaulDistance, y.HaulDistance, Allowance, from)
-	n.Joints = maps.Clone(n.Joints)
-	for kind := range n.Joints {
-		p, inA := x.Joints[kind]
-		q, inB := y.Joints[kind]
-		if !inA || !inB {
+	n.Joints = maps.Clone(y.Joints)
+	if n.Joints == nil {
+		n.Joints = map[string]ratebook.JointNorm{}
+	}
+	for kind, p := range x.Joints {
+		q, both := y.Joints[kind]
+		if !both {
+			n.Joints[kind] = p
 			continue
 		}
 		n.Joints[kind] = ratebook.JointNorm{

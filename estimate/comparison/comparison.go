@@ -10,6 +10,7 @@
 package comparison
 
 import (
+	"cmp"
 	"context"
 	"fmt"
 
@@ -25,6 +26,9 @@ type Side struct {
 	Job      job.Job
 	Document document.Document
 }
+
+// name is the scheme, or where it has no name the caller's own.
+func (s Side) name() string { return cmp.Or(s.Document.Job.Scheme, s.ID) }
 
 // Probability is an estimated probability with its standard error.
 type Probability struct {
@@ -147,7 +151,7 @@ func difference(d ranges.Difference) Difference {
 func scheme(s Side, cheapest Probability) Scheme {
 	d := s.Document
 	out := Scheme{
-		ID: s.ID, Project: d.Job.Project, Scheme: d.Job.Scheme, Base: d.Totals.Base, Contingency: d.Totals.Contingency, Total: d.Totals.AtConfidence,
+		ID: s.ID, Project: d.Job.Project, Scheme: s.name(), Base: d.Totals.Base, Contingency: d.Totals.Contingency, Total: d.Totals.AtConfidence,
 		Confidence: d.Totals.Confidence, Mean: d.Range.Mean, Percentiles: d.Range.Percentiles, Categories: d.Categories, Net: d.Totals.Net, Delivered: d.Totals.Delivered,
 		Cheapest: cheapest, Unsafe: []string{}, Findings: d.Totals.Unsafe, Class: d.Class.Stated,
 	}
@@ -165,7 +169,7 @@ const decisive = 0.6
 
 func pair(a, b Side, cheaper, dearer Probability, diff Difference) Pair {
 	return Pair{First: a.ID, Second: b.ID, Cheaper: cheaper, Dearer: dearer, Difference: diff, Base: a.Document.Totals.Base.Sub(b.Document.Totals.Base),
-		Sentence: sentence(a.Document.Job.Scheme, b.Document.Job.Scheme, float64(cheaper.Value), float64(dearer.Value))}
+		Sentence: sentence(a.name(), b.name(), float64(cheaper.Value), float64(dearer.Value))}
 }
 
 // sentence says which of two is cheaper and how surely. Totals that are equal make
@@ -191,7 +195,7 @@ func notes(sides []Side) []string {
 	for _, s := range sides[1:] {
 		say := func(what, x, y string) {
 			if x != y {
-				out = append(out, fmt.Sprintf("%s and %s differ in %s: %s and %s.", first.Document.Job.Scheme, s.Document.Job.Scheme, what, x, y))
+				out = append(out, fmt.Sprintf("%s and %s differ in %s: %s and %s.", first.name(), s.name(), what, x, y))
 			}
 		}
 		say("the money of their totals", first.Document.Job.Money, s.Document.Job.Money)

@@ -5,6 +5,7 @@ import (
 	"crypto/sha256"
 	"encoding/hex"
 	"encoding/json"
+	"errors"
 	"fmt"
 	"math"
 	"strconv"
@@ -61,6 +62,9 @@ func (d Document) Canonical() ([]byte, string, error) {
 	sum := sha256.Sum256(b.Bytes())
 	return b.Bytes(), hex.EncodeToString(sum[:]), nil
 }
+
+// ErrEarlier reports a document of an engine that stated less than a workbook needs.
+var ErrEarlier = errors.New("the estimate was made by an earlier engine, which did not state all that a workbook needs; make a new estimate of the scheme")
 
 // Parse reads a document from its canonical bytes.
 func Parse(data []byte) (Document, error) {

@@ -113,7 +113,10 @@ type Sensitivity struct {
 	Assumption string `json:"assumption"`
 	Share      Number `json:"share_of_variance"`
 	Swing      Number `json:"swing" doc:"of the mean, from the assumption's P10 to its P90"`
+	SwingSE    Number `json:"swing_standard_error"`
 	Narrowing  Number `json:"narrowing" doc:"of P90 minus P10, when the assumption is known to be its median"`
+
+	NarrowingSE Number `json:"narrowing_standard_error" doc:"a narrowing within two of these is not told from 0"`
 }
 
 // RiskRange is one discrete risk in the range.

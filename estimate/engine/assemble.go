@@ -3,12 +3,14 @@ package engine
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strconv"
 	"strings"
 
 	"spanwright/estimate/document"
 	"spanwright/estimate/job"
 	"spanwright/estimate/money"
+	"spanwright/estimate/pricing"
 	"spanwright/estimate/ranges"
 	"spanwright/estimate/ratebook"
 	"spanwright/estimate/schedule"
@@ -79,10 +81,20 @@ func (r *run) head() (document.Job, error) {
 // moneyWords say in which money the totals are, and that they are net of taxes.
 func (r *run) moneyWords() string {
 	s := r.job.Settings
+	if s.Money == schedule.MoneyOutturn && !r.escalated() {
+		return "base-date money of " + s.BaseDate + ", net of taxes; outturn money was asked for, and the rate book has no index"
+	}
 	if s.Money == schedule.MoneyOutturn {
 		return "outturn money, spent about " + s.SpendDate + ", escalated from " + s.BaseDate + ", net of taxes"
 	}
 	return "base-date money of " + s.BaseDate + ", net of taxes"
+}
+
+// escalated tells whether any price was carried to the spend date.
+func (r *run) escalated() bool {
+	return slices.ContainsFunc(r.priced.Lines, func(l pricing.Line) bool {
+		return slices.ContainsFunc(l.Parts, func(p pricing.Part) bool { return p.Name == pricing.EscalationToSpend })
+	})
 }
 
 func (r *run) referencePrice() string {
@@ -157,7 +169,8 @@ func (r *run) rangeOf(t document.Totals) (document.Range, error) {
 		out.Warnings = append(out.Warnings, w.Message)
 	}
 	for _, s := range r.ranged.Sensitivities {
-		out.Sensitivities = append(out.Sensitivities, document.Sensitivity{Assumption: s.ID, Share: document.Measured(s.Share), Swing: document.Measured(s.Swing), Narrowing: document.Measured(s.Narrowing)})
+		out.Sensitivities = append(out.Sensitivities, document.Sensitivity{Assumption: s.ID, Share: document.Measured(s.Share), Swing: document.Measured(s.Swing), SwingSE: document.Measured(s.SwingSE),
+			Narrowing: document.Measured(s.Narrowing), NarrowingSE: document.Measured(s.NarrowingSE)})
 	}
 	return out, nil
 }
@@ -291,7 +304,7 @@ func quantity(q takeoff.Quantity, depends []string) document.Quantity {
 
 // groups sums the rounded items and lines, so that groups add up exactly.
 func groups(items []document.Item, lines []document.Line) []document.Group {
-	at := map[string]int{}
+	at, counted := map[string]int{}, map[string]bool{}
 	var out []document.Group
 	for _, it := range items {
 		i, ok := at[it.Group]
@@ -301,7 +314,12 @@ func groups(items []document.Item, lines []document.Line) []document.Group {
 			out = append(out, document.Group{Group: it.Group})
 		}
 		g := &out[i]
-		g.Members += len(it.Marks)
+		for _, m := range it.Marks { // a row with joints or concrete is in several items
+			if !counted[m] {
+				counted[m] = true
+				g.Members++
+			}
+		}
 		g.Pieces += it.Pieces
 		g.Length += it.Length
 		g.Surface += it.Surface

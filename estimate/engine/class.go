@@ -49,8 +49,8 @@ func classFindings(c document.Class) []document.Finding {
 		out = append(out, document.Finding{Severity: document.Doubtful, Code: "class-differs", Subject: "total", Figures: []string{"range", "contingency"},
 			Message: fmt.Sprintf("The job states estimate class %d; what is defined suggests class %d. %s", c.Stated, c.Suggested, sentence(c.Why))})
 	}
-	if len(c.Typical) == 0 {
-		return out
+	if len(c.Typical) == 0 || c.Low == 0 && c.High == 0 {
+		return out // no band, or none about a P50 at or below zero
 	}
 	narrow, wide := true, true
 	for _, t := range c.Typical {

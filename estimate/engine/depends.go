@@ -19,6 +19,8 @@ func dependsOn(it takeoff.Item, q takeoff.Quantity, byArea bool) []string {
 	case it.Treatment == takeoff.Concrete:
 		out = append(out, "concrete")
 	case q.Driver == ratebook.Pieces, q.Driver == ratebook.CraneDays, q.Driver == ratebook.PermitLoads:
+	case byArea && (q.Driver == ratebook.SquareMetres || q.Driver == ratebook.ZincKilograms):
+		out = append(out, "area")
 	case byArea && q.Driver != ratebook.Metres:
 		out = append(out, "area", "mass if not sized")
 	case it.Treatment == string(schedule.ByMass) && q.Driver != ratebook.Metres:

@@ -107,6 +107,7 @@ type run struct {
 	conversions []assumption.Entry // exchange and escalation
 	unescalated []string           // categories without an index
 	stale       []string           // exchange rates past their date, in words
+	exchanged   float64            // units of the job's currency for one of the book's
 	systemic    takeoff.Allowance
 	ranged      ranges.Result
 	carbon      pricing.CarbonPriced
@@ -225,9 +226,10 @@ func (r *run) count(ctx context.Context) error {
 // piecesOf are the rows with the section that pick gives each.
 func (r *run) piecesOf(pick func(sizedMember) *section.Section) []takeoff.Piece {
 	out := make([]takeoff.Piece, len(r.sized.members))
+	alone := r.overrides()
 	for i, s := range r.sized.members {
 		out[i] = takeoff.NewPiece(s.member, pick(s))
-		out[i].Split = r.overrides(s.member.Mark)
+		out[i].Split = alone[s.member.Mark]
 	}
 	return out
 }
@@ -270,19 +272,19 @@ func (r *run) knownClasses() error {
 	return nil
 }
 
-// overrides names the multipliers and rates that apply to this member alone; pieces
-// with some are counted by themselves.
-func (r *run) overrides(mark string) string {
-	s := ""
+// overrides names, by mark, the multipliers and rates that apply to one member
+// alone; pieces with some are counted by themselves.
+func (r *run) overrides() map[string]string {
+	out := map[string]string{}
 	for _, m := range r.job.Multipliers {
-		if m.Scope == ratebook.MemberScope && m.Subject == mark {
-			s += m.Name + "\x00"
+		if m.Scope == ratebook.MemberScope {
+			out[m.Subject] += m.Name + "\x00"
 		}
 	}
 	for _, rate := range r.job.Book.Rates {
-		if rate.Scope == ratebook.MemberScope && rate.Subject == mark {
-			s += "rate " + rate.ID + "\x00"
+		if rate.Scope == ratebook.MemberScope {
+			out[rate.Subject] += "rate " + rate.ID + "\x00"
 		}
 	}
-	return s
+	return out
 }

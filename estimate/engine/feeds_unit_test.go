@@ -82,7 +82,7 @@ func figuresOf(j *job.Job) map[string]func(func(*ratebook.Figure)) {
 		b.Growth["5"] = f
 	}
 	n := b.Norms
-	for id, f := range map[string]*ratebook.Figure{takeoff.SurfaceID: &n.Surface, takeoff.LoadUseID: &n.LoadUse, takeoff.LiftDaysID: &n.LiftDays, takeoff.CrewID: &n.Crew, takeoff.WeekHoursID: &n.WeekHours, takeoff.HaulID: &n.HaulDistance} {
+	for id, f := range map[string]*ratebook.Figure{takeoff.SurfaceID: &n.Surface, takeoff.RowSurfaceID: n.SurfaceByMass, takeoff.LoadUseID: &n.LoadUse, takeoff.LiftDaysID: &n.LiftDays, takeoff.CrewID: &n.Crew, takeoff.WeekHoursID: &n.WeekHours, takeoff.HaulID: &n.HaulDistance} {
 		one(id, f)
 	}
 	for kind := range n.Joints {

@@ -10,6 +10,7 @@ import (
 	"spanwright/estimate/assumption"
 	"spanwright/estimate/document"
 	"spanwright/estimate/money"
+	"spanwright/estimate/pricing"
 	"spanwright/estimate/ratebook"
 	"spanwright/estimate/takeoff"
 	"spanwright/structural/beam"
@@ -143,26 +144,29 @@ func uplift(s sizedMember) (document.Finding, bool) {
 // bandFindings holds each group's mass per metre and price per tonne against the
 // bands of the book, by the connection class that most of its mass has.
 func (r *run) bandFindings(groups []document.Group) []document.Finding {
-	class := r.mainClass()
+	class, hours := r.mainClass(), r.shopHours()
 	var out []document.Finding
 	for _, g := range groups {
 		for _, b := range r.job.Book.Bands {
 			if b.Class != class[g.Group] {
 				continue
 			}
-			value, unit, ok := measure(b.Measure, g, r.currency)
+			value, unit, ok := measure(b.Measure, g, hours[g.Group], r.currency)
+			if b.Measure == "price/t" {
+				b.Low, b.High = b.Low*r.exchanged, b.High*r.exchanged
+			}
 			if !ok || (b.Low <= value && value <= b.High) {
 				continue
 			}
 			out = append(out, document.Finding{Severity: document.Doubtful, Code: "outside-band", Subject: g.Group,
-				Message: fmt.Sprintf("%.4g %s lies outside the usual %.4g to %.4g for %s (%s).", value, unit, b.Low, b.High, b.Class, b.Source),
+				Message: fmt.Sprintf("%s %s lies outside the usual %s to %s for %s (%s).", four(value), unit, four(b.Low), four(b.High), b.Class, b.Source),
 				Figures: []string{"group/" + assumption.Segment(g.Group) + "/amount"}})
 		}
 	}
 	return out
 }
 
-func measure(name string, g document.Group, c money.Currency) (float64, string, bool) {
+func measure(name string, g document.Group, hours float64, c money.Currency) (float64, string, bool) {
 	switch name {
 	case "kg/m":
 		return 1000 * g.Net.Float64() / float64(g.Length), "kg/m", g.Length > 0
@@ -172,7 +176,21 @@ func measure(name string, g document.Group, c money.Currency) (float64, string, 
 		}
 		return g.Amount.Float64() / g.Delivered.Float64(), c.Code + "/t", g.Delivered.Sign() > 0
 	}
+	if name == "shop h/t" && g.Delivered.Sign() > 0 && hours > 0 {
+		return hours / g.Delivered.Float64(), "shop h/t", true
+	}
 	return math.NaN(), "", false
+}
+
+// shopHours are those of each group.
+func (r *run) shopHours() map[string]float64 {
+	out := map[string]float64{}
+	for _, it := range r.items {
+		if q, ok := it.Quantity(ratebook.ShopHours); ok {
+			out[it.Group] += q.Value.Float64()
+		}
+	}
+	return out
 }
 
 func (r *run) mainClass() map[string]string {
@@ -200,7 +218,11 @@ func (r *run) totalFindings(d document.Document) []document.Finding {
 	if d.Totals.Contingency.Sign() < 0 {
 		add(document.Doubtful, "negative-contingency", fmt.Sprintf("The contingency is negative: the base lies at P%.3g, above the chosen P%.3g.", 100*float64(d.Range.BaseAt), 100*float64(d.Totals.Confidence)), "contingency")
 	}
+	out = append(out, r.coverageFindings()...)
+	out = append(out, r.unusedFindings()...)
 	out = append(out, r.priceFindings()...)
+	out = append(out, r.dateFindings()...)
+	out = append(out, purchaseFindings(d.Cutting)...)
 	out = append(out, classFindings(d.Class)...)
 	if rho := zeroCorrelation(r.job.Book.Correlation); len(rho) > 0 {
 		add(document.Doubtful, "no-correlation", "Costs of the group "+strings.Join(rho, ", ")+" are taken as uncorrelated (ρ = 0), which narrows the range.", "range")
@@ -255,13 +277,18 @@ func (r *run) priceFindings() []document.Finding {
 		out = append(out, document.Finding{Severity: document.Doubtful, Code: "exchange-expired", Subject: "total", Message: words, Figures: []string{"base"}})
 	}
 	for _, c := range slices.Compact(slices.Clone(r.unescalated)) {
-		if _, ok := r.priced.Categories[c]; !ok {
-			continue
+		if !r.prices(c) || r.onlyFractions(c) {
+			continue // a fraction follows what it is taken of
 		}
 		out = append(out, document.Finding{Severity: document.Doubtful, Code: "not-escalated", Subject: "total", Figures: []string{"category/" + c},
-			Message: fmt.Sprintf("Prices of %s are those of %s: the rate book has no index that would bring them to %s.", c, r.job.Book.BaseDate, r.moneyWords())})
+			Message: fmt.Sprintf("Prices of %s are those of %s: the rate book has no index for them.", c, r.job.Book.BaseDate)})
 	}
 	return out
+}
+
+// onlyFractions tells whether every line of a category is a fraction of others.
+func (r *run) onlyFractions(category string) bool {
+	return !slices.ContainsFunc(r.priced.Lines, func(l pricing.Line) bool { return l.Category == category && l.Driver != ratebook.CostOf })
 }
 
 // splitWords puts the summary of the split method into a sentence.

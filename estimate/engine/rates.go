@@ -30,6 +30,10 @@ func (r *run) rates() (pricing.Rates, error) {
 	if err != nil {
 		return out, &RatesError{err}
 	}
+	r.exchanged = 1
+	if x, ok := exchanges[b.Currency]; ok {
+		r.exchanged = x.Value.Float64()
+	}
 	for _, from := range sortedKeys(exchanges) {
 		x := exchanges[from]
 		if x.ValidUntil != "" && x.ValidUntil < s.BaseDate {

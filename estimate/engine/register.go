@@ -122,7 +122,7 @@ func (r *run) rateEntries() []assumption.Entry {
 		if currency == "" {
 			currency = r.job.Book.Currency
 		}
-		what, unit := fmt.Sprintf("Rate “%s” of %s", rate.ID, rate.Category), currency+"/"+rate.Driver.Unit()
+		what, unit := fmt.Sprintf("Rate “%s” of %s", rate.ID, rate.Category), currency+"/"+perUnit(rate.Driver)
 		switch {
 		case rate.OfReference:
 			what, unit = fmt.Sprintf("Cost of %s as a multiple of the reference price, per delivered tonne", rate.Category), ""
@@ -143,6 +143,14 @@ func (r *run) rateEntries() []assumption.Entry {
 		out = append(out, e)
 	}
 	return out
+}
+
+// perUnit is the unit of a driver in a price.
+func perUnit(d ratebook.Driver) string {
+	if one, ok := map[string]string{"days": "day", "weeks": "week", "loads": "load", "pcs": "piece"}[d.Unit()]; ok {
+		return one
+	}
+	return d.Unit()
 }
 
 // addMultipliers adds those that act on at least one line.

@@ -19,7 +19,18 @@ import (
 // concurrent use.
 type Sized struct {
 	members []sizedMember
+	of      job.Job
 	key     [sha256.Size]byte
+}
+
+// same tells whether a job has the very members and settings that were sized; one
+// that was read anew is compared by its key.
+func (s *Sized) same(j job.Job) (bool, error) {
+	if n := len(j.Members); n > 0 && n == len(s.of.Members) && &j.Members[0] == &s.of.Members[0] && settingsKey(j) == settingsKey(s.of) {
+		return true, nil
+	}
+	key, err := sizingKey(j)
+	return key == s.key, err
 }
 
 // Size sizes the members of a job. It returns a *FaultsError when some cannot be
@@ -36,13 +47,18 @@ func Size(ctx context.Context, j job.Job, progress Progress) (*Sized, error) {
 	if err != nil {
 		return nil, err
 	}
-	return &Sized{members: members, key: key}, nil
+	return &Sized{members: members, of: j, key: key}, nil
+}
+
+// settingsKey are the settings that sizing reads, as text.
+func settingsKey(j job.Job) string {
+	s := j.Settings
+	return fmt.Sprintf("%q %g %q %g %g %g %q", s.DesignBasis, s.Factor, s.Grade, s.DeflectionLimit, s.FrequencyFloor, s.Restraint, j.Data)
 }
 
 // sizingKey is a hash of all that the sizing of a job reads.
 func sizingKey(j job.Job) ([sha256.Size]byte, error) {
-	s := j.Settings
-	data, err := json.Marshal([]any{j.Members, s.DesignBasis, s.Factor, s.Grade, s.DeflectionLimit, s.FrequencyFloor, s.Restraint, j.Data})
+	data, err := json.Marshal([]any{j.Members, settingsKey(j)})
 	if err != nil {
 		return [sha256.Size]byte{}, fmt.Errorf("sizing: %w", err)
 	}
@@ -56,11 +72,11 @@ func (s *Sized) start(j job.Job, progress Progress) (*run, error) {
 	if progress == nil {
 		progress = func(string, int, int) {}
 	}
-	key, err := sizingKey(j)
+	same, err := s.same(j)
 	if err != nil {
 		return nil, err
 	}
-	if key != s.key {
+	if !same {
 		return nil, ErrOtherSizing
 	}
 	currency, err := j.Money()

@@ -11,35 +11,74 @@ import (
 
 // inclusions says what the total holds.
 func (r *run) inclusions() []string {
-	sized, given, byMass := 0, 0, 0
-	for _, s := range r.sized.members {
-		switch s.member.Treatment {
-		case schedule.SizeFromFamily:
-			sized++
-		case schedule.CheckSection:
-			given++
-		default:
-			byMass++
-		}
-	}
-	out := []string{
-		fmt.Sprintf("Steelwork of %d schedule rows: %d sized from a family, %d with a given section, %d by mass.", len(r.sized.members), sized, given, byMass),
-		"Allowances for connections, bolts, growth and waste, each in the register.",
-	}
+	out := append(r.rowWords(), "Allowances for connections, bolts, growth and waste, each in the register.")
 	var cats []string
 	for _, c := range ratebook.Categories() {
-		if _, ok := r.priced.Categories[c]; ok {
+		if r.prices(c) {
 			cats = append(cats, c)
 		}
 	}
-	if e := r.job.Settings.ExecutionClass; e != "" {
-		for _, x := range ratebook.Extents(e) {
-			out = append(out, extentWords(e, x))
+	out = append(out, "Categories priced: "+strings.Join(cats, ", ")+".")
+	if r.job.Book.Kind == ratebook.KindUnitRate {
+		out = append(out, r.systemWords()...)
+	}
+	return append(out, "In the range, not in the base: the systemic factor of the estimate class and the spread of every rate, multiplier and allowance.")
+}
+
+// rowWords say what the rows of the schedule are.
+func (r *run) rowWords() []string {
+	count := map[schedule.Treatment]int{}
+	concrete, volume := 0, 0.0
+	for _, s := range r.sized.members {
+		m := s.member
+		if m.Concrete > 0 {
+			concrete, volume = concrete+1, volume+float64(m.Quantity)*m.Concrete
+		}
+		if m.Treatment != schedule.ByMass || m.LineMass+m.AreaMass > 0 {
+			count[m.Treatment]++
 		}
 	}
-	return append(out,
-		"Categories priced: "+strings.Join(cats, ", ")+".",
-		"In the range, not in the base: the systemic factor of the estimate class and the spread of every rate, multiplier and allowance.")
+	var out []string
+	if n := count[schedule.SizeFromFamily] + count[schedule.CheckSection] + count[schedule.ByMass]; n > 0 {
+		out = append(out, fmt.Sprintf("Steelwork of %s: %d sized from a family, %d with a given section, %d by mass.",
+			counted(n, "schedule row"), count[schedule.SizeFromFamily], count[schedule.CheckSection], count[schedule.ByMass]))
+	}
+	if concrete > 0 && r.prices(ratebook.Foundations) {
+		out = append(out, fmt.Sprintf("Concrete of %s: %s m³.", counted(concrete, "schedule row"), four(volume)))
+	}
+	return out
+}
+
+// counted puts a number before a word, in the plural where it is not one.
+func counted(n int, word string) string {
+	if n == 1 {
+		return "1 " + word
+	}
+	return fmt.Sprintf("%d %ss", n, word)
+}
+
+// systemWords are the coating systems that are priced, and the extents of inspection
+// of the execution classes.
+func (r *run) systemWords() []string {
+	var out, coatings []string
+	for _, it := range r.items {
+		if needsCoat(it) {
+			coatings = append(coatings, it.Coating)
+		}
+	}
+	slices.Sort(coatings)
+	if coatings = slices.Compact(coatings); len(coatings) > 0 && r.prices(ratebook.Coating) {
+		out = append(out, "Coating systems: "+strings.Join(coatings, ", ")+".")
+	}
+	if !r.prices(ratebook.Inspection) {
+		return out
+	}
+	for _, class := range r.facts.Executions {
+		for _, x := range ratebook.Extents(class) {
+			out = append(out, extentWords(class, x))
+		}
+	}
+	return out
 }
 
 // extentWords is the extent of inspection of one type of weld.
@@ -100,8 +139,10 @@ func (r *run) notPriced() []string {
 			out = append(out, fmt.Sprintf("%s, “%s”: %s.", strings.ToUpper(n.Category[:1])+n.Category[1:], strings.TrimPrefix(n.Subject, "rate/"), n.Message))
 		}
 	}
-	if r.job.Settings.Money != schedule.MoneyOutturn {
+	if r.job.Settings.Money != schedule.MoneyOutturn || !r.escalated() {
 		out = append(out, "Escalation after the base date.")
+	} else if len(r.job.Risks) > 0 {
+		out = append(out, "Escalation of discrete risks: their amounts are taken as stated, in the money of the estimate.")
 	}
 	return append(out, "Exchange risk beyond the spread of dated rates.")
 }

@@ -2,6 +2,7 @@ package pricing
 
 import (
 	"errors"
+	"fmt"
 	"math"
 	"strings"
 	"testing"
@@ -99,18 +100,50 @@ func TestPriceRefuses(t *testing.T) {
 
 // A take-off made with norms may lack a driver for a good reason: no error.
 func TestAnAbsentQuantityIsNoFault(t *testing.T) {
-	r := euros(t, rate("labour", ratebook.Fabrication, ratebook.ShopHours, 60))
+	r := euros(t, rate("labour", ratebook.Fabrication, ratebook.ShopHours, 60), rate("survey", ratebook.Engineering, ratebook.Lump, 900))
 	for name, it := range map[string]takeoff.Item{
 		"site hours alone": item(t, "A", tonnes, "2.000", string(ratebook.SiteHours), "12.0"),
 		"concrete alone":   item(t, "A", cubic, "2.00"),
 	} {
 		p := price(t, []takeoff.Item{it}, r)
-		if len(p.Lines) != 0 || len(codes(p.Notes)) != 1 || codes(p.Notes)[0] != "no-quantity rate/labour" {
+		if len(p.Lines) != 1 || len(codes(p.Notes)) != 1 || codes(p.Notes)[0] != "no-quantity rate/labour" {
 			t.Errorf("%s: got %v, %v", name, amounts(p.Lines), codes(p.Notes))
 		}
 	}
-	if p := price(t, nil, r); len(p.Lines) != 0 || !p.Base.IsZero() || len(p.Model.Terms) != 0 {
-		t.Errorf("a job of nothing costs %s", p.Base)
+	if p := price(t, nil, r); len(p.Lines) != 1 || p.Base.String() != "900.00" {
+		t.Errorf("a job of a survey alone costs %s", p.Base)
+	}
+}
+
+// A job of which nothing is priced says so: the items, the book, and why.
+func TestAJobWithoutALineIsRefused(t *testing.T) {
+	labour := rate("labour", ratebook.Fabrication, ratebook.ShopHours, 60)
+	load := rate("load test", ratebook.Engineering, ratebook.Lump, 900)
+	load.Trigger.Kinds = []string{"boom"}
+	var many []takeoff.Item
+	for i := range 8 {
+		many = append(many, item(t, fmt.Sprintf("I%d", i), cubic, "2.00"))
+	}
+	for name, c := range map[string]struct {
+		items []takeoff.Item
+		rates Rates
+		want  []string
+	}{
+		"no item":     {nil, euros(t, labour), []string{"no line", "no items", "book in EUR", "rate/labour: no item that it is for has shop hours", "accepted"}},
+		"no quantity": {many, euros(t, labour, load), []string{`"I0", "I1"`, "3 more", "rate/labour", "rate/load test: nothing in the job asks for it"}},
+		"zeros":       {[]takeoff.Item{item(t, "A", hours, "0")}, euros(t, labour), []string{`the items "A"`, "above zero"}},
+		"no rate":     {many[:1], euros(t), []string{"no rate for material"}},
+	} {
+		_, err := Price(c.items, c.rates)
+		if err == nil {
+			t.Errorf("%s: no error", name)
+			continue
+		}
+		for _, w := range c.want {
+			if !strings.Contains(err.Error(), w) {
+				t.Errorf("%s: the error does not say %q: %v", name, w, err)
+			}
+		}
 	}
 }
 

@@ -28,7 +28,7 @@ func PriceCarbon(items []takeoff.Item, factors []ratebook.CarbonFactor) (CarbonP
 		rates[i] = ratebook.Rate{ID: f.ID, Category: f.Module, Driver: f.Driver, Figure: f.Figure, Select: f.Select}
 		modules[f.Module] = true
 	}
-	p := newPricer(items, rates, nil, sortedKeys(modules))
+	p := newPricer(items, rates, nil, sortedKeys(modules), ratebook.Place{})
 	p.line = "carbon/"
 	p.entry = func(r ratebook.Rate) string { return CarbonID(ratebook.CarbonFactor{ID: r.ID}) }
 	p.places, p.minor = ratePlaces, 0

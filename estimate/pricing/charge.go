@@ -32,6 +32,7 @@ type draft struct {
 	terms    []term // that make the quantity
 	entries  int32  // that the quantity depends on
 	of       []string
+	end      string // of the line's id
 	note     string
 }
 
@@ -182,8 +183,8 @@ func (p *pricer) costOf(categories []string, place int) (draft, bool) {
 	return d, true
 }
 
-// settle makes the lines of a charge: the minimum order, the price break, the
-// lines, the minimum charge.
+// settle makes the lines of a charge: what a minimum order lacks, the price break,
+// the lines, what a minimum charge lacks.
 func (p *pricer) settle(c *charge, s *shelf) error {
 	if c.failed {
 		return nil
@@ -195,7 +196,6 @@ func (p *pricer) settle(c *charge, s *shelf) error {
 	made := make([]Line, len(c.drafts))
 	details := slices.Grow(p.details[:0], len(c.drafts))[:len(c.drafts)]
 	p.details = details
-	sum := money.Zero
 	broken := map[int]string{}
 	for i := range c.drafts {
 		d := &c.drafts[i]
@@ -211,16 +211,11 @@ func (p *pricer) settle(c *charge, s *shelf) error {
 		}
 		details[i] = detail{p.costTerms(d.terms, price), p.compiler.sets.join(d.entries, price.entries)}
 		made[i].Assumptions = p.compiler.dependsOn(details[i].entries)
-		sum = sum.Add(made[i].Amount)
 	}
 	p.noteExpired(c)
-	raised, err := p.minimumCharge(c, sum, details)
+	made, details, err := p.addMinimumCharge(c, made, details)
 	if err != nil {
 		return err
-	}
-	if raised != nil {
-		made, details = []Line{raised.Line}, []detail{raised.detail}
-		c.drafts = []draft{{place: len(p.items)}}
 	}
 	p.emit(c, s, made, details)
 	return nil
@@ -273,7 +268,7 @@ func (p *pricer) makeLine(c *charge, d *draft, price *unitPrice) (Line, error) {
 		l.Item, l.Group = it.ID, it.Group
 	}
 	if l.Item == "" {
-		l.ID = p.line + WholeStructure + "/" + c.segment
+		l.ID = p.line + WholeStructure + "/" + c.segment + d.end
 	} else {
 		l.ID = p.line + l.Item + "/" + c.segment
 	}

@@ -3,6 +3,7 @@ package pricing
 import (
 	"fmt"
 	"slices"
+	"strings"
 
 	"spanwright/estimate/money"
 	"spanwright/estimate/ratebook"
@@ -83,6 +84,40 @@ func (p *pricer) checkLacking(c *charge) error {
 		}
 	}
 	return fmt.Errorf("%s: found the driver %s, which the take-off lacks; accepted: norms in the rate book that make it, or one of the drivers %q", c.entry, c.driver, known)
+}
+
+// mostNamed is how many items, and how many reasons, an error lists.
+const mostNamed = 5
+
+// nothing is the error of a job of which no line is made.
+func (p *pricer) nothing() error {
+	ids := make([]string, len(p.items))
+	for i := range p.items {
+		ids[i] = fmt.Sprintf("%q", p.items[i].ID)
+	}
+	var reasons []string
+	for _, n := range p.sortedNotes() {
+		if n.Subject != "" {
+			reasons = append(reasons, n.Subject+": "+n.Message)
+		}
+	}
+	if len(reasons) == 0 {
+		reasons = []string{"the book has no rate for " + listed(p.categories)}
+	}
+	found := "no items"
+	if len(ids) > 0 {
+		found = "the items " + listed(ids)
+	}
+	return fmt.Errorf("pricing: no line was made, so that there is nothing to price: found %s, and of the rate book in %s %s; accepted: an item with a quantity above zero that a rate of the book is for, or a lump that applies",
+		found, p.book, listed(reasons))
+}
+
+// listed joins the first texts and counts the rest.
+func listed(texts []string) string {
+	if len(texts) <= mostNamed {
+		return strings.Join(texts, ", ")
+	}
+	return fmt.Sprintf("%s and %d more", strings.Join(texts[:mostNamed], ", "), len(texts)-mostNamed)
 }
 
 // triggered reports whether a lump applies to the job.

@@ -53,7 +53,7 @@ func newCompiler() *compiler {
 }
 
 // factor returns the number of a factor. An input that is stated twice with
-// different spreads or groups is an error.
+// different spreads, groups or streams is an error.
 func (c *compiler) factor(in Input, offset float64) (int32, error) {
 	key := named{in.ID, offset}
 	n, ok := c.numbers[key]
@@ -61,7 +61,7 @@ func (c *compiler) factor(in Input, offset float64) (int32, error) {
 		return n, nil
 	}
 	if known, ok := c.inputs[in.ID]; ok && known != in {
-		return 0, fmt.Errorf("assumption %q is stated twice with different spreads or groups; accepted: one, or two names", in.ID)
+		return 0, fmt.Errorf("assumption %q is stated twice with different spreads, groups or streams; accepted: one, or two names", in.ID)
 	}
 	if err := in.Spread.Validate(); err != nil {
 		return 0, fmt.Errorf("assumption %q: %w", in.ID, err)

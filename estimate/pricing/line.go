@@ -8,7 +8,7 @@ import (
 )
 
 // WholeStructure is the group of lines that belong to no group of members: lumps,
-// minimum charges, and percentages upon them.
+// what minimum orders and charges lack, and percentages upon them.
 const WholeStructure = "whole structure"
 
 // Applied is one multiplier on a line, with the scope that won.
@@ -24,7 +24,7 @@ type Applied struct {
 // multiple of the reference price, a fraction of other lines, a price break, an
 // exchange rate, an escalation.
 type Part struct {
-	Name       string // price, reference price, ratio, fraction, minimum charge, price break, exchange, escalation to base date, escalation to spend date
+	Name       string // price, reference price, ratio, fraction, MinimumShortfall, price break, exchange, escalation to base date, escalation to spend date
 	Value      money.Decimal
 	Assumption string // id of its register entry; empty for a definition such as the reference price
 }
@@ -36,10 +36,15 @@ type Part struct {
 //
 // both half away from zero. UnitPlaces is two more than the currency's minor unit
 // has, six for a percentage and four for carbon. The quantity of a percentage is
-// the sum of the rounded lines in Of. Lines share Parts, Multipliers and
+// the sum of the rounded lines in Of.
+//
+// A line that ends in /minimum order or /minimum charge is what the lines of its rate
+// lack to a minimum: a quantity at the rate of the whole structure, or an amount. The
+// total of a rate of equal multipliers does not move within its minimum, although
+// each of the lines does. Lines share Parts, Multipliers and
 // Assumptions: they are read, never changed.
 type Line struct {
-	ID          string // line/{item}/{rate}, line/whole structure/{rate}
+	ID          string // line/{item}/{rate}, line/whole structure/{rate}, and line/whole structure/{rate}/minimum order or /minimum charge
 	Item        string // empty for the whole structure
 	Group       string
 	Category    string
@@ -90,7 +95,15 @@ type Rates struct {
 	BaseDate    string                  // of the job: prices that ended before it are noted
 	Facts       Facts
 	Risks       []DiscreteRisk
+
+	// Whole is the place of the lines of the whole structure and of percentages upon
+	// them: the job's coating and execution class. Its other fields are not looked at.
+	Whole ratebook.Place
 }
+
+// MinimumShortfall is the name of the price of what the lines of a rate lack to its
+// minimum charge.
+const MinimumShortfall = "minimum charge less the lines"
 
 // The names of conversions.
 const (
@@ -107,6 +120,7 @@ type Conversion struct {
 	Value  money.Decimal // at most 6 places
 	Spread spread.Spread // its likely value is Value
 	Group  string        // correlation group; empty for an independent one
+	Stream string        // key of the random numbers, as Input.Stream
 }
 
 // Facts are what the triggers of lumps ask of a job.

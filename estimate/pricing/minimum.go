@@ -24,8 +24,15 @@ func (p *pricer) noteNothing(c *charge) error {
 	return nil
 }
 
-// minimumOrder replaces the drafts by one for the least quantity that can be
-// bought, where the job needs less.
+// Ends of the ids of the lines that make up a minimum.
+const (
+	orderShortfall  = "/minimum order"
+	chargeShortfall = "/minimum charge"
+)
+
+// minimumOrder adds a draft of the whole structure for what the job needs less than
+// the least quantity that can be bought. The drafts of the items stay as they are,
+// with the multipliers of their own places.
 func (p *pricer) minimumOrder(c *charge) {
 	least := p.rates[c.lead].MinimumOrder
 	if c.total.Cmp(least) >= 0 {
@@ -33,13 +40,14 @@ func (p *pricer) minimumOrder(c *charge) {
 	}
 	text := fmt.Sprintf("minimum order: %s %s, of which the job needs %s", least, c.unit, c.total)
 	p.note("minimum-order", c.category, c.entry, text)
+	short := draft{place: len(p.items), rate: c.lead, quantity: least.Sub(c.total), end: orderShortfall, note: text}
 	var terms []term
 	for _, d := range c.drafts {
 		terms = append(terms, d.terms...)
+		short.entries = p.compiler.sets.join(short.entries, d.entries)
 	}
-	common := p.compiler.common(terms)
-	t := term{monomial: common, coefficient: p.compiler.firstOrder(terms, common), least: least.Float64()}
-	c.drafts = []draft{{place: len(p.items), rate: c.lead, quantity: least, terms: []term{t}, note: text}}
+	short.terms = p.compiler.shortfall(terms, short.quantity.Float64(), nil)
+	c.drafts = append(c.drafts, short)
 	c.total = least
 }
 
@@ -80,60 +88,71 @@ func (p *pricer) noteExpired(c *charge) {
 	}
 }
 
-// raised is the line of a minimum charge.
-type raised struct {
-	Line
-	detail
-}
-
-// minimumCharge returns the line that replaces those of a charge whose sum is
-// below its minimum, nil where it is not.
-//
-// In the model the line is the greater of the minimum and of what the lines cost,
-// as a product of the factors that all of them have, the others held at base: so
-// that in a trial it can exceed the minimum. The conversions act on both.
-func (p *pricer) minimumCharge(c *charge, sum money.Decimal, details []detail) (*raised, error) {
+// addMinimumCharge adds to the lines of a charge, whose sum is below its minimum, a
+// line of the whole structure for the rest; the lines themselves stay as they are.
+// It depends on all that the lines depend on: where they rise, it falls.
+func (p *pricer) addMinimumCharge(c *charge, lines []Line, details []detail) ([]Line, []detail, error) {
 	r := p.rates[c.lead]
 	if r.MinimumCharge.IsZero() {
-		return nil, nil
+		return lines, details, nil
 	}
-	b := &builder{compiler: p.compiler, unitPrice: unitPrice{constant: 1, rate: one}}
-	if err := p.addConversions(b, r); err != nil {
-		return nil, err
-	}
-	conversions, entered := b.inputs, b.constant
-	b.parts = slices.Insert(b.parts, 0, Part{Name: "minimum charge", Value: r.MinimumCharge, Assumption: p.entry(r)})
-	b.names = slices.Insert(b.names, 0, "minimum charge")
-	b.rate = b.rate.Mul(r.MinimumCharge)
-	b.entered = append(b.entered, p.compiler.entries.of(p.entry(r)))
-	b.unitPrice.entry = p.entry(r)
-	made, err := b.finish(p.places)
+	least, conversions, entries, err := p.leastAmount(r)
 	if err != nil {
-		return nil, fmt.Errorf("minimum charge of %s: %w", p.entry(r), err)
+		return nil, nil, fmt.Errorf("minimum charge of %s: %w", p.entry(r), err)
 	}
-	if sum.Cmp(made.unit.Round(p.minor)) >= 0 {
-		return nil, nil
+	sum := money.Zero
+	var terms []term
+	for i := range lines {
+		sum = sum.Add(lines[i].Amount)
+		terms = append(terms, details[i].terms...)
+		entries = p.compiler.sets.join(entries, details[i].entries)
 	}
-	text := fmt.Sprintf("minimum charge: the lines would be %s %s", sum, p.currency)
+	if sum.Cmp(least) >= 0 {
+		return lines, details, nil
+	}
+	short := least.Sub(sum)
+	text := fmt.Sprintf("minimum charge: %s %s, of which the lines make %s", least, p.currency, sum)
 	p.note("minimum-charge", c.category, p.entry(r), text)
-	d := draft{place: len(p.items), rate: c.lead, quantity: one, note: text}
-	line, err := p.makeLine(c, &d, made)
+	d := draft{place: len(p.items), rate: c.lead, quantity: one, end: chargeShortfall, note: text}
+	line, err := p.makeLine(c, &d, &unitPrice{
+		entry: p.entry(r), formula: MinimumShortfall, rate: short, unit: short,
+		parts: []Part{{Name: MinimumShortfall, Value: short, Assumption: p.entry(r)}},
+	})
 	if err != nil {
-		return nil, err
+		return nil, nil, err
 	}
 	line.Driver, line.Unit = ratebook.Lump, ratebook.Lump.Unit()
-	line.Assumptions = p.compiler.dependsOn(made.entries)
-	t := p.compiler.atLeast(details, r.MinimumCharge.Float64()*entered, conversions)
-	return &raised{line, detail{[]term{t}, made.entries}}, nil
+	line.Assumptions = p.compiler.dependsOn(entries)
+	c.drafts = append(c.drafts, d)
+	return append(lines, line), append(details, detail{p.compiler.shortfall(terms, short.Float64(), conversions), entries}), nil
 }
 
-// atLeast returns the term max(first-order product of the details, least) · Π
-// conversions.
-func (c *compiler) atLeast(details []detail, least float64, conversions []int32) term {
-	var terms []term
-	for _, d := range details {
-		terms = append(terms, d.terms...)
+// leastAmount returns a minimum charge in the money of the job, rounded to its minor
+// unit, the conversions that bring it there, and what it depends on.
+func (p *pricer) leastAmount(r ratebook.Rate) (least money.Decimal, conversions []int32, entries int32, err error) {
+	b := &builder{compiler: p.compiler, unitPrice: unitPrice{constant: 1, rate: one}}
+	b.part(Part{Name: "minimum charge", Value: r.MinimumCharge, Assumption: p.entry(r)})
+	if err := p.addConversions(b, r); err != nil {
+		return money.Zero, nil, 0, err
 	}
+	made, err := b.finish(p.places)
+	if err != nil {
+		return money.Zero, nil, 0, err
+	}
+	return made.unit.Round(p.minor), b.inputs, made.entries, nil
+}
+
+// shortfall returns terms which at base values are short, what is lacking to a
+// minimum that is brought into the money of the job by conversions:
+//
+//	max(c · Π common, least) · Π conversions − c · Π common · Π conversions
+//
+// The product stands for the sum of the given terms: of their factors it has those
+// that all of them have, the others held at base. So the shortfall falls to zero as
+// the common factors rise, is never negative, and is exact where the terms differ in
+// no factor; what else moves the terms moves the total by as much, also within the
+// minimum. The conversions act on both.
+func (c *compiler) shortfall(terms []term, short float64, conversions []int32) []term {
 	common := c.common(terms)
 	coefficient := c.firstOrder(terms, common)
 	factors := slices.Clone(c.monomials.lists[common])
@@ -144,7 +163,12 @@ func (c *compiler) atLeast(details []detail, least float64, conversions []int32)
 			coefficient /= c.values[n]
 		}
 	}
-	return term{monomial: c.monomials.of(factors...), after: c.monomials.of(conversions...), coefficient: coefficient, least: least}
+	within, after := c.monomials.of(factors...), c.monomials.of(conversions...)
+	least := coefficient*c.valueOf(within) + short/c.valueOf(after)
+	return []term{
+		{monomial: within, after: after, coefficient: coefficient, least: least},
+		{monomial: c.monomials.join(within, after), coefficient: -coefficient},
+	}
 }
 
 // shared returns the factors by which a term as a whole is multiplied.

@@ -18,9 +18,14 @@ type Model struct {
 
 // Input is one assumption that the total depends on.
 type Input struct {
-	ID     string        // the assumption's id; keys its random stream
+	ID     string        // the assumption's id
 	Spread spread.Spread // what is believed about it
 	Group  string        // correlation group; empty for an independent one
+
+	// Stream keys the random numbers; empty is the ID. Inputs of one stream are one
+	// belief, such as the growth of an index over several times: in a trial all have
+	// the same percentile. They are of one group.
+	Stream string
 }
 
 // Factor is Offset + x, where x is the value of Inputs[Input]. An allowance a
@@ -30,8 +35,9 @@ type Factor struct {
 	Offset float64
 }
 
-// Term is one merged product. Least is a minimum charge: where it is above zero
-// the product does not fall below it. After are factors upon the greater of the
+// Term is one merged product. Where Least is above zero the product does not fall
+// below it: with a term that takes the same product off it is what is lacking to a
+// minimum. After are factors upon the greater of the
 // two, such as a percentage taken of the line; without a Least they are empty and
 // stand among Factors.
 type Term struct {

@@ -62,7 +62,7 @@ func randomJob(t *testing.T, r *rand.Rand, n int) ([]takeoff.Item, Rates) {
 			one.MinimumCharge = decimal(t, text(0, 20000))
 		}
 		if one.Driver != ratebook.Lump && r.IntN(4) == 0 {
-			one.MinimumOrder = decimal(t, text(0, 2000))
+			one.MinimumOrder = decimal(t, text(0, 900))
 		}
 		if one.Driver != ratebook.Lump && r.IntN(3) == 0 {
 			one.Select.Coatings = []string{pick("", "C3", "C5")}

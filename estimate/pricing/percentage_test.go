@@ -49,8 +49,8 @@ func TestPercentages(t *testing.T) {
 	}
 }
 
-// A percentage selects items as any rate does; the whole structure is of no
-// execution class, so a percentage for a class leaves its lines out.
+// A percentage selects items as any rate does; the whole structure of a
+// job without an execution class is of none, so a percentage for a class leaves its lines out.
 func TestAPercentageWithASelection(t *testing.T) {
 	exc3 := rate("exc3", ratebook.Inspection, ratebook.CostOf, 0.1, ratebook.Fabrication)
 	exc3.Select = ratebook.Selection{Executions: []string{"EXC3"}}
@@ -66,13 +66,52 @@ func TestAPercentageWithASelection(t *testing.T) {
 	}
 }
 
-// A percentage may have a minimum charge: 10 % of 500 + 300 is below 200.
+// In a job of EXC3 the lumps are inspected as EXC3, and by the same law coated as the
+// job is; in one that states no class by the rate for the blank one.
+func TestTheWholeStructureIsOfTheJobsClass(t *testing.T) {
+	percentage := func(id string, v float64, executions ...string) ratebook.Rate {
+		r := rate(id, ratebook.Inspection, ratebook.CostOf, v, ratebook.Fabrication)
+		r.Select.Executions = executions
+		return r
+	}
+	paint := rate("paint", ratebook.Coating, ratebook.CostOf, 0.5, ratebook.Fabrication)
+	paint.Select.Coatings = []string{"C5 high"}
+	r := euros(t, percentage("exc2", 0.04, "", "EXC2"), percentage("exc3", 0.07, "EXC3"), paint, rate("jig", ratebook.Fabrication, ratebook.Lump, 900))
+	jig := "line/whole structure/jig: 1 × 900.0000 = 900.00"
+	for _, c := range []struct {
+		whole ratebook.Place
+		want  []string
+	}{
+		{ratebook.Place{}, []string{jig, "line/whole structure/exc2: 900.00 × 0.040000 = 36.00"}},
+		{ratebook.Place{Execution: "EXC2"}, []string{jig, "line/whole structure/exc2: 900.00 × 0.040000 = 36.00"}},
+		{ratebook.Place{Execution: "EXC3"}, []string{jig, "line/whole structure/exc3: 900.00 × 0.070000 = 63.00"}},
+		{ratebook.Place{Execution: "EXC3", Coating: "C5 high"}, []string{jig, "line/whole structure/paint: 900.00 × 0.500000 = 450.00", "line/whole structure/exc3: 900.00 × 0.070000 = 63.00"}},
+	} {
+		r.Whole = c.whole
+		if diff := cmp.Diff(c.want, amounts(price(t, nil, r).Lines)); diff != "" {
+			t.Errorf("%+v: %s", c.whole, diff)
+		}
+	}
+	// Only these two fields count: a rate of a group is not that of the whole.
+	tower := percentage("exc3", 0.9, "EXC3")
+	tower.Scope, tower.Subject = ratebook.GroupScope, "Tower"
+	r.Rates, r.Whole = append(r.Rates, tower), ratebook.Place{Execution: "EXC3", Group: "Tower"}
+	if diff := cmp.Diff([]string{jig, "line/whole structure/exc3: 900.00 × 0.070000 = 63.00"}, amounts(price(t, nil, r).Lines)); diff != "" {
+		t.Error(diff)
+	}
+}
+
+// A percentage may have a minimum charge: 10 % of 500 + 300 is below 200, by 120.
 func TestAPercentageWithAMinimumCharge(t *testing.T) {
 	fee := rate("fee", ratebook.Inspection, ratebook.CostOf, 0.1, ratebook.Fabrication)
 	fee.MinimumCharge = decimal(t, "200")
 	r := euros(t, fee, rate("labour", ratebook.Fabrication, ratebook.ShopHours, 50))
 	p := price(t, []takeoff.Item{item(t, "A", hours, "10"), item(t, "B", hours, "6")}, r)
-	if diff := cmp.Diff("line/whole structure/fee: 1 × 200.0000 = 200.00", amounts(p.Lines)[2]); diff != "" {
+	want := []string{
+		"line/A/labour: 10 × 50.0000 = 500.00", "line/A/fee: 500.00 × 0.100000 = 50.00", "line/B/labour: 6 × 50.0000 = 300.00",
+		"line/B/fee: 300.00 × 0.100000 = 30.00", "line/whole structure/fee/minimum charge: 1 × 120.00 = 120.00",
+	}
+	if diff := cmp.Diff(want, amounts(p.Lines)); diff != "" {
 		t.Error(diff)
 	}
 	for fraction, want := range map[float64]float64{0.1: 1000, 0.2: 1000, 0.5: 1200} {
@@ -99,6 +138,7 @@ func TestACycleNamesItself(t *testing.T) {
 	if err == nil || !strings.Contains(err.Error(), "inspection → margin → inspection") {
 		t.Errorf("got %v, want an error that names inspection → margin → inspection", err)
 	}
+	r.Rates = append(r.Rates, rate("labour", ratebook.Fabrication, ratebook.ShopHours, 50))
 	r.Categories = []string{ratebook.Fabrication, ratebook.Inspection} // without margin there is no circle
 	if _, err := Price([]takeoff.Item{item(t, "A", hours, "10")}, r); err != nil {
 		t.Errorf("without margin: %v", err)

@@ -82,7 +82,7 @@ func (p *pricer) addRate(b *builder, r ratebook.Rate, factor *money.Decimal) err
 	if err != nil {
 		return fmt.Errorf("%s: %w", p.entry(r), err)
 	}
-	if err := b.input(Part{Name: name, Value: value, Assumption: p.entry(r)}, r.Spread, r.Figure.Group); err != nil {
+	if err := b.input(Part{Name: name, Value: value, Assumption: p.entry(r)}, r.Spread, r.Figure.Group, ""); err != nil {
 		return err
 	}
 	if factor != nil {
@@ -102,7 +102,7 @@ func (p *pricer) addConversions(b *builder, r ratebook.Rate) error {
 		return err
 	}
 	for _, c := range conversions {
-		if err := b.input(Part{Name: c.Name, Value: c.Value, Assumption: c.ID}, c.Spread, c.Group); err != nil {
+		if err := b.input(Part{Name: c.Name, Value: c.Value, Assumption: c.ID}, c.Spread, c.Group, c.Stream); err != nil {
 			return err
 		}
 	}
@@ -148,17 +148,17 @@ func (b *builder) part(part Part) {
 }
 
 // input adds a factor that is an input of the model.
-func (b *builder) input(part Part, s spread.Spread, group string) error {
+func (b *builder) input(part Part, s spread.Spread, group, stream string) error {
 	before := b.constant
 	b.part(part)
 	b.constant = before
-	return b.factor(part.Assumption, part.Value, s, group)
+	return b.factor(Input{ID: part.Assumption, Spread: s, Group: group, Stream: stream}, part.Value)
 }
 
 // factor enters an input; the constant takes up what its base value as a float
 // lacks of its decimal.
-func (b *builder) factor(id string, value money.Decimal, s spread.Spread, group string) error {
-	n, err := b.compiler.factor(Input{ID: id, Spread: s, Group: group}, 0)
+func (b *builder) factor(in Input, value money.Decimal) error {
+	n, err := b.compiler.factor(in, 0)
 	if err != nil {
 		return err
 	}
@@ -181,7 +181,7 @@ func (b *builder) multiply(m ratebook.Multiplier) error {
 	}
 	b.multipliers = append(b.multipliers, Applied{Name: m.Name, Scope: m.Scope, Subject: m.Subject, Value: v, Assumption: id})
 	b.entered = append(b.entered, b.compiler.entries.of(id))
-	return b.factor(id, v, m.Spread, m.Group)
+	return b.factor(Input{ID: id, Spread: m.Spread, Group: m.Group}, v)
 }
 
 // finish rounds the price.

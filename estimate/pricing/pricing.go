@@ -3,7 +3,7 @@
 //
 //	take-off items × rates resolved at each item's place → Line = quantity ×
 //	    unit price, exact decimals, each line rounded to the minor unit
-//	lines of one rate → price break, minimum order, minimum charge
+//	lines of one rate → price break, what a minimum order or charge lacks
 //	lines of a category → percentages upon them, in the order of dependence
 //	lines → categories → base, sums that are exact
 //	the same lines → Model, a sum of products over assumptions
@@ -53,18 +53,24 @@ func scoped(s ratebook.Scope, subject string) string {
 // rates. Whatever is wrong with rates, conversions and products is reported at
 // once, each fault with the rate or line that it concerns.
 //
-// The whole structure is a place of its own: its lines are lumps, minimum orders
-// and charges, and percentages upon those. It is in no group and of no coating or
-// execution class, so that only rates without a selection, or with one that names
-// the blank value, and multipliers of the scheme, the project or the book act
+// The whole structure is a place of its own: its lines are lumps, what minimum
+// orders and charges lack, and percentages upon those. It is in no group and of the
+// coating and execution class of r.Whole, so that rates without a selection, or with
+// one that names those, and multipliers of the scheme, the project or the book act
 // there. Any other percentage leaves the lines of the whole structure out of its
 // base.
+//
+// A minimum never makes the base fall: the lines of the items keep their rates and
+// multipliers, and what they lack is a line beside them. Only a price break that the
+// minimum order reaches can make it cheaper.
+//
+// A job of which no line is made is an error that names the items and says why.
 //
 // Price breaks and minimum orders go by the quantity of a rate id over the whole
 // job at likely values: a trial of the range crosses no break, and a minimum that
 // does not bind at likely values binds in no trial.
 func Price(items []takeoff.Item, r Rates) (Priced, error) {
-	p := newPricer(items, r.Rates, r.Multipliers, r.Categories)
+	p := newPricer(items, r.Rates, r.Multipliers, r.Categories, ratebook.Place{Coating: r.Whole.Coating, Execution: r.Whole.Execution})
 	p.line, p.entry = "line/", RateID
 	p.places, p.minor = r.Currency.MinorDigits+extraPlaces, r.Currency.MinorDigits
 	p.currency, p.book, p.reference = r.Currency.Code, r.Book, r.Reference
@@ -76,6 +82,9 @@ func Price(items []takeoff.Item, r Rates) (Priced, error) {
 	}
 	if err := p.run(order); err != nil {
 		return Priced{}, err
+	}
+	if p.count == 0 {
+		return Priced{}, p.nothing()
 	}
 	model, err := p.compiler.model(r.Systemic, r.Risks)
 	if err != nil {
@@ -123,7 +132,7 @@ type pricer struct {
 	drafts  [][]draft
 }
 
-func newPricer(items []takeoff.Item, rates []ratebook.Rate, multipliers []ratebook.Multiplier, categories []string) *pricer {
+func newPricer(items []takeoff.Item, rates []ratebook.Rate, multipliers []ratebook.Multiplier, categories []string, whole ratebook.Place) *pricer {
 	p := &pricer{
 		items: slices.Clone(items), multipliers: slices.Clone(multipliers), compiler: newCompiler(), lists: newPool(false),
 		has: map[ratebook.Driver]bool{}, prices: map[priceKey]*unitPrice{}, at: map[string]*shelf{}, sums: map[string]money.Decimal{},
@@ -147,7 +156,7 @@ func newPricer(items []takeoff.Item, rates []ratebook.Rate, multipliers []ratebo
 			p.has[q.Driver] = p.has[q.Driver] || q.Value.Sign() > 0
 		}
 	}
-	p.spots = append(p.spots, atlas.at(ratebook.Place{}))
+	p.spots = append(p.spots, atlas.at(whole))
 	return p
 }
 

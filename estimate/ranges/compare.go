@@ -35,7 +35,7 @@ type Comparison struct {
 var comparedPercentiles = []float64{0.1, 0.5, 0.8, 0.9}
 
 // Compare simulates models, in one currency, with one seed: an assumption or risk
-// of the same id has the same uniform number in each, mapped by each model's own
+// of the same id, or stream, has the same uniform number in each, mapped by each model's own
 // spread, so that what they have in common cancels in their differences. An id of
 // s.Matrix need only be in one of the models.
 //
@@ -80,7 +80,7 @@ func knownToAny(models []pricing.Model, s Settings) error {
 	known := map[string]bool{}
 	for _, m := range models {
 		for _, in := range m.Inputs {
-			known[in.ID] = true
+			known[keyOf(in)] = true
 		}
 	}
 	mix := mixing{ids: s.Matrix.IDs}

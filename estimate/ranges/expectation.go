@@ -8,8 +8,8 @@ import (
 
 // expectedTotal returns the expectation of the total without risks: of each
 // product, overall factors included. Factors of independent inputs multiply by
-// their means; inputs of one group, an input that occurs twice, and two inputs of
-// the matrix are integrated over the standard normal numbers behind them, because
+// their means; inputs of one group or stream, an input that occurs twice, and two
+// inputs of the matrix are integrated over the standard normal numbers behind them, because
 // E[XY] is not E[X]·E[Y] there. Where that is not possible it says why.
 func (p *program) expectedTotal() (float64, string) {
 	e := expectation{p: p, given: map[int][]float64{}, pairs: map[[2]int]float64{}}
@@ -76,7 +76,7 @@ func (e *expectation) product(factors []pricing.Factor) float64 {
 		for k, at := range linked {
 			cluster[k] = factors[at]
 		}
-		if e.p.inputs[f.Input].row >= 0 && !same(cluster) {
+		if e.p.inputs[f.Input].row >= 0 && !e.same(cluster) {
 			result *= e.pair(cluster)
 			continue
 		}
@@ -85,25 +85,25 @@ func (e *expectation) product(factors []pricing.Factor) float64 {
 	return result
 }
 
-// linked returns the places of the factors that depend on f's input, on a group
-// as it does, or on another uncertain input of the matrix.
+// linked returns the places of the factors that depend on f's input, on its belief,
+// on a group as it does, or on another uncertain input of the matrix.
 func (e *expectation) linked(factors []pricing.Factor, f pricing.Factor) []int {
 	var out []int
 	a := &e.p.inputs[f.Input]
 	for i, other := range factors {
 		b := &e.p.inputs[other.Input]
-		rows := a.row >= 0 && b.row >= 0 && !a.sampler.Fixed() && !b.sampler.Fixed()
-		if other.Input == f.Input || a.group >= 0 && b.group >= 0 || rows {
+		uncertain := !a.sampler.Fixed() && !b.sampler.Fixed()
+		if other.Input == f.Input || a.group >= 0 && b.group >= 0 || uncertain && (a.belief == b.belief || a.row >= 0 && b.row >= 0) {
 			out = append(out, i)
 		}
 	}
 	return out
 }
 
-// same reports whether all factors are of one input.
-func same(factors []pricing.Factor) bool {
+// same reports whether all factors are of one belief.
+func (e *expectation) same(factors []pricing.Factor) bool {
 	for _, f := range factors {
-		if f.Input != factors[0].Input {
+		if e.p.inputs[f.Input].belief != e.p.inputs[factors[0].Input].belief {
 			return false
 		}
 	}
@@ -151,65 +151,65 @@ func (e *expectation) meanProduct(x, y *input) float64 {
 	return total
 }
 
-// joint returns E[Π (offset + x)] of factors of one group or one input.
+// joint returns E[Π (offset + x)] of factors of one group or one belief.
 func (e *expectation) joint(factors []pricing.Factor) float64 {
 	column := make([]float64, nodes)
 	for k := range column {
 		_, column[k] = node(k)
 	}
+	done := make([]bool, len(factors))
 	for i, f := range factors {
-		var same []float64
+		var together []pricing.Factor // of f's belief
 		for k, other := range factors {
-			if other.Input == f.Input && k < i {
-				same = nil
-				break
-			}
-			if other.Input == f.Input {
-				same = append(same, other.Offset)
+			if !done[k] && e.same([]pricing.Factor{f, other}) {
+				together, done[k] = append(together, other), true
 			}
 		}
-		if same == nil {
-			continue
+		if together == nil {
+			continue // counted with its first
 		}
-		for k, v := range e.conditional(f.Input, same) {
+		for k, v := range e.conditional(factors[i].Input, together) {
 			column[k] *= v
 		}
 	}
 	return sum(column, 0)
 }
 
-// conditional returns E[Π (offset + x) | Z] at each node of the common factor Z
-// of the input's group; without a group it is constant.
-func (e *expectation) conditional(i int, offsets []float64) []float64 {
-	if len(offsets) > 1 {
-		return e.integrate(i, func(x float64) float64 {
+// conditional returns E[Π (offset + x) | Z] of factors of input i's belief at each
+// node of the common factor Z of its group; without a group it is constant.
+func (e *expectation) conditional(i int, factors []pricing.Factor) []float64 {
+	if len(factors) > 1 {
+		return e.integrate(factors, func(z float64) float64 {
 			product := 1.0
-			for _, o := range offsets {
-				product *= o + x
+			for _, f := range factors {
+				product *= f.Offset + e.p.inputs[f.Input].sampler.FromNormal(z)
 			}
 			return product
 		})
 	}
 	if e.given[i] == nil {
-		e.given[i] = e.integrate(i, func(x float64) float64 { return x })
+		e.given[i] = e.integrate(factors, e.p.inputs[i].sampler.FromNormal)
 	}
 	out := make([]float64, nodes)
 	for k, v := range e.given[i] {
-		out[k] = offsets[0] + v
+		out[k] = factors[0].Offset + v
 	}
 	return out
 }
 
-// integrate returns E[f(x) | Z] at each node of Z.
-func (e *expectation) integrate(i int, f func(float64) float64) []float64 {
-	in := &e.p.inputs[i]
+// integrate returns E[f(z) | Z] at each node of Z, z being the standard normal number
+// of the factors' belief.
+func (e *expectation) integrate(factors []pricing.Factor, f func(z float64) float64) []float64 {
+	in := &e.p.inputs[factors[0].Input]
 	common, own := 0.0, 1.0
 	if in.group >= 0 {
 		common, own = e.p.groups[in.group].common, e.p.groups[in.group].own
 	}
-	radius := float64(farthest)
-	if in.sampler.Bounded() {
-		radius = farthestBounded
+	radius := float64(farthestBounded)
+	for _, f := range factors {
+		if !e.p.inputs[f.Input].sampler.Bounded() {
+			radius = farthest
+		}
 	}
 	out := make([]float64, nodes)
 	for k := range out {
@@ -223,7 +223,7 @@ func (e *expectation) integrate(i int, f func(float64) float64) []float64 {
 			if in.group >= 0 && Z*Z+z*z > radius*radius {
 				continue
 			}
-			out[k] += float64(weight * f(in.sampler.FromNormal(float64(common*Z)+float64(own*z))))
+			out[k] += float64(weight * f(float64(common*Z)+float64(own*z)))
 		}
 	}
 	return out

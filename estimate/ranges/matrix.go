@@ -11,9 +11,10 @@ import (
 )
 
 // Matrix holds Spearman's rank correlations between assumptions. Those in it
-// leave their group, and are independent of everything outside of it.
+// leave their group, and are independent of everything outside of it. Assumptions of
+// one stream have the row of their stream.
 type Matrix struct {
-	IDs []string    // assumptions, each once, in any order
+	IDs []string    // assumptions or streams, each once, in any order
 	Rho [][]float64 // len(IDs) × len(IDs): symmetric, 1 on the diagonal, −1 to 1
 }
 
@@ -137,7 +138,7 @@ func (mix *mixing) checkKnown(inputs []pricing.Input, use purpose) error {
 	}
 	known := map[string]bool{}
 	for _, in := range inputs {
-		known[in.ID] = true
+		known[keyOf(in)] = true
 	}
 	return mix.unknown(known)
 }

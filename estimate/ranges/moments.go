@@ -127,8 +127,8 @@ func (sim *simulation) correlationWarnings() []Warning {
 			out = append(out, Warning{WarningUncorrelated, fmt.Sprintf("group %q: its %d spreads are taken as uncorrelated, which narrows the range", g.name, g.members)})
 		}
 	}
-	for i := range sim.p.inputs {
-		if !sim.p.inputs[i].sampler.Fixed() {
+	for _, b := range sim.p.beliefs {
+		if b.drawn {
 			uncertain++
 		}
 	}

@@ -11,6 +11,7 @@ import (
 // program is a model validated and compiled for evaluation by columns.
 type program struct {
 	inputs     []input
+	beliefs    []belief // by first input
 	groups     []group
 	terms      []term
 	overall    []pricing.Factor
@@ -26,13 +27,30 @@ type input struct {
 	draws   uniforms
 	group   int // index of groups, −1 for none
 	row     int // row of the correlation matrix, −1 for none
+	belief  int // index of beliefs
+}
+
+// belief is what the inputs of one stream have in common: their uniform number.
+type belief struct {
+	key   string // of the random numbers
+	group string
+	first int  // input
+	drawn bool // one of them is not fixed
+}
+
+// keyOf is what keys the random numbers of an input.
+func keyOf(in pricing.Input) string {
+	if in.Stream != "" {
+		return in.Stream
+	}
+	return in.ID
 }
 
 // group is a correlation group: z = √r·Z + √(1−r)·e with one common factor Z, so
 // that any two members have the latent correlation r.
 type group struct {
 	name        string
-	members     int
+	members     int // beliefs that are not fixed
 	rho         float64
 	common, own float64 // √r, √(1−r)
 	draws       uniforms
@@ -103,9 +121,10 @@ func compile(m pricing.Model, s Settings, use purpose) (*program, error) {
 	return p, nil
 }
 
-// addInputs compiles spreads and groups. An input in the matrix leaves its group.
+// addInputs compiles spreads, streams and groups. An input in the matrix leaves its
+// group.
 func (p *program) addInputs(inputs []pricing.Input, s Settings, use purpose) error {
-	index := map[string]int{}
+	index, beliefs := map[string]int{}, map[string]int{}
 	for i, in := range inputs {
 		where := fmt.Sprintf("model.inputs[%d] %q", i, in.ID)
 		if in.ID == "" || i > 0 && in.ID <= inputs[i-1].ID {
@@ -115,7 +134,13 @@ func (p *program) addInputs(inputs []pricing.Input, s Settings, use purpose) err
 		if err != nil {
 			return fmt.Errorf("ranges: %s: %w", where, err)
 		}
-		next := input{id: in.ID, sampler: sampler, draws: newUniforms(s.Seed, "assumption", in.ID), group: -1, row: p.matrix.row(in.ID)}
+		key := keyOf(in)
+		next := input{id: in.ID, sampler: sampler, draws: newUniforms(s.Seed, "assumption", key), group: -1, row: p.matrix.row(key)}
+		if next.belief, err = p.believe(beliefs, in, i); err != nil {
+			return err
+		}
+		first := !sampler.Fixed() && !p.beliefs[next.belief].drawn
+		p.beliefs[next.belief].drawn = p.beliefs[next.belief].drawn || first
 		if in.Group != "" {
 			rho, ok := s.Correlation[in.Group]
 			if !ok && next.row < 0 {
@@ -128,7 +153,7 @@ func (p *program) addInputs(inputs []pricing.Input, s Settings, use purpose) err
 			if next.row < 0 {
 				next.group = index[in.Group]
 			}
-			if next.row < 0 && !sampler.Fixed() {
+			if next.row < 0 && first {
 				p.groups[next.group].members++
 			}
 		}
@@ -140,6 +165,22 @@ func (p *program) addInputs(inputs []pricing.Input, s Settings, use purpose) err
 		}
 	}
 	return nil
+}
+
+// believe returns the number of the belief of input i.
+func (p *program) believe(known map[string]int, in pricing.Input, i int) (int, error) {
+	key := keyOf(in)
+	n, ok := known[key]
+	if !ok {
+		n = len(p.beliefs)
+		known[key] = n
+		p.beliefs = append(p.beliefs, belief{key: key, group: in.Group, first: i})
+	}
+	if b := p.beliefs[n]; b.group != in.Group {
+		return 0, fault(fmt.Sprintf("model.inputs[%d] %q group", i, in.ID), fmt.Sprintf("%q", in.Group),
+			fmt.Sprintf("%q, that of model.inputs[%d], which is of the same stream %q", b.group, b.first, key))
+	}
+	return n, nil
 }
 
 // newGroup returns the group of a rank correlation. All groups hang on one common

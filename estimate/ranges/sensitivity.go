@@ -7,12 +7,13 @@ import (
 	"slices"
 )
 
-// Sensitivity is what one assumption or discrete risk does to the range. How each
+// Sensitivity is what one assumption or discrete risk does to the range; assumptions
+// of one stream are one belief, fixed together. How each
 // measure is defined, and how correlation is treated, SensitivityMethod says.
 // Correlated assumptions move along in Share, so that the shares of a group may
 // add to more than 1; they stay as drawn in Swing and Narrowing.
 type Sensitivity struct {
-	ID                     string
+	ID                     string  // of the assumption, its stream where it has one, or of the risk
 	Risk                   bool    // a discrete risk, else an assumption
 	Share, ShareSE         float64 // of the total's variance, 0 to 1
 	Swing, SwingSE         float64 // major units, signed
@@ -31,7 +32,7 @@ const (
 )
 
 // SensitivityMethod says what the measures of Sensitivity are.
-var SensitivityMethod = fmt.Sprintf("Share of variance: the first-order index (correlation ratio) Var(E[total | assumption]) / Var(total), by straight lines in %d classes of equal probability of the assumption and corrected for their number; assumptions correlated with it move along, so that shares of correlated assumptions overlap and need not add to 1. Swing: mean total with the assumption fixed at its P90 less that with it fixed at its P10, all others as drawn. Narrowing: P90 less P10 of the total, less the same with the assumption fixed at its median, all others as drawn. For a discrete risk: the index of its occurrence; the mean total with it occurring less that without; the narrowing when it does not occur. From the first %d replicates, up to %d trials of each; standard errors from the spread between replicates.",
+var SensitivityMethod = fmt.Sprintf("Share of variance: the first-order index (correlation ratio) Var(E[total | assumption]) / Var(total), by straight lines in %d classes of equal probability of the assumption and corrected for their number; assumptions correlated with it move along, so that shares of correlated assumptions overlap and need not add to 1. Swing: mean total with the assumption fixed at its P90 less that with it fixed at its P10, all others as drawn. Narrowing: P90 less P10 of the total, less the same with the assumption fixed at its median, all others as drawn. For a discrete risk: the index of its occurrence; the mean total with it occurring less that without; the narrowing when it does not occur. From the first %d replicates, up to %d trials of each; standard errors from the spread between replicates. Figures of one belief, such as the growth of an index to several dates, are fixed together.",
 	sensitivityBins, sensitivityReplicates, sensitivityTrials)
 
 // response is one replicate's measures of one lever.
@@ -57,9 +58,9 @@ func (sim *simulation) sensitivities() []Sensitivity {
 		s.ID, s.Risk = id, isRisk
 		out = append(out, s)
 	}
-	for i := range sim.p.inputs {
-		if !sim.p.inputs[i].sampler.Fixed() {
-			add(sim.p.inputs[i].id, false)
+	for _, b := range sim.p.beliefs {
+		if b.drawn {
+			add(b.key, false)
 		}
 	}
 	for _, r := range sim.p.risks {

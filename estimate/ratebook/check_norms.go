@@ -10,6 +10,10 @@ import (
 // jointKinds are the kinds of joints that a schedule counts.
 func jointKinds() []string { return []string{"moment", "pinned", "flanged tube", "site splice"} }
 
+// shopSplice is the kind of joint that no schedule counts: it follows from stock
+// lengths. A book may have no norm for it.
+const shopSplice = "shop splice"
+
 // norms checks the norms, and that there is one for each driver that a price or a
 // carbon factor is per unit of.
 func (c *checker) norms(b Book) {
@@ -19,7 +23,7 @@ func (c *checker) norms(b Book) {
 		c.hours("/norms/site_hours", n.SiteHours, hours)
 		for _, k := range slices.Sorted(maps.Keys(n.Joints)) {
 			p := at("/norms/joints", k)
-			c.oneOf(p, k, jointKinds())
+			c.oneOf(p, k, append(jointKinds(), shopSplice))
 			j := n.Joints[k]
 			c.figure(p+"/mass_kg", j.Mass, 0, 1e5)
 			c.figure(p+"/bolts_kg", j.Bolts, 0, 1e5)
@@ -27,6 +31,9 @@ func (c *checker) norms(b Book) {
 			c.figure(p+"/site_hours", j.SiteHours, 0, 1e4)
 		}
 		c.figure("/norms/surface", n.Surface, 0, maxAllowance)
+		if n.SurfaceByMass != nil {
+			c.figure("/norms/surface_by_mass", *n.SurfaceByMass, 0, 1000)
+		}
 		c.zinc(n.Zinc)
 		c.figure("/norms/load_use", n.LoadUse, 1, 10)
 		c.figure("/norms/lift_days", n.LiftDays, 0, 100)

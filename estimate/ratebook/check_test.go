@@ -133,6 +133,7 @@ func TestValidateNamesTheFieldOfAUnitRateBook(t *testing.T) {
 			b.Norms.Joints["moment"] = j
 		},
 		"/norms/surface/group":             func(b *Book) { b.Norms.Surface.Group = "paint" },
+		"/norms/surface_by_mass/spread":    func(b *Book) { b.Norms.SurfaceByMass.Spread.High = 1001 },
 		"/norms/zinc/1/up_to_mm":           func(b *Book) { b.Norms.Zinc[1].UpTo = 1.5 },
 		"/norms/zinc/3/up_to_mm":           func(b *Book) { b.Norms.Zinc[3].UpTo = 20 },
 		"/norms/zinc/0/g_m2":               func(b *Book) { b.Norms.Zinc[0].Mass = math.NaN() },

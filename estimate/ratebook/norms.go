@@ -5,9 +5,12 @@ package ratebook
 type Norms struct {
 	ShopHours map[string]Figure    `json:"shop_hours" doc:"h per delivered tonne, by connection class; counted joints, optional, is the steel between them"`
 	SiteHours map[string]Figure    `json:"site_hours" doc:"h per delivered tonne, by connection class; counted joints, optional, is the steel between them"`
-	Joints    map[string]JointNorm `json:"joints" doc:"of one counted joint, by kind"`
+	Joints    map[string]JointNorm `json:"joints" doc:"of one counted joint, by kind; shop splice, optional, joins bars that are longer than the longest stock"`
 	// Surface is the allowance on the members' surface for that of connections.
 	Surface Figure `json:"surface"`
+	// SurfaceByMass is the surface to be coated of rows by mass per metre, with their
+	// fixings; without it rows by mass have no surface.
+	SurfaceByMass *Figure `json:"surface_by_mass,omitempty" doc:"m² per net tonne of rows by mass per metre; rows by mass per area have twice their area"`
 	// Zinc is what galvanising takes up by thickness of steel, rising.
 	Zinc []ZincNorm `json:"zinc"`
 	// LoadUse is vehicles needed over vehicles filled to their limits: above 1.

@@ -37,7 +37,7 @@ func figuresOf(b Book) map[string]Figure {
 	for k, j := range n.Joints {
 		put("/norms/joints/"+k, map[string]Figure{"mass": j.Mass, "bolts": j.Bolts, "shop": j.ShopHours, "site": j.SiteHours})
 	}
-	put("/norms", map[string]Figure{"surface": n.Surface, "load_use": n.LoadUse, "lift_days": n.LiftDays, "crew": n.Crew, "week_hours": n.WeekHours, "haul": n.HaulDistance})
+	put("/norms", map[string]Figure{"surface": n.Surface, "surface_by_mass": *n.SurfaceByMass, "load_use": n.LoadUse, "lift_days": n.LiftDays, "crew": n.Crew, "week_hours": n.WeekHours, "haul": n.HaulDistance})
 	put("/connections", b.Connections)
 	put("/waste", b.Waste)
 	put("/growth", b.Growth)
@@ -155,8 +155,11 @@ func TestUnitRateIsWhole(t *testing.T) {
 		}
 	}
 	for _, s := range siteConditions() {
-		if !slices.ContainsFunc(b.Site, func(m SiteMultiplier) bool { return m.Condition == s && slices.Contains(m.Categories, Erection) }) {
-			t.Errorf("no erection multiplier for %s", s)
+		i := slices.IndexFunc(b.Site, func(m SiteMultiplier) bool { return m.Condition == s })
+		if i < 0 {
+			t.Errorf("no multiplier for %s", s)
+		} else if m := b.Site[i]; !slices.Equal(m.Categories, []string{Erection, Indirects}) || !strings.Contains(m.Reason, "weeks") {
+			t.Errorf("%s: acts on %v, because %q; want erection, and indirects for its weeks", s, m.Categories, m.Reason)
 		}
 	}
 	for class := range Ratio().Connections {
@@ -221,6 +224,49 @@ func TestOnePricePerPlace(t *testing.T) {
 	}
 	if n := count(Place{}, "paint "); n != 1 {
 		t.Errorf("%d paint systems for rows that name none", n)
+	}
+}
+
+// Bolts have one price: the bolts of counted joints by their own mass, others by the
+// tonne of steel. What is bought ready-made has its fixings and its zinc; a small job
+// pays for one whole load.
+func TestBoltsZincAndLoadsArePricedOnce(t *testing.T) {
+	b := UnitRate()
+	of := func(p Place) []string {
+		var out []string
+		for _, i := range ResolveRates(b.Rates, p) {
+			if r := b.Rates[i]; strings.Contains(r.ID, "bolts") || r.ID == "galvanising" {
+				out = append(out, r.ID)
+			}
+		}
+		slices.Sort(out)
+		return out
+	}
+	const zinc = "hot-dip galvanised"
+	for _, c := range []struct {
+		p    Place
+		want []string
+	}{
+		{Place{Family: "IPE", Treatment: "size", Connection: "simple beams", Coating: zinc}, []string{"bolts", "galvanising"}},
+		{Place{Family: "handrail", Treatment: "not sized", Connection: "stairs and rails", Coating: zinc}, []string{"bolts", "galvanising"}},
+		{Place{Family: "grating", Treatment: "not sized", Connection: "none", Coating: zinc}, nil},
+		{Place{Family: "IPE", Treatment: "size", Connection: countedJoints, Coating: zinc}, []string{"galvanising"}},
+	} {
+		if got := of(c.p); !slices.Equal(got, c.want) {
+			t.Errorf("%+v: %v, want %v", c.p, got, c.want)
+		}
+	}
+	for _, kind := range jointKinds() {
+		plates, bolts := Place{Family: kind, Treatment: "joint", Connection: countedJoints}, Place{Family: kind + " bolts", Treatment: "joint", Connection: countedJoints}
+		if got := of(plates); got != nil {
+			t.Errorf("plates of %s: %v", kind, got)
+		}
+		if got := of(bolts); !slices.Equal(got, []string{"counted bolts"}) {
+			t.Errorf("bolts of %s: %v", kind, got)
+		}
+	}
+	if got := rateNamed(t, b, "loading").MinimumOrder.String(); got != "1" {
+		t.Errorf("least loads %s, want 1", got)
 	}
 }
 

@@ -25,6 +25,7 @@ type NormAllowances struct {
 	SiteHours    map[string]Allowance
 	Joints       map[string]JointAllowances // by kind of joint
 	Surface      Allowance                  // on the members' surface
+	RowSurface   *Allowance                 // m² per net tonne of rows by mass; nil where the book has none
 	LoadUse      Allowance
 	LiftDays     Allowance
 	Crew         Allowance
@@ -44,6 +45,7 @@ const (
 	BiasID          = "allowance/sizing bias"
 	BoltsID         = "allowance/bolts"
 	SurfaceID       = "norm/surface of connections"
+	RowSurfaceID    = "norm/surface of rows by mass"
 	ZincID          = "norm/zinc"
 	LoadUseID       = "norm/load use"
 	LiftDaysID      = "norm/crane days per lift"
@@ -112,6 +114,10 @@ func norms(n ratebook.Norms) *NormAllowances {
 		Surface: addition(SurfaceID, n.Surface), LoadUse: factor(LoadUseID, n.LoadUse), LiftDays: factor(LiftDaysID, n.LiftDays),
 		Crew: factor(CrewID, n.Crew), WeekHours: factor(WeekHoursID, n.WeekHours), HaulDistance: factor(HaulID, n.HaulDistance),
 		Zinc: n.Zinc,
+	}
+	if n.SurfaceByMass != nil {
+		perTonne := factor(RowSurfaceID, *n.SurfaceByMass)
+		out.RowSurface = &perTonne
 	}
 	for class, f := range n.ShopHours {
 		out.ShopHours[class] = factor(ShopHoursID(class), f)

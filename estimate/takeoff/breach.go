@@ -34,23 +34,25 @@ type Breach struct {
 // once from either end. Common practice, no source.
 const doubleDip = 1.9
 
-// Breaches holds each sized row against the envelopes, in the order of marks: the
+// Breaches holds each row of steel against the envelopes, in the order of marks: the
 // cranes by mass; the bath where its coating names galvanising, the paint bay where
-// it is not uncoated or galvanised alone; the vehicle; the limits beyond which a load needs a permit. Depth
-// and width may be turned. Mass is that lifted: net with rolling margin, weld metal,
-// connections and bolts, without growth. A limit of 0 is none.
+// it is not uncoated or galvanised alone; the vehicle; the limits beyond which a load
+// needs a permit. Depth and width may be turned; those of rows by mass are not known,
+// and these are made to the length of bath and bay. Mass is that lifted: net with
+// rolling margin, weld metal, connections and bolts, without growth. A limit of 0 is
+// none.
 func Breaches(pieces []Piece, a Allowances, s Settings) []Breach {
 	var out []Breach
 	for _, p := range byMark(pieces) {
-		if !p.sized() {
-			continue
+		if p.Net() == 0 {
+			continue // concrete alone
 		}
 		h := holder{p: p, n: Parts(p, s), mass: a.lifted(p, s)}
 		h.cranes(s.Limits)
-		if Galvanised(s.coating(p)) {
+		if p.sized() && Galvanised(s.coating(p)) {
 			h.bath(s.Limits.Bath)
 		}
-		if painted(s.coating(p)) {
+		if p.sized() && painted(s.coating(p)) {
 			h.space(PaintBay, s.Limits.PaintBay, "painting outside the bay, or in parts")
 		}
 		h.vehicle(s.Limits.Vehicle)
@@ -64,7 +66,7 @@ func Breaches(pieces []Piece, a Allowances, s Settings) []Breach {
 
 // Permits returns how many delivered parts of the row need a permit load.
 func Permits(p Piece, a Allowances, s Settings) int {
-	if !p.sized() {
+	if p.Net() == 0 {
 		return 0
 	}
 	n := Parts(p, s)
@@ -144,8 +146,19 @@ func (h *holder) add(envelope string, x excess, needs string) {
 // split says into how many pieces the whole one goes so that each part has at most
 // limit of what a delivered part has value of.
 func (h *holder) split(value, limit float64) string {
-	n := h.n * int(min(math.Ceil(value/limit-1e-9), 1e6))
-	return splitWords(n, h.p.Member.Length)
+	return h.apart(h.n * int(min(math.Ceil(value/limit-1e-9), 1e6)))
+}
+
+// apart says how a piece comes in n parts; rows by mass come in parts anyway.
+func (h *holder) apart(n int) string {
+	length := h.p.Member.Length
+	switch {
+	case h.p.sized():
+		return splitWords(n, length)
+	case length > 0:
+		return fmt.Sprintf("delivery in %d parts of %s m", n, plain(length/float64(n), 3))
+	}
+	return fmt.Sprintf("delivery in %d parts", n)
 }
 
 func (h *holder) cranes(l ratebook.Limits) {
@@ -194,7 +207,7 @@ func (h *holder) vehicle(v ratebook.Vehicle) {
 	for _, x := range over(v, h.p.Member.Length, h.p.Depth, h.p.Width, h.mass) {
 		switch x.measure {
 		case "length":
-			h.add(OnVehicle, x, splitWords(max(h.n, int(math.Ceil(x.value/x.limit-1e-9))), x.value))
+			h.add(OnVehicle, x, h.apart(h.n))
 		case "mass":
 			h.add(OnVehicle, x, h.split(x.value, x.limit)+", or a vehicle of greater load")
 		case "height":

@@ -123,10 +123,55 @@ func TestLiftedMassByHand(t *testing.T) {
 	}
 }
 
-func TestRowsByMassHaveNoEnvelope(t *testing.T) {
-	row := Piece{Member: schedule.Member{Mark: "H1", Quantity: 1, Length: 90, Treatment: schedule.ByMass, ConnectionClass: "simple beams"}, LineMass: 1000, Waste: "sections"}
-	if got := Breaches([]Piece{row}, withNorms(), limited()); got != nil {
-		t.Errorf("%+v", got)
+// Rows by mass are held by mass and length: 60 m go in 5 parts of 12 m. Of 900 kg/m a
+// part is lifted with 10.8 · 1.025 · 1.06 · 1.02 = 11.97 t, of 2300 kg/m with 30.59 t. The
+// area without a length is one part of 30 · 1.025 · 1.06 · 1.02 = 33.25 t.
+func TestBreachesOfRowsByMass(t *testing.T) {
+	row := func(length, perMetre, area float64) Piece {
+		m := schedule.Member{Mark: "H1", Group: "Quay", Quantity: 2, Length: length, Treatment: schedule.ByMass, ConnectionClass: "simple beams", LineMass: perMetre}
+		if area > 0 {
+			m.Area, m.AreaMass = area, 100
+		}
+		return NewPiece(m, nil)
+	}
+	s := limited()
+	s.Coating = "duplex C5" // bath and bay are no matter of rows by mass
+	for _, c := range []struct {
+		p       Piece
+		want    []string
+		permits int
+		cranes  string
+	}{
+		{row(13.6, 900, 0), nil, 0, "0.24"}, // 2 lifts · 1.18 · 0.1
+		{row(60, 900, 0), []string{"vehicle length: delivery in 5 parts of 12 m"}, 0, "1.18"},
+		{row(60, 2300, 0), []string{
+			"shop crane mass: delivery in 10 parts of 6 m, or two cranes together in the shop",
+			"vehicle length: delivery in 5 parts of 12 m",
+			"vehicle mass: delivery in 10 parts of 6 m, or a vehicle of greater load",
+			"permit mass: permit load; local rules govern"}, 10, "1.18"},
+		{row(0, 0, 300), []string{
+			"shop crane mass: delivery in 2 parts, or two cranes together in the shop",
+			"vehicle mass: delivery in 2 parts, or a vehicle of greater load",
+			"permit mass: permit load; local rules govern"}, 2, "0.24"},
+	} {
+		got := envelopes(Breaches([]Piece{c.p}, withNorms(), s))
+		if diff := cmp.Diff(c.want, got); diff != "" {
+			t.Errorf("%g m of %g kg (-want +got):\n%s", c.p.Member.Length, c.p.Net(), diff)
+		}
+		items := count(t, []Piece{c.p}, withNorms(), s)
+		if got := text(items[0], ratebook.CraneDays); len(items) != 1 || got != c.cranes {
+			t.Errorf("%d items, %s crane days; want 1 (no splices), %s", len(items), got, c.cranes)
+		}
+		if got := Permits(c.p, withNorms(), s); got != c.permits {
+			t.Errorf("%d permit loads, want %d", got, c.permits)
+		}
+	}
+}
+
+func TestWhatHasNoEnvelope(t *testing.T) {
+	footing := Piece{Member: schedule.Member{Mark: "F1", Quantity: 1, Length: 90, Concrete: 50, Treatment: schedule.ByMass}}
+	if got := Breaches([]Piece{footing}, withNorms(), limited()); got != nil || Permits(footing, withNorms(), limited()) != 0 {
+		t.Errorf("concrete alone: %+v", got)
 	}
 	if got := Breaches([]Piece{block(90, 9, 9, 1e6)}, withNorms(), Settings{Coating: "duplex"}); got != nil {
 		t.Errorf("limits of 0 are none: %+v", got)

@@ -67,10 +67,13 @@ func normEntries(n ratebook.Norms) []Entry {
 	list := []Entry{
 		entry(SurfaceID, "Surface of connections, on that of the members", "fraction", n.Surface),
 		entry(LoadUseID, "Vehicles needed over vehicles filled to their limits", "", n.LoadUse),
-		entry(LiftDaysID, "Crane days for one lift; each delivered part is one lift", "days", n.LiftDays),
+		entry(LiftDaysID, "Crane days for one lift; each delivered part is one lift, and growth adds lifts", "days", n.LiftDays),
 		entry(CrewID, "Persons on site, at the likely value in every trial", "persons", n.Crew),
 		entry(WeekHoursID, "Hours of one person per week, at the likely value in every trial", "h", n.WeekHours),
 		entry(HaulID, "The way from shop to site, where the job names none", "km", n.HaulDistance),
+	}
+	if n.SurfaceByMass != nil {
+		list = append(list, entry(RowSurfaceID, "Surface to be coated of rows by mass per metre, with their fixings, per net tonne; rows of connection class "+ReadyMade+" are delivered coated and have none", "m²/t", *n.SurfaceByMass))
 	}
 	for _, c := range sortedKeys(n.ShopHours) {
 		list = append(list, entry(ShopHoursID(c), "Shop hours per delivered tonne, for "+c, "h/t", n.ShopHours[c]))
@@ -118,8 +121,8 @@ func limitEntries(l ratebook.Limits, b ratebook.Book) []Entry {
 	list := []Entry{
 		{ID: VehicleID, Kind: assumption.Default, Statement: "What a vehicle carries.", Value: vehicleWords(l.Vehicle), Figure: said(l.Vehicle.Source)},
 		{ID: PermitID, Kind: assumption.Default, Statement: "Beyond these a load needs a permit; local rules govern.", Value: vehicleWords(l.Permit), Figure: said(l.Permit.Source)},
-		{ID: SplicesID, Kind: assumption.Default, Statement: "Pieces longer than a vehicle or the longest stock length are delivered in equal parts with site splices between them.",
-			Value: "one site splice fewer than parts", Figure: said(practice)},
+		{ID: SplicesID, Kind: assumption.Default, Statement: "Pieces longer than a vehicle are delivered in equal parts with site splices between them, rows by mass in parts without splices; parts longer than the longest stock length are joined in the shop.",
+			Value: "one splice fewer than parts", Figure: said(practice)},
 		{ID: RollingMarginID, Kind: assumption.Default, Statement: "Pieces weigh more than their nominal mass when they are lifted and carried; this is not priced as steel.",
 			Value: plain(rollingMargin, 3), Unit: "fraction", Figure: said(practice)},
 		{ID: WeldID, Kind: assumption.Default, Statement: "Sections welded from plates have fillets on both sides, with a throat of half the web, at least 3 mm.",

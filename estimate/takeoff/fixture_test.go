@@ -31,9 +31,10 @@ func withNorms() Allowances {
 	hours := func(v float64) map[string]Allowance {
 		return map[string]Allowance{"simple beams": fixed("h", v, 0), "lattice": fixed("hl", 3*v, 0)}
 	}
+	rows := fixed("row surface", 30, 0)
 	a.Norms = &NormAllowances{
 		ShopHours: hours(12), SiteHours: hours(9), Joints: map[string]JointAllowances{},
-		Surface: fixed("surface", 0.06, 1), LoadUse: fixed("load use", 1.35, 0), LiftDays: fixed("lift", 0.1, 0),
+		Surface: fixed("surface", 0.06, 1), RowSurface: &rows, LoadUse: fixed("load use", 1.35, 0), LiftDays: fixed("lift", 0.1, 0),
 		Crew: fixed("crew", 6, 0), WeekHours: fixed("week", 40, 0), HaulDistance: fixed("haul", 150, 0),
 		// ISO 1461:2009, table 3, mean coating mass (from memory).
 		Zinc: []ratebook.ZincNorm{{UpTo: 1.5, Mass: 325}, {UpTo: 3, Mass: 395}, {UpTo: 6, Mass: 505}, {UpTo: 0, Mass: 610}},

@@ -50,7 +50,7 @@ type Item struct {
 	Marks      []string // sorted
 	Pieces     int
 	Length     float64 // m, all pieces
-	Surface    float64 // m², painted, of the drawing
+	Surface    float64 // m², painted, of the sections as drawn
 	Net        money.Decimal
 	Delivered  money.Decimal
 	Purchased  money.Decimal
@@ -59,6 +59,10 @@ type Item struct {
 
 // CountedJoints is the connection class of rows whose joints are counted.
 const CountedJoints = "counted joints"
+
+// ReadyMade is the connection class of rows that are bought with their connections
+// and delivered coated.
+const ReadyMade = "none"
 
 // Quantity returns the item's quantity of a driver.
 func (it Item) Quantity(d ratebook.Driver) (Quantity, bool) {

@@ -7,23 +7,26 @@ import (
 	"spanwright/estimate/schedule"
 )
 
+// ShopSplice is the joint of bars that are longer than the longest stock length. A
+// book without a norm for it has it in the hours of the connection class.
+const ShopSplice = "shop splice"
+
 // jointSum is an item of counted joints of one kind: their plates with the hours,
 // or their bolts, which are not bought by mass of steel.
 type jointSum struct {
 	item    Item
 	bolts   bool
 	count   int
-	split   int // of them: splices that the length of pieces asks for
+	split   int // of them: those that the length of pieces asks for
 	defined JointAllowances
 }
 
-// addJoints counts the joints of the row, and the site splices that its length
-// asks for beyond those counted.
+// addJoints counts the joints of the row, and those that its length asks for.
 func (c *counter) addJoints(p Piece) {
 	if c.a.Norms == nil {
 		return
 	}
-	for i, j := range jointsOf(p, c.s) {
+	for i, j := range c.a.jointsOf(p, c.s) {
 		split := 0
 		if i >= len(p.Member.Joints) {
 			split = j.Count
@@ -34,8 +37,8 @@ func (c *counter) addJoints(p Piece) {
 
 // jointsOf returns the joints of all pieces of the row as they are counted, and
 // last, where its length asks for more site splices than are counted, the missing
-// ones.
-func jointsOf(p Piece, s Settings) []schedule.Joint {
+// ones, and the joints of the shop where the book has a norm for them.
+func (a Allowances) jointsOf(p Piece, s Settings) []schedule.Joint {
 	var list []schedule.Joint
 	splices := Splices(p, s)
 	for _, j := range p.Member.Joints {
@@ -47,6 +50,11 @@ func jointsOf(p Piece, s Settings) []schedule.Joint {
 	}
 	if splices > 0 {
 		list = append(list, schedule.Joint{Kind: schedule.JointSiteSplice, Count: splices})
+	}
+	if _, ok := a.Norms.Joints[ShopSplice]; ok {
+		if n := ShopJoints(p, s); n > 0 {
+			list = append(list, schedule.Joint{Kind: ShopSplice, Count: n})
+		}
 	}
 	return list
 }
@@ -87,7 +95,11 @@ func (m *jointSum) finish(b *builder, a Allowances, s Settings) Item {
 	why := ""
 	if m.split > 0 {
 		fixed = []string{SplicesID, VehicleID}
-		why = fmt.Sprintf("; %d of them because pieces are longer than a vehicle or the longest stock", m.split)
+		longer := "a vehicle"
+		if m.item.Family == ShopSplice || m.item.Family == ShopSplice+" bolts" {
+			longer = "the longest stock"
+		}
+		why = fmt.Sprintf("; %d of them because pieces are longer than %s", m.split, longer)
 	}
 	n, count := a.Norms, float64(m.count)
 	each := m.defined.Mass
@@ -100,15 +112,15 @@ func (m *jointSum) finish(b *builder, a Allowances, s Settings) Item {
 	if !m.bolts {
 		b.put(ratebook.PurchasedTonnes, count/1000, with(mass, a.Waste[ratebook.WastePlate]), fmt.Sprintf("%d joints × kg of plates each × growth × waste in buying plate%s", m.count, why))
 		b.put(ratebook.Pieces, count, nil, "joints"+why)
-		b.put(ratebook.ShopHours, count, []Allowance{m.defined.ShopHours}, fmt.Sprintf("%d joints × h each%s", m.count, why))
-		b.put(ratebook.SiteHours, count, []Allowance{m.defined.SiteHours}, fmt.Sprintf("%d joints × h each%s", m.count, why))
+		b.put(ratebook.ShopHours, count, []Allowance{m.defined.ShopHours, a.Growth}, fmt.Sprintf("%d joints × h each × growth%s", m.count, why))
+		b.put(ratebook.SiteHours, count, []Allowance{m.defined.SiteHours, a.Growth}, fmt.Sprintf("%d joints × h each × growth%s", m.count, why))
 	}
 	if capacity := s.Limits.Vehicle.Mass; capacity > 0 {
 		b.put(ratebook.Truckloads, count/capacity, with(mass, n.LoadUse), "vehicles by mass × vehicles needed over vehicles filled", VehicleID)
 	}
 	b.haul(a, s, count/1000, mass)
 	if !m.bolts {
-		b.weeks(n, count, []Allowance{m.defined.SiteHours})
+		b.weeks(n, count, []Allowance{m.defined.SiteHours, a.Growth})
 	}
 	m.item.Net, _ = roundTonnes(0)
 	m.item.Delivered, m.item.Purchased = b.value(ratebook.DeliveredTonnes), b.value(ratebook.PurchasedTonnes)

@@ -39,11 +39,11 @@ func TestCountedJointsByHand(t *testing.T) {
 		ratebook.DeliveredTonnes: "0.283", // 6 · 40 · 1.18 = 283.2 kg
 		ratebook.PurchasedTonnes: "0.323", // · 1.14 = 322.85 kg
 		ratebook.Pieces:          "6",
-		ratebook.ShopHours:       "30.0",
-		ratebook.SiteHours:       "12.0",
+		ratebook.ShopHours:       "35.4", // 6 · 5 · 1.18
+		ratebook.SiteHours:       "14.2", // 6 · 2 · 1.18 = 14.16
 		ratebook.Truckloads:      "0.02", // 283.2 / 25000 · 1.35 = 0.0153
 		ratebook.TonneKilometres: "42.5", // 0.2832 · 150
-		ratebook.Weeks:           "0.05", // 12 / 240
+		ratebook.Weeks:           "0.06", // 14.16 / 240 = 0.059
 	}, quantities(plates)); diff != "" {
 		t.Errorf("plates (-want +got):\n%s", diff)
 	}
@@ -92,8 +92,8 @@ func TestSiteSplicesOfLongPieces(t *testing.T) {
 	if q.Value.String() != "16" || !cmp.Equal(q.Fixed, []string{SplicesID, VehicleID}) || !strings.Contains(q.Formula, "12 of them") { // 8 + 4 counted + 4 missing
 		t.Errorf("splices %s by %v, %q; want 16, 12 of them by default", q.Value, q.Fixed, q.Formula)
 	}
-	if got := text(byID(t, items, "Gallery/IPE/size/simple beams"), ratebook.CraneDays); got != "1.20" { // 4 · 3 lifts · 0.1
-		t.Errorf("crane days %s, want 1.20", got)
+	if got := text(byID(t, items, "Gallery/IPE/size/simple beams"), ratebook.CraneDays); got != "1.42" { // 4 · 3 lifts · 1.18 · 0.1 = 1.416
+		t.Errorf("crane days %s, want 1.42", got)
 	}
 	if items := count(t, []Piece{long}, allowances(), s); len(items) != 1 {
 		t.Errorf("a book without norms has %d items, want 1: splices are counted, not priced", len(items))
@@ -109,13 +109,45 @@ func TestPartsByStockAndVehicle(t *testing.T) {
 		want    int
 	}{
 		{beam("B", 1, 13.6), nil, 13.6, 1}, {beam("B", 1, 13.601), nil, 13.6, 2}, {beam("B", 1, 27.2), nil, 13.6, 2},
-		{beam("B", 1, 13), []float64{6, 12}, 13.6, 2}, {beam("B", 1, 15), []float64{15.1}, 13.6, 2}, {beam("B", 1, 15), []float64{15.1}, 0, 1},
-		{beam("B", 1, 500), nil, 0, 1}, {row, []float64{12}, 13.6, 1},
+		{beam("B", 1, 13), []float64{6, 12}, 13.6, 1}, {beam("B", 1, 15), []float64{15.1}, 13.6, 2}, {beam("B", 1, 15), []float64{15.1}, 0, 1},
+		{beam("B", 1, 500), nil, 0, 1}, {row, []float64{12}, 13.6, 5},
 	} {
 		s := Settings{Stock: c.stock}
 		s.Limits.Vehicle.Length = c.vehicle
 		if got := Parts(c.p, s); got != c.want {
 			t.Errorf("%g m, stock %v, vehicle %g m: %d parts, want %d", c.p.Member.Length, c.stock, c.vehicle, got, c.want)
 		}
+	}
+}
+
+// Out of bars of at most 12 m, a piece of 13 m on a vehicle of 13.6 m has one butt
+// joint made in the shop; one of 26 m goes in 2 parts with one each, and one site
+// splice. Rows by mass, flats and welded sections are not cut from bars.
+func TestShopJoints(t *testing.T) {
+	s := limited()
+	s.Stock = []float64{6, 12}
+	welded := beam("W1", 3, 13)
+	welded.Weld = 0.8
+	for _, c := range []struct {
+		p               Piece
+		joints, splices int
+	}{
+		{beam("B1", 3, 12), 0, 0}, {beam("B1", 3, 13), 3, 0}, {beam("B1", 3, 26), 6, 3}, {beam("B1", 3, 20), 0, 3}, {welded, 0, 0},
+	} {
+		if got, splices := ShopJoints(c.p, s), Splices(c.p, s); got != c.joints || splices != c.splices {
+			t.Errorf("%s of %g m: %d joints in the shop, %d on site; want %d, %d", c.p.Member.Mark, c.p.Member.Length, got, splices, c.joints, c.splices)
+		}
+	}
+	a, pieces := withNorms(), []Piece{beam("B1", 3, 13)}
+	if items := count(t, pieces, a, s); len(items) != 1 {
+		t.Errorf("without a norm: %d items, want the steel alone", len(items))
+	}
+	a.Norms.Joints[ShopSplice] = JointAllowances{Mass: fixed("kg", 0, 0), Bolts: fixed("bolts", 0, 0), ShopHours: fixed("h", 4, 0), SiteHours: fixed("site", 0, 0)}
+	it := byID(t, count(t, pieces, a, s), "Gallery/shop splice/joint")
+	if diff := cmp.Diff(map[ratebook.Driver]string{ratebook.Pieces: "3", ratebook.ShopHours: "14.2"}, quantities(it)); diff != "" { // 3 · 4 · 1.18 = 14.16 h
+		t.Errorf("with a norm (-want +got):\n%s", diff)
+	}
+	if q, _ := it.Quantity(ratebook.Pieces); !strings.HasSuffix(q.Formula, "3 of them because pieces are longer than the longest stock") {
+		t.Errorf("formula %q", q.Formula)
 	}
 }

@@ -21,6 +21,12 @@ func (v vehicles) plus(w vehicles) vehicles {
 	return vehicles{v.mass + w.mass, v.length + w.length, v.volume + w.volume}
 }
 
+// grown is the deck that the design as grown takes; mass has its own factors.
+func (v vehicles) grown(a Allowances) vehicles {
+	g := a.Growth.Value()
+	return vehicles{v.mass, float64(v.length * g), float64(v.volume * g)}
+}
+
 // governing returns the measure that fills most vehicles, and how many; mass
 // before length before volume where two are equal.
 func (v vehicles) governing() (string, float64) {
@@ -70,14 +76,15 @@ func (m *steelSum) ship(b *builder, a Allowances, s Settings, delivered []Allowa
 	if m.total(func(p Piece) float64 { return p.Weld }) > 0 {
 		ids = append(ids, WeldID)
 	}
-	byMass := v.mass
-	v.mass = product(v.mass, delivered)
-	switch name, most := v.governing(); name {
+	grown := v.grown(a)
+	grown.mass = product(v.mass, delivered)
+	switch name, _ := grown.governing(); name {
 	case ByMass:
-		b.put(ratebook.Truckloads, byMass, with(delivered, a.Norms.LoadUse),
+		b.put(ratebook.Truckloads, v.mass, with(delivered, a.Norms.LoadUse),
 			"vehicles by mass, rolling margin and weld metal included, × (the factors of delivered mass) × vehicles needed over vehicles filled", ids...)
 	default:
-		b.put(ratebook.Truckloads, most, []Allowance{a.Norms.LoadUse}, "vehicles by "+deckWords[name]+" × vehicles needed over vehicles filled", VehicleID)
+		deck := map[string]float64{ByLength: v.length, ByVolume: v.volume}[name]
+		b.put(ratebook.Truckloads, deck, []Allowance{a.Growth, a.Norms.LoadUse}, "vehicles by "+deckWords[name]+" × growth × vehicles needed over vehicles filled", VehicleID)
 	}
 	b.put(ratebook.PermitLoads, float64(permits), nil, "delivered parts beyond the limits of the road", append([]string{PermitID}, m.splitIDs(s)...)...)
 }
@@ -115,6 +122,7 @@ func Loads(pieces []Piece, a Allowances, s Settings) []Load {
 		l.Splices += Splices(p, s)
 		l.Permits += Permits(p, a, s)
 		l.ByMass += float64(product(v.mass, a.delivered(p))) + a.jointLoads(p, s)
+		v = v.grown(a)
 		l.ByLength += v.length
 		l.ByVolume += v.volume
 	}
@@ -143,7 +151,7 @@ func (a Allowances) jointLoads(p Piece, s Settings) float64 {
 		return 0
 	}
 	kg := 0.0
-	for _, j := range jointsOf(p, s) {
+	for _, j := range a.jointsOf(p, s) {
 		n := a.Norms.Joints[j.Kind]
 		kg += float64(float64(j.Count) * (n.Mass.Value() + n.Bolts.Value()))
 	}

@@ -1,7 +1,9 @@
 package takeoff
 
 import (
+	"cmp"
 	"math"
+	"strings"
 
 	"spanwright/estimate/ratebook"
 	"spanwright/estimate/schedule"
@@ -17,6 +19,7 @@ type Piece struct {
 	Grade       string  // of the steel
 	LineMass    float64 // kg/m, nominal, of the chosen section
 	Surface     float64 // m²/m, painted
+	Inside      float64 // m²/m, of tubes and boxes: what the bath wets besides
 	Depth       float64 // m
 	Width       float64 // m
 	Thickness   float64 // m, of the thinnest plate of the section
@@ -40,6 +43,7 @@ func NewPiece(m schedule.Member, sec *section.Section) Piece {
 	p.Family, p.Designation, p.LineMass, p.Surface = sec.Family, sec.Designation, sec.Mass, sec.Perimeter
 	p.Depth, p.Width, p.Weld = sec.H, max(sec.B, sec.LowerB), weld(sec)
 	p.Thickness, p.Thickest = plates(sec)
+	p.Inside = inside(sec)
 	switch sec.Shape {
 	case section.RoundTube, section.RectangularTube:
 		p.Waste = ratebook.WasteTube
@@ -58,6 +62,28 @@ func plates(sec *section.Section) (thin, thick float64) {
 		}
 	}
 	return thin, thick
+}
+
+// inside returns the inner perimeter of a closed section in m, of a set of closed
+// chords that of all, else 0. The inner corners of rectangular tubes are taken as
+// concentric with the outer ones.
+func inside(sec *section.Section) float64 {
+	wall := cmp.Or(sec.Nominal, sec.Tw)
+	switch sec.Shape {
+	case section.RoundTube:
+		return math.Pi * (sec.H - 2*wall)
+	case section.RectangularTube:
+		return 2*(sec.H+sec.B-4*wall) - float64((8-2*math.Pi)*math.Max(0, sec.R-wall))
+	case section.WeldedBox:
+		return 2 * (sec.H - 2*sec.Tf + sec.B - 2*sec.Tw)
+	case section.ChordSet:
+		_, rest, _ := strings.Cut(sec.Designation, "x ")
+		name, _, _ := strings.Cut(rest, " @ ")
+		if chord, err := section.Find(name); err == nil {
+			return float64(sec.Chords) * inside(&chord)
+		}
+	}
+	return 0
 }
 
 // Net returns the drawn mass of all pieces of the row in kg: nominal mass per

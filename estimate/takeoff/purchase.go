@@ -23,7 +23,8 @@ type SectionPlan struct {
 	Net                float64 // kg, of the pieces
 	Purchased          float64 // kg, of the stock: its length times kg/m
 	Plan               cutting.Plan
-	Split              []string // pieces that were first cut into parts, in words
+	Split              []string // pieces that are made of several, in words
+	ShopJoints         int      // butt joints in pieces longer than the longest stock
 }
 
 // A hint is looked for where a section has at most hintRows rows: it takes one plan
@@ -37,8 +38,8 @@ const (
 // Purchase makes the cutting plans that the settings ask for, sorted by section and
 // grade: first fit, or least stock with a proven bound. It returns none where steel
 // is bought with the waste allowance. Rows by mass, plate, and sections welded from
-// plates have no plan. A piece that is delivered in parts is cut as these. The error
-// names the section; cancelling the context is an error too.
+// plates have no plan. A piece that is delivered in parts is cut as these, a part that
+// is longer than the longest stock as equal pieces that the shop joins. The error names the section; cancelling the context is an error too.
 func Purchase(ctx context.Context, pieces []Piece, s Settings) ([]SectionPlan, error) {
 	if s.Purchase != schedule.PurchaseFirstFit && s.Purchase != schedule.PurchaseLeastStock {
 		return nil, nil
@@ -93,10 +94,11 @@ func (s Settings) cut(ctx context.Context, lot []Piece) (SectionPlan, error) {
 	}
 	for _, p := range lot {
 		out.Net += p.Net()
-		n := Parts(p, s)
+		n := Parts(p, s) * bars(p, s)
 		if n > 1 {
-			out.Split = append(out.Split, fmt.Sprintf("%s: each piece of %s m is cut as %s", p.Member.Mark, plain(p.Member.Length, 3), splitWords(n, p.Member.Length)))
+			out.Split = append(out.Split, p.Member.Mark+": "+cutWords(p, s))
 		}
+		out.ShopJoints += ShopJoints(p, s)
 		problem.Pieces = append(problem.Pieces, cutting.Piece{Mark: p.Member.Mark, Length: tenths(p.Member.Length / float64(n)), Count: p.Member.Quantity * n})
 	}
 	if len(problem.Pieces) > cutting.MaxPieceRows {
@@ -142,12 +144,27 @@ func merge(rows []cutting.Piece) []cutting.Piece {
 func tenths(m float64) int64 { return int64(math.Round(m * 1e4)) }
 
 // splitWords says what it takes to deliver a length in n parts.
-func splitWords(n int, length float64) string {
-	splices := "1 site splice"
+func splitWords(n int, length float64) string { return joinWords("site splice", n, length) }
+
+func joinWords(joint string, n int, length float64) string {
 	if n != 2 {
-		splices = strconv.Itoa(n-1) + " site splices"
+		joint += "s"
 	}
-	return fmt.Sprintf("%s into %d pieces of %s m", splices, n, plain(length/float64(n), 3))
+	return fmt.Sprintf("%d %s into %d pieces of %s m", n-1, joint, n, plain(length/float64(n), 3))
+}
+
+// cutWords says of which pieces those of the row are made.
+func cutWords(p Piece, s Settings) string {
+	n, k := Parts(p, s), bars(p, s)
+	part := p.Member.Length / float64(n)
+	words := fmt.Sprintf("each piece of %s m is cut as ", plain(p.Member.Length, 3))
+	switch {
+	case k == 1:
+		return words + splitWords(n, p.Member.Length)
+	case n == 1:
+		return words + joinWords("shop butt joint", k, part)
+	}
+	return words + splitWords(n, p.Member.Length) + ", each of them as " + joinWords("shop butt joint", k, part)
 }
 
 // plain writes a number with at most so many decimals.

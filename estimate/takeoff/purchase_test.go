@@ -136,6 +136,20 @@ func TestLongPiecesAreSplitFirst(t *testing.T) {
 	}
 }
 
+// 13 m fit a vehicle of 13.6 m but no bar of 12 m: 2 pieces of 6.5 m; 26 m go in 2 parts.
+func TestPiecesLongerThanStockAreJoinedInTheShop(t *testing.T) {
+	plans := purchase(t, []Piece{beam("B1", 2, 13), beam("B2", 1, 26)}, stocked(schedule.PurchaseFirstFit, 6, 12))
+	if diff := cmp.Diff([]string{
+		"B1: each piece of 13 m is cut as 1 shop butt joint into 2 pieces of 6.5 m",
+		"B2: each piece of 26 m is cut as 1 site splice into 2 pieces of 13 m, each of them as 1 shop butt joint into 2 pieces of 6.5 m",
+	}, plans[0].Split); diff != "" {
+		t.Errorf("split (-want +got):\n%s", diff)
+	}
+	if p := plans[0]; p.ShopJoints != 4 || p.Plan.Pieces != 8 || p.Plan.StockLength != 8*120_000 || !near(p.Plan.Yield, 6.5/12) {
+		t.Errorf("%d joints, %d pieces out of %d tenths of a mm, yield %g; want 4, 8 out of 96 m, 0.542", p.ShopJoints, p.Plan.Pieces, p.Plan.StockLength, p.Plan.Yield)
+	}
+}
+
 func TestGradesAreCutApart(t *testing.T) {
 	other := beam("B2", 1, 6)
 	other.Grade = "S355"

@@ -44,24 +44,40 @@ func or(own, job string) string {
 }
 
 // Parts returns in how many equal parts one piece of the row is delivered: as few
-// as the longest stock length and the vehicle allow. Rows by mass are made up of
-// shorter parts anyway and count as one.
-func Parts(p Piece, s Settings) int {
-	most := s.Limits.Vehicle.Length
-	if n := len(s.Stock); n > 0 {
-		if longest := slices.Max(s.Stock); !(most > 0) || longest < most {
-			most = longest
-		}
-	}
-	if !p.sized() || !(most > 0) || !(p.Member.Length > most) {
+// as the vehicle allows.
+func Parts(p Piece, s Settings) int { return inParts(p.Member.Length, s.Limits.Vehicle.Length) }
+
+// inParts returns into how few equal parts of at most most a length goes; most of 0
+// is no limit.
+func inParts(length, most float64) int {
+	if !(most > 0) || !(length > most) {
 		return 1
 	}
-	return int(min(math.Ceil(p.Member.Length/most-1e-9), 1e6))
+	return int(min(math.Ceil(length/most-1e-9), 1e6))
 }
 
 // Splices returns the site splices of all pieces of the row: one fewer than parts
-// in each.
-func Splices(p Piece, s Settings) int { return p.Member.Quantity * (Parts(p, s) - 1) }
+// in each. The parts of rows by mass are clipped or bolted within the allowance of
+// their connection class.
+func Splices(p Piece, s Settings) int {
+	if !p.sized() {
+		return 0
+	}
+	return p.Member.Quantity * (Parts(p, s) - 1)
+}
+
+// ShopJoints returns the butt joints that the shop makes in all pieces of the row:
+// one fewer in each delivered part than the bars of the longest stock length that
+// it takes. Only what is cut from bars has any.
+func ShopJoints(p Piece, s Settings) int { return parts(p, s) * (bars(p, s) - 1) }
+
+// bars returns how many equal pieces one delivered part of the row is cut as.
+func bars(p Piece, s Settings) int {
+	if !p.fromBars() || len(s.Stock) == 0 {
+		return 1
+	}
+	return inParts(p.Member.Length/float64(Parts(p, s)), slices.Max(s.Stock))
+}
 
 // parts returns the delivered parts of all pieces of the row.
 func parts(p Piece, s Settings) int { return p.Member.Quantity * Parts(p, s) }

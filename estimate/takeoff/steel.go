@@ -82,8 +82,8 @@ func (m *steelSum) work(b *builder, a Allowances, s Settings, tonnes float64, de
 	}
 	m.ship(b, a, s, delivered)
 	b.haul(a, s, tonnes, delivered)
-	b.put(ratebook.CraneDays, m.total(func(p Piece) float64 { return float64(parts(p, s)) }), []Allowance{n.LiftDays},
-		"lifts, one for each delivered part, × days per lift", m.splitIDs(s)...)
+	b.put(ratebook.CraneDays, m.total(func(p Piece) float64 { return float64(parts(p, s)) }), []Allowance{a.Growth, n.LiftDays},
+		"lifts, one for each delivered part, × growth × days per lift", m.splitIDs(s)...)
 	if erected {
 		b.weeks(n, tonnes, with(delivered, perTonne))
 	}

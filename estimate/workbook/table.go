@@ -2,6 +2,8 @@ package workbook
 
 import (
 	"fmt"
+	"maps"
+	"slices"
 	"strconv"
 	"strings"
 	"unicode"
@@ -114,6 +116,9 @@ func (p *page) headline(d document.Document) {
 	if d.Carbon != nil {
 		p.row("carbon", fmt.Sprintf("%s kg CO₂e, %.4g for each delivered tonne; %s", d.Carbon.Total, float64(d.Carbon.PerTonne), carbonModules(d.Carbon)))
 	}
+	if words := shippingWords(d.Shipping); words != "" {
+		p.row("shipping", words)
+	}
 	if t.Reserve.Sign() > 0 {
 		p.row("reserve", t.Reserve.String()+" held outside the range by who approves")
 	}
@@ -125,7 +130,7 @@ func (p *page) headline(d document.Document) {
 		if i == 0 {
 			label = "firm up next"
 		}
-		if i < firmest && s.Narrowing > 0 {
+		if i < firmest && s.Narrowing > 2*s.NarrowingSE && s.Narrowing > 0 {
 			p.row(label, fmt.Sprintf("%s: narrows P10 to P90 by %s, %.0f %% of the variance", s.Assumption, money(float64(s.Narrowing)), 100*float64(s.Share)))
 		}
 	}
@@ -137,6 +142,27 @@ func (p *page) headline(d document.Document) {
 // firmest is how many assumptions the headline names that would narrow the range
 // most.
 const firmest = 3
+
+// shippingWords sums up how the pieces travel, and which do not fit.
+func shippingWords(s document.Shipping) string {
+	vehicles, splices, permits := 0, 0, 0
+	for _, l := range s.Loads {
+		vehicles, splices, permits = vehicles+l.Vehicles, splices+l.Splices, permits+l.Permits
+	}
+	if vehicles == 0 {
+		return ""
+	}
+	out := fmt.Sprintf("vehicles by group %d, permit loads %d, site splices %d", vehicles, permits, splices)
+	marks := map[string]bool{}
+	for _, b := range s.Breaches {
+		marks[b.Mark] = true
+	}
+	if len(marks) > 0 {
+		names := slices.Sorted(maps.Keys(marks))
+		out += fmt.Sprintf("; rows that do not fit an envelope: %s", strings.Join(names, ", "))
+	}
+	return out
+}
 
 func carbonModules(c *document.Carbon) string {
 	var out []string

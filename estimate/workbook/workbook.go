@@ -106,7 +106,14 @@ func XLSX(d document.Document) ([]byte, error) {
 	return b.Bytes()
 }
 
+// firstLive is the engine version from which on documents state what live formulas
+// need.
+const firstLive = 2
+
 func newBook(d document.Document) (*book, error) {
+	if d.EngineVersion < firstLive {
+		return nil, document.ErrEarlier
+	}
 	_, sum, err := d.Canonical()
 	if err != nil {
 		return nil, err

@@ -3,6 +3,7 @@ package workbook
 import (
 	"bytes"
 	"context"
+	"errors"
 	"strconv"
 	"strings"
 	"testing"
@@ -326,5 +327,17 @@ func TestCSV(t *testing.T) {
 	}, "\r\n")
 	if diff := cmp.Diff(want, string(got)); diff != "" {
 		t.Error(diff)
+	}
+}
+
+// An estimate of the first engine does not state what live formulas need: it is
+// refused by name, never written with holes.
+func TestAnEarlierEstimateIsRefusedByName(t *testing.T) {
+	d := brackwater(t)
+	d.EngineVersion = 1
+	for name, write := range map[string]func(document.Document) ([]byte, error){"XLSX": XLSX, "CSV": CSV} {
+		if _, err := write(d); !errors.Is(err, document.ErrEarlier) {
+			t.Errorf("%s: got %v, want %v", name, err, document.ErrEarlier)
+		}
 	}
 }
