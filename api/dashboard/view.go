@@ -27,6 +27,11 @@ type estimateView struct {
 	Mean        percentileRow
 	Method      string
 	Warnings    []string
+	Moves       []sensitivityRow
+	MovesMethod string
+	Risks       []riskRow
+	Carbon      []carbonRow
+	Class       string // what the estimate class rests on
 	Categories  []categoryRow
 	Total       categoryRow
 	Groups      []groupRow
@@ -122,6 +127,7 @@ func newEstimateView(d document.Document) *estimateView {
 		Findings: newFindings(d.Findings), Assumptions: newAssumptions(d.Assumptions),
 		Inclusions: d.Inclusions, Exclusions: d.Exclusions, Notes: d.Notes,
 	}
+	v.Moves, v.MovesMethod, v.Risks, v.Carbon, v.Class = sensitivities(d), d.Range.SensitivityMethod, risks(d), carbon(d), d.Class.Why
 	v.Categories, v.Total = categories(d)
 	v.Groups, v.AllGroups, v.MoreGroups = groups(d)
 	return v

@@ -14,6 +14,7 @@ import (
 	"spanwright/api/localpg"
 	"spanwright/api/service"
 	"spanwright/api/store"
+	"spanwright/estimate/ratebook"
 	"spanwright/testdata"
 )
 
@@ -145,7 +146,7 @@ func loadDemo(ctx context.Context, s *service.Service, token string) error {
 	}{{"brackwater.xlsx", testdata.InnerSupport}, {"brackwater-end-tower.xlsx", testdata.EndTower}} {
 		posting := service.Posting{Name: w.name, ContentType: xlsxType, Data: w.data}
 		key := service.Idempotency{Key: "demo " + posting.SHA256(), Fingerprint: []byte(posting.SHA256())[:32]}
-		if _, err := s.Intake(ctx, a, service.Intake{Posting: posting}, key); err != nil {
+		if _, err := s.Intake(ctx, a, service.Intake{Posting: posting, BookName: ratebook.KindUnitRate}, key); err != nil {
 			return fmt.Errorf("loading %s: %w", w.name, err)
 		}
 	}
@@ -163,7 +164,7 @@ Spanwright is ready, with the invented Brackwater job. Ctrl-C stops it.
 Post a schedule and read the range:
 
   curl -sS -H 'Authorization: Bearer %[2]s' \
-    -F file=@testdata/brackwater.xlsx -F project='My first quay' \
+    -F file=@testdata/brackwater.xlsx -F project='My first quay' -F rate_book=unit-rate \
     http://%[1]s/v1/intake
 
 `, address, token)

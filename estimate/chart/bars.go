@@ -2,6 +2,7 @@ package chart
 
 import (
 	"fmt"
+	"slices"
 	"sort"
 	"strings"
 
@@ -153,7 +154,7 @@ func Tonnage(d document.Document) Drawing {
 	b := &bars{Drawing: newDrawing("tonnage", "Delivered tonnage by group"),
 		columns: []string{"net, t", "delivered, t"},
 		note:    "Solid: net. Outlined: connections, bolts and growth, which make it the delivered tonnage."}
-	groups := append([]document.Group{}, d.Groups...)
+	groups := slices.DeleteFunc(slices.Clone(d.Groups), func(g document.Group) bool { return g.Delivered.Sign() == 0 && g.Net.Sign() == 0 }) // concrete, lumps
 	sort.SliceStable(groups, func(i, j int) bool {
 		if c := groups[i].Delivered.Cmp(groups[j].Delivered); c != 0 {
 			return c > 0

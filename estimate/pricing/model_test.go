@@ -6,6 +6,7 @@ import (
 	"math/big"
 	"math/rand/v2"
 	"slices"
+	"strings"
 	"testing"
 
 	"github.com/google/go-cmp/cmp"
@@ -280,6 +281,33 @@ func TestInputsKeepTheirGroups(t *testing.T) {
 	want := map[string]string{"allowance/growth": "hours", "allowance/shop hours": "", "exchange/USD": "money", "multiplier/height/project": "site", "rate/labour": "labour"}
 	if diff := cmp.Diff(want, got); diff != "" {
 		t.Error(diff)
+	}
+}
+
+// The stream of a conversion is that of its input; a rate, a multiplier and an
+// allowance are streams of their own.
+func TestInputsKeepTheirStreams(t *testing.T) {
+	growth := func(id, value string) Conversion {
+		v := decimal(t, value)
+		return Conversion{Name: EscalationToSpend, ID: id, Value: v, Spread: spread.NewTriangular(1, v.Float64(), 2), Group: "growth", Stream: "growth/labour"}
+	}
+	r := euros(t, rate("labour", ratebook.Fabrication, ratebook.ShopHours, 60), rate("site", ratebook.Erection, ratebook.ShopHours, 50))
+	r.Multipliers = []ratebook.Multiplier{project("height", 1.1, ratebook.Fabrication)}
+	r.Escalation = map[string][]Conversion{ratebook.Fabrication: {growth("escalation/labour/2027", "1.03")}, ratebook.Erection: {growth("escalation/labour/2028", "1.06")}}
+	got := map[string]string{}
+	for _, in := range price(t, []takeoff.Item{item(t, "A", hours, "10.0")}, r).Model.Inputs {
+		got[in.ID] = in.Stream
+	}
+	want := map[string]string{"allowance/growth": "", "allowance/shop hours": "", "multiplier/height/project": "", "rate/labour": "", "rate/site": "",
+		"escalation/labour/2027": "growth/labour", "escalation/labour/2028": "growth/labour"}
+	if diff := cmp.Diff(want, got); diff != "" {
+		t.Error(diff)
+	}
+	other := growth("escalation/labour/2027", "1.03")
+	other.Stream = "growth/other"
+	r.Escalation[ratebook.Erection] = []Conversion{other}
+	if _, err := Price([]takeoff.Item{item(t, "A", hours, "10.0")}, r); err == nil || !strings.Contains(err.Error(), "streams") {
+		t.Errorf("one input in two streams: error %v", err)
 	}
 }
 

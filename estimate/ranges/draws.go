@@ -2,8 +2,8 @@ package ranges
 
 import "math/bits"
 
-// uniforms gives the uniform numbers of one assumption or common factor: a
-// function of (seed, id, replicate, index) and of the trials in a replicate.
+// uniforms gives the uniform numbers of one assumption, or stream of them, or common
+// factor: a function of (seed, id, replicate, index) and of the trials in a replicate.
 // Within a replicate they are a Latin hypercube sample (McKay, Beckman, Conover
 // 1979, Technometrics 21): each of the n strata of width 1/n is hit once, in an
 // order of the stream's own, at a random place inside. It takes the part of the

@@ -2,20 +2,25 @@ package ranges
 
 import "math"
 
-// lever is an input that is not fixed, and what the total is made of it.
+// lever is a belief that is not fixed, and what the total is made of it.
 type lever struct {
-	input     int
-	fixed     [fixings]float64         // its P10, P50, P90
-	edges     [sensitivityBins]float64 // upper ends of its classes
-	center    float64                  // mean, taken off the values in the classes
+	members   []member                 // its inputs that are not fixed; at least one
+	edges     [sensitivityBins]float64 // upper ends of its classes, of the first member
+	center    float64                  // mean of the first member, taken off the values in the classes
 	classes   []class
-	slope     []float64           // d Σ terms / d x of this block
-	extra     *[fixings][]float64 // change of Σ terms beyond the slope; nil for none
+	extra     *[fixings][]float64 // change of Σ terms beyond the slopes; nil for none
 	overall   *[fixings][]float64 // product of the overall factors; nil where it is not among them
-	risks     []int               // those whose impact it is
 	swing     float64
 	narrowed  []float64 // total at its median, by trial
 	duplicate bool      // twice in the term at hand
+}
+
+// member is an input of a lever.
+type member struct {
+	input int
+	fixed [fixings]float64 // its P10, P50, P90
+	slope []float64        // d Σ terms / d x of this block
+	risks []int            // those whose impact it is
 }
 
 // The values at which a lever is fixed.
@@ -34,8 +39,11 @@ func newFixings() *[fixings][]float64 {
 
 // prepare computes the values at which a lever is fixed and its classes.
 func (l *lever) prepare(p *program, bins int) {
-	sampler := &p.inputs[l.input].sampler
-	l.fixed = [fixings]float64{sampler.FromUniform(0.1), sampler.FromUniform(0.5), sampler.FromUniform(0.9)}
+	for i := range l.members {
+		sampler := &p.inputs[l.members[i].input].sampler
+		l.members[i].fixed = [fixings]float64{sampler.FromUniform(0.1), sampler.FromUniform(0.5), sampler.FromUniform(0.9)}
+	}
+	sampler := &p.inputs[l.members[0].input].sampler
 	l.center = sampler.Mean()
 	for b := range l.edges {
 		l.edges[b] = math.Inf(1)
@@ -55,28 +63,11 @@ type riskResponse struct {
 
 // respond takes in a lever's block: swing, narrowed totals, classes.
 func (r *responder) respond(l *lever, c *columns, start, n int) {
-	x, total := c.values[l.input][:n], c.total[:n]
-	occurs := r.zero[:n]
-	if len(l.risks) > 0 {
-		occurs = r.after[:n]
-		clear(occurs)
-		for _, i := range l.risks {
-			for k, v := range c.occurs[i][:n] {
-				occurs[k] += v
-			}
-		}
-	}
 	narrowed, low, high := l.narrowed[start:start+n], r.backward[:n], r.scratch[:n]
 	for a, dst := range [fixings][]float64{low, narrowed, high} {
-		extra, overall := r.zero[:n], r.overall[:n]
-		if l.extra != nil {
-			extra = l.extra[a][:n]
-		}
-		if l.overall != nil {
-			overall = l.overall[a][:n]
-		}
-		r.total(dst, l, l.fixed[a], extra, overall, x, occurs)
+		r.total(dst, l, a, c)
 	}
+	x, total := c.values[l.members[0].input][:n], c.total[:n]
 	for k, v := range high {
 		l.swing += v - low[k]
 	}
@@ -85,15 +76,48 @@ func (r *responder) respond(l *lever, c *columns, start, n int) {
 	}
 }
 
-// total sets dst to the total with lever l fixed at value.
-func (r *responder) total(dst []float64, l *lever, value float64, extra, overall, x, occurs []float64) {
+// total sets dst to the total with lever l at a fixing.
+func (r *responder) total(dst []float64, l *lever, a int, c *columns) {
 	n := len(dst)
-	slope, sums, rest := l.slope[:n], r.sums[:n], r.rest[:n]
-	extra, overall, x, occurs = extra[:n], overall[:n], x[:n], occurs[:n]
-	for k := range dst {
-		move := value - x[k]
-		dst[k] = float64((sums[k]+float64(move*slope[k])+extra[k])*overall[k]) + (rest[k] + float64(move*occurs[k]))
+	sums, rest, extra, overall := r.sums[:n], r.rest[:n], r.zero[:n], r.overall[:n]
+	moved, cost := r.moved[:n], r.cost[:n] // of Σ terms, of the risks
+	for i := range l.members {
+		m := &l.members[i]
+		value, slope, x, occurs := m.fixed[a], m.slope[:n], c.values[m.input][:n], r.occurrences(m, c, n)
+		if i == 0 {
+			clear(moved)
+			clear(cost)
+		}
+		for k, v := range x {
+			move := value - v
+			moved[k] += float64(move * slope[k])
+			cost[k] += float64(move * occurs[k])
+		}
 	}
+	if l.extra != nil {
+		extra = l.extra[a][:n]
+	}
+	if l.overall != nil {
+		overall = l.overall[a][:n]
+	}
+	for k := range dst {
+		dst[k] = float64((sums[k]+moved[k]+extra[k])*overall[k]) + (rest[k] + cost[k])
+	}
+}
+
+// occurrences returns how many risks whose impact m is occur in each trial.
+func (r *responder) occurrences(m *member, c *columns, n int) []float64 {
+	if len(m.risks) == 0 {
+		return r.zero[:n]
+	}
+	occurs := r.after[:n]
+	clear(occurs)
+	for _, i := range m.risks {
+		for k, v := range c.occurs[i][:n] {
+			occurs[k] += v
+		}
+	}
+	return occurs
 }
 
 // class returns the class of a value, by four comparisons.

@@ -21,7 +21,8 @@ type Preview struct {
 	BasePercentile         float64
 }
 
-// Preview returns the range with some spreads changed, on the stored draws. None
+// Preview returns the range with some spreads changed, on the stored draws; the others
+// of a changed assumption's stream keep theirs. None
 // changed is the model's own range. Only the terms that hold a changed assumption
 // are evaluated again.
 //

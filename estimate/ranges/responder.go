@@ -8,13 +8,14 @@ import (
 
 // responder works out the total with each lever fixed, on the trials of one
 // replicate. The sum of the terms is linear in a lever that is in no product
-// twice and below no minimum: then the products of the other factors, by prefixes
+// twice and below no minimum, in each of its inputs where it has several: then the products of the other factors, by prefixes
 // and suffixes, answer for any value without another evaluation.
 type responder struct {
 	p          *program
 	base       float64
 	levers     []lever
 	of         []int // input → lever, −1 for none
+	as         []int // input → its place among the members of its lever
 	trials     int
 	at         int       // trials seen
 	totals     []float64 // by trial
@@ -25,26 +26,28 @@ type responder struct {
 	sums, rest []float64 // Σ terms; cost of the risks
 	overall    []float64
 	zero       []float64
+	moved      []float64
+	cost       []float64
 	scratch    []float64
+	held       [][]float64 // columns of fixed values, and those that they stand for
+	was        [][]float64
 	window     [][]float64
 }
 
 // newResponder allocates storage for one replicate.
 func newResponder(p *program, s Settings, base float64) *responder {
-	r := &responder{p: p, base: base, of: make([]int, len(p.inputs))}
-	for i := range p.inputs {
-		r.of[i] = -1
-		if !p.inputs[i].sampler.Fixed() {
-			r.of[i] = len(r.levers)
-			r.levers = append(r.levers, lever{input: i})
-		}
-	}
+	r := &responder{p: p, base: base}
+	widest := r.findLevers()
 	count := max(1, len(r.levers)+len(p.risks))
 	r.trials = min(s.Trials, sensitivityTrials, max(sensitivityLeastTrials, sensitivityCells/count))
-	slopes, narrowed := matrix(len(r.levers), blockSize), matrix(count, r.trials)
+	slopes, narrowed := matrix(len(p.inputs), blockSize), matrix(count, r.trials)
 	bins := max(1, min(r.trials/32, sensitivityBins))
 	for i := range r.levers {
-		r.levers[i].slope, r.levers[i].narrowed = slopes[i], narrowed[i]
+		for j := range r.levers[i].members {
+			m := &r.levers[i].members[j]
+			m.slope = slopes[m.input]
+		}
+		r.levers[i].narrowed = narrowed[i]
 		r.levers[i].prepare(p, bins)
 	}
 	longest := 0
@@ -59,15 +62,40 @@ func newResponder(p *program, s Settings, base float64) *responder {
 	}
 	for i, k := range p.risks {
 		if l := r.of[k.impact]; l >= 0 {
-			r.levers[l].risks = append(r.levers[l].risks, i)
+			m := &r.levers[l].members[r.as[k.impact]]
+			m.risks = append(m.risks, i)
 		}
 		r.risk = append(r.risk, riskResponse{narrowed: narrowed[len(r.levers)+i]})
 	}
 	r.totals, r.forward = make([]float64, r.trials), matrix(longest+2, blockSize)
-	m := matrix(7, blockSize)
-	r.backward, r.after, r.sums, r.rest, r.overall, r.zero, r.scratch = m[0], m[1], m[2], m[3], m[4], m[5], m[6]
+	m := matrix(9, blockSize)
+	r.backward, r.after, r.sums, r.rest, r.overall, r.zero, r.scratch, r.moved, r.cost = m[0], m[1], m[2], m[3], m[4], m[5], m[6], m[7], m[8]
+	r.held, r.was = matrix(widest, blockSize), make([][]float64, widest)
 	r.window = make([][]float64, len(p.inputs))
 	return r
+}
+
+// findLevers makes the levers, in the order of the beliefs, and returns the largest
+// number of members.
+func (r *responder) findLevers() int {
+	r.of, r.as = make([]int, len(r.p.inputs)), make([]int, len(r.p.inputs))
+	at, widest := make([]int, len(r.p.beliefs)), 0
+	for b := range at {
+		if r.p.beliefs[b].drawn {
+			at[b] = len(r.levers)
+			r.levers = append(r.levers, lever{})
+		}
+	}
+	for i := range r.p.inputs {
+		r.of[i] = -1
+		if in := &r.p.inputs[i]; !in.sampler.Fixed() {
+			l := &r.levers[at[in.belief]]
+			r.of[i], r.as[i] = at[in.belief], len(l.members)
+			l.members = append(l.members, member{input: i})
+			widest = max(widest, len(l.members))
+		}
+	}
+	return widest
 }
 
 // prepareTerm finds the levers of t that are not linear in it.
@@ -77,20 +105,20 @@ func (r *responder) prepareTerm(t *term) {
 		if l < 0 || r.levers[l].extra != nil {
 			continue
 		}
-		if t.least > 0 || uses(t.factors[i+1:], f.Input) || uses(t.after, f.Input) {
+		if t.least > 0 || r.uses(t.factors[i+1:], l) || r.uses(t.after, l) {
 			r.levers[l].extra = newFixings()
 		}
 	}
 	for i, f := range t.after {
-		if l := r.of[f.Input]; l >= 0 && r.levers[l].extra == nil && uses(t.after[i+1:], f.Input) {
+		if l := r.of[f.Input]; l >= 0 && r.levers[l].extra == nil && r.uses(t.after[i+1:], l) {
 			r.levers[l].extra = newFixings()
 		}
 	}
 }
 
-// uses reports whether a factor is of the input.
-func uses(factors []pricing.Factor, input int) bool {
-	return slices.ContainsFunc(factors, func(f pricing.Factor) bool { return f.Input == input })
+// uses reports whether a factor is of the lever.
+func (r *responder) uses(factors []pricing.Factor, l int) bool {
+	return slices.ContainsFunc(factors, func(f pricing.Factor) bool { return r.of[f.Input] == l })
 }
 
 // block takes in trials start to start + n of the replicate, evaluated in c.
@@ -133,7 +161,9 @@ func (r *responder) clear(n int) {
 	clear(r.rest[:n])
 	for i := range r.levers {
 		l := &r.levers[i]
-		clear(l.slope[:n])
+		for _, m := range l.members {
+			clear(m.slope[:n])
+		}
 		if l.extra != nil {
 			for _, col := range l.extra {
 				clear(col[:n])
@@ -142,16 +172,19 @@ func (r *responder) clear(n int) {
 	}
 }
 
-// fix runs f with lever i's column set to its value at a fixing.
+// fix runs f with the columns of lever i set to their values at a fixing.
 func (r *responder) fix(i, a, n int, f func()) {
-	l := &r.levers[i]
-	was := r.window[l.input]
-	for k := range r.scratch[:n] {
-		r.scratch[k] = l.fixed[a]
+	for j, m := range r.levers[i].members {
+		r.was[j] = r.window[m.input]
+		for k := range r.held[j][:n] {
+			r.held[j][k] = m.fixed[a]
+		}
+		r.window[m.input] = r.held[j]
 	}
-	r.window[l.input] = r.scratch
 	f()
-	r.window[l.input] = was
+	for j, m := range r.levers[i].members {
+		r.window[m.input] = r.was[j]
+	}
 }
 
 // term adds t to the sums, its derivatives to the slopes, and to extra what is
@@ -214,7 +247,7 @@ func (r *responder) backwards(factors []pricing.Factor, at, n int) {
 		f := factors[j]
 		from, x, o := r.forward[at+j][:n], r.window[f.Input][:n], f.Offset
 		if l := r.of[f.Input]; l >= 0 && !r.levers[l].duplicate {
-			slope := r.levers[l].slope[:n]
+			slope := r.levers[l].members[r.as[f.Input]].slope[:n]
 			for k, v := range from {
 				slope[k] += float64(v * back[k])
 			}
@@ -233,7 +266,7 @@ func (r *responder) belowLeast(t *term, charged []float64, n int) {
 		from, x := r.forward[j][:n], r.window[f.Input][:n]
 		if l := r.of[f.Input]; l >= 0 && !r.levers[l].duplicate {
 			for a, col := range r.levers[l].extra {
-				value := f.Offset + r.levers[l].fixed[a]
+				value := f.Offset + r.levers[l].members[r.as[f.Input]].fixed[a]
 				for k, v := range from {
 					fixed := max(float64(float64(v*back[k])*value), t.least)
 					col[k] += float64((fixed - charged[k]) * after[k])
@@ -255,7 +288,7 @@ func (r *responder) mark(t *term) []int {
 			if l < 0 || r.levers[l].extra == nil || r.levers[l].duplicate {
 				continue
 			}
-			if uses(factors[i+1:], f.Input) || uses(others, f.Input) {
+			if r.uses(factors[i+1:], l) || r.uses(others, l) {
 				r.levers[l].duplicate = true
 				twice = append(twice, l)
 			}

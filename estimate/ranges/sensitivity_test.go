@@ -137,8 +137,12 @@ func tangled() pricing.Model {
 }
 
 // Reference: the model evaluated again with the input's column replaced.
-func TestRespondersAgainstEvaluation(t *testing.T) {
-	m := tangled()
+func TestRespondersAgainstEvaluation(t *testing.T) { checkResponders(t, tangled(), 11) }
+
+// checkResponders compares the levers of a model, of the given number, with its
+// evaluation.
+func checkResponders(t *testing.T, m pricing.Model, levers int) {
+	t.Helper()
 	s, err := Settings{Seed: 4, Trials: 200, Correlation: map[string]float64{"g": 0.3}}.withDefaults()
 	if err != nil {
 		t.Fatal(err)
@@ -154,8 +158,8 @@ func TestRespondersAgainstEvaluation(t *testing.T) {
 	p.evaluate(d.columns, 200)
 	c := d.columns
 	r.block(c, 0, 200)
-	if len(r.levers) != 11 {
-		t.Fatalf("%d levers, want 11 of 12 inputs", len(r.levers))
+	if len(r.levers) != levers {
+		t.Fatalf("%d levers, want %d of 12 inputs", len(r.levers), levers)
 	}
 	again := p.newColumns(200)
 	for i := range r.levers {
@@ -163,19 +167,21 @@ func TestRespondersAgainstEvaluation(t *testing.T) {
 		fixed := func(a int) []float64 {
 			copy(again.values, c.values)
 			copy(again.occurs, c.occurs)
-			again.values[l.input] = slices.Repeat([]float64{l.fixed[a]}, 200)
+			for _, m := range l.members {
+				again.values[m.input] = slices.Repeat([]float64{m.fixed[a]}, 200)
+			}
 			p.evaluate(again, 200)
 			return again.total
 		}
 		for k, want := range fixed(at50) {
 			if got := l.narrowed[k]; math.Abs(got-want) > 1e-9*math.Abs(want) {
-				t.Fatalf("%s at its median, trial %d: %v, want %v", p.inputs[l.input].id, k, got, want)
+				t.Fatalf("%s at its median, trial %d: %v, want %v", p.inputs[l.members[0].input].id, k, got, want)
 			}
 		}
 		swing := sum(fixed(at90), 0)
 		swing -= sum(fixed(at10), 0)
 		if math.Abs(l.swing-swing) > 1e-8*math.Abs(swing)+1e-6 {
-			t.Errorf("%s: swing %v, want %v", p.inputs[l.input].id, l.swing, swing)
+			t.Errorf("%s: swing %v, want %v", p.inputs[l.members[0].input].id, l.swing, swing)
 		}
 	}
 }

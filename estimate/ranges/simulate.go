@@ -2,7 +2,7 @@
 // into the distribution of the total.
 //
 //	pricing.Model, Settings → compile: samplers, groups, terms by category
-//	(seed, id, replicate, index) → uniforms → values, one column per assumption
+//	(seed, stream, replicate, index) → uniforms → values, one column per assumption
 //	columns of values → evaluate → totals, categories and risks of each trial
 //	sorted replicates → percentiles, standard errors, curve, moment checks → Result
 //	the same columns, one assumption fixed → Sensitivities
@@ -24,7 +24,8 @@ import (
 )
 
 // Simulate computes the range of m's total under s, in the currency of m. One
-// draw per assumption per trial is shared by every term that uses it; members of
+// draw per assumption per trial is shared by every term that uses it, and by all
+// assumptions of its stream, each with its own spread; members of
 // a group have the rank correlation of s between any two, members of two groups
 // about the geometric mean of theirs, and assumptions of s.Matrix those of the
 // matrix. progress, where not nil, is called with the trials done and their total

@@ -149,8 +149,15 @@ func (t *Tracer) perUnit(l *document.Line) string {
 	if len(l.Of) > 0 || l.Unit == "" {
 		return ""
 	}
-	return t.doc.Job.Currency + "/" + l.Unit
+	unit := l.Unit
+	if one, ok := singular[unit]; ok {
+		unit = one
+	}
+	return t.doc.Job.Currency + "/" + unit
 }
+
+// singular are the units of quantities that are counted, as a price has them.
+var singular = map[string]string{"days": "day", "weeks": "week", "loads": "load", "pcs": "piece"}
 
 // lineQuantity is what a line multiplies: counted, the sum of other lines, or one
 // lump.
