@@ -93,38 +93,12 @@ func fold(text string) string {
 }
 
 // nearMisses returns up to three accepted words within a third of their letters,
-// the nearest first.
+// the nearest first; what stands in brackets does not count.
 func nearMisses(text string, accepted []string) []string {
-	const most, longest = 3, 60
-	type candidate struct {
-		word     string
-		distance int
-	}
-	found := fold(text)
-	if len(found) > longest {
-		return nil
-	}
-	var list []candidate
-	for _, word := range accepted {
+	return spelling.Near(text, accepted, func(word string) string {
 		name, _ := cutBrackets(word)
-		letters := fold(name)
-		if d := spelling.Distance(found, letters); d <= max(2, len(letters)/3) && d < len(letters) && d < len(found) {
-			list = append(list, candidate{word, d})
-		}
-	}
-	slices.SortStableFunc(list, func(a, b candidate) int { return a.distance - b.distance })
-	var near []string
-	for _, c := range list[:min(most, len(list))] {
-		near = append(near, c.word)
-	}
-	return near
-}
-
-func didYouMean(near []string, otherwise string) string {
-	if len(near) == 0 {
-		return otherwise
-	}
-	return "did you mean " + strings.Join(near, " or ") + "?"
+		return fold(name)
+	})
 }
 
 // shorten cuts a text that a message repeats.
@@ -147,3 +121,6 @@ func fromUnit(found string, err error, wanted string) *complaint {
 	}
 	return &complaint{e.Text, e.Problem, wanted}
 }
+
+// didYouMean is the remedy that names near misses, else the fallback.
+func didYouMean(near []string, fallback string) string { return spelling.DidYouMean(near, fallback) }

@@ -68,12 +68,12 @@ func ReadJSON(data []byte, o Options) ([]Outturn, error) {
 	d := json.NewDecoder(bytes.NewReader(data))
 	d.UseNumber()
 	seen := false
-	err := eachKey(d, func(key string) error {
+	err := sheet.EachKey(d, func(key string) error {
 		if key != "outturns" || seen {
 			return fmt.Errorf("found the key %q; accepted is \"outturns\", once", shorten(key))
 		}
 		seen = true
-		return eachItem(d, func(i int) error { return r.item(d, i) })
+		return sheet.EachItem(d, func(i int) error { return r.item(d, i) })
 	})
 	if err == nil {
 		if _, last := d.Token(); !errors.Is(last, io.EOF) {
@@ -197,7 +197,7 @@ var branches = []string{"costs", "estimate", "estimate/base"}
 func flatten(d *json.Decoder, prefix string, depth int) ([]leaf, error) {
 	var leaves []leaf
 	seen := map[string]bool{}
-	err := eachKey(d, func(key string) error {
+	err := sheet.EachKey(d, func(key string) error {
 		path := prefix + strings.NewReplacer("~", "~0", "/", "~1").Replace(key)
 		if seen[key] {
 			leaves = append(leaves, leaf{path: path, isKey: true})
@@ -236,55 +236,4 @@ func cellOf(raw json.RawMessage) (sheet.Cell, error) {
 		return sheet.Cell{Kind: sheet.Boolean, Text: strings.ToUpper(string(raw))}, nil
 	}
 	return sheet.Cell{Kind: sheet.Number, Text: string(raw)}, nil
-}
-
-// eachKey calls fn at every key of the object that comes next; fn must read the
-// value.
-func eachKey(d *json.Decoder, fn func(key string) error) error {
-	if err := opens(d, '{', "an object in braces"); err != nil {
-		return err
-	}
-	for d.More() {
-		token, err := d.Token()
-		if err != nil {
-			return err
-		}
-		key, ok := token.(string)
-		if !ok {
-			return fmt.Errorf("found %v where a key is wanted", token)
-		}
-		if err := fn(key); err != nil {
-			return err
-		}
-	}
-	_, err := d.Token()
-	return err
-}
-
-// eachItem calls fn at every item of the array that comes next.
-func eachItem(d *json.Decoder, fn func(i int) error) error {
-	if err := opens(d, '[', "an array in square brackets"); err != nil {
-		return err
-	}
-	for i := 0; d.More(); i++ {
-		if err := fn(i); err != nil {
-			return err
-		}
-	}
-	_, err := d.Token()
-	return err
-}
-
-func opens(d *json.Decoder, want json.Delim, words string) error {
-	token, err := d.Token()
-	if errors.Is(err, io.EOF) {
-		return errors.New("the text ends early")
-	}
-	if err != nil {
-		return err
-	}
-	if token != want {
-		return fmt.Errorf("found %s where %s is wanted", shorten(fmt.Sprint(token)), words)
-	}
-	return nil
 }

@@ -32,26 +32,10 @@ import (
 type Progress func(stage string, done, total int)
 
 // Fault is one member that cannot be estimated as it stands.
-type Fault struct {
-	Mark    string
-	Problem string
-	Remedy  string
-}
+type Fault = takeoff.Fault
 
 // FaultsError lists every member that cannot be estimated, by mark.
-type FaultsError struct {
-	Faults []Fault
-}
-
-// Error names the first fault and how many there are.
-func (e *FaultsError) Error() string {
-	f := e.Faults[0]
-	s := fmt.Sprintf("member %s: %s; %s", f.Mark, f.Problem, f.Remedy)
-	if n := len(e.Faults) - 1; n > 0 {
-		s += fmt.Sprintf(" (and %d more)", n)
-	}
-	return s
-}
+type FaultsError = takeoff.FaultsError
 
 // RatesError reports rates or multipliers that cannot be priced together, such as
 // a product of more digits than a workbook can hold.
@@ -234,17 +218,13 @@ func (r *run) piecesOf(pick func(sizedMember) *section.Section) []takeoff.Piece 
 	return out
 }
 
-// takeoffError hands on what members lack as faults of theirs.
+// takeoffError hands on what members lack as it is.
 func takeoffError(err error) error {
-	var faults *takeoff.FaultsError
-	if !errors.As(err, &faults) {
-		return fmt.Errorf("take-off: %w", err)
+	var faults *FaultsError
+	if errors.As(err, &faults) {
+		return faults
 	}
-	out := &FaultsError{}
-	for _, f := range faults.Faults {
-		out.Faults = append(out.Faults, Fault{Mark: f.Mark, Problem: f.Problem, Remedy: f.Remedy})
-	}
-	return out
+	return fmt.Errorf("take-off: %w", err)
 }
 
 // knownClasses reports the members whose coating no rate of the book prices. A book

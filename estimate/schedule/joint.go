@@ -141,7 +141,7 @@ func jointKind(p jointText) (string, *complaint) {
 func jointList(raw string) ([]jointText, *complaint) {
 	d := newDecoder([]byte(raw))
 	var parts []jointText
-	err := eachItem(d, func(int) error {
+	err := sheet.EachItem(d, func(int) error {
 		p, err := jointObject(d)
 		parts = append(parts, p)
 		return err
@@ -160,7 +160,7 @@ func jointList(raw string) ([]jointText, *complaint) {
 func jointObject(d *json.Decoder) (jointText, error) {
 	var p jointText
 	seen := map[string]bool{}
-	err := eachKey(d, func(key string) error {
+	err := sheet.EachKey(d, func(key string) error {
 		if seen[key] {
 			return fmt.Errorf("the key %q stands twice", shorten(key))
 		}

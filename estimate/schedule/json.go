@@ -104,14 +104,14 @@ type table struct {
 func (t *table) survey(ctx context.Context, data []byte) error {
 	d := newDecoder(data)
 	seen := map[string]bool{}
-	err := eachKey(d, func(key string) error {
+	err := sheet.EachKey(d, func(key string) error {
 		if seen[key] {
 			return fmt.Errorf("the key %q stands twice", shorten(key))
 		}
 		seen[key] = true
 		switch key {
 		case jsonRows:
-			return eachItem(d, func(i int) error {
+			return sheet.EachItem(d, func(i int) error {
 				if err := ctx.Err(); err != nil {
 					return err
 				}
@@ -119,7 +119,7 @@ func (t *table) survey(ctx context.Context, data []byte) error {
 			})
 		case jsonJob:
 			t.job = true
-			return eachKey(d, func(key string) error {
+			return sheet.EachKey(d, func(key string) error {
 				c, err := readValue(d)
 				c.Column = 2
 				t.settings = append(t.settings, []sheet.Cell{{Column: 1, Kind: sheet.Text, Text: key}, c})
@@ -145,7 +145,7 @@ func (t *table) survey(ctx context.Context, data []byte) error {
 
 func (t *table) surveyRow(d *json.Decoder, row int) error {
 	seen := map[string]bool{}
-	return eachKey(d, func(key string) error {
+	return sheet.EachKey(d, func(key string) error {
 		if seen[key] {
 			t.report(sheet.Address{Sheet: jsonRows, Row: row}, shorten(key), shorten(key), "is a key that stands twice in the row", "leave one of them out")
 		}
@@ -191,17 +191,17 @@ func (t *table) rows(ctx context.Context, data []byte) error {
 		return err
 	}
 	d := newDecoder(data)
-	return eachKey(d, func(key string) error {
+	return sheet.EachKey(d, func(key string) error {
 		if key != jsonRows {
 			_, err := readValue(d)
 			return err
 		}
-		return eachItem(d, func(i int) error {
+		return sheet.EachItem(d, func(i int) error {
 			if err := ctx.Err(); err != nil {
 				return err
 			}
 			cells := make([]sheet.Cell, 0, len(t.keys))
-			err := eachKey(d, func(key string) error {
+			err := sheet.EachKey(d, func(key string) error {
 				c, err := readValue(d)
 				c.Column = t.columns[key]
 				cells = append(cells, c)
@@ -222,57 +222,6 @@ func newDecoder(data []byte) *json.Decoder {
 	d := json.NewDecoder(bytes.NewReader(data))
 	d.UseNumber()
 	return d
-}
-
-// eachKey calls fn at every key of the object that comes next; fn must read the
-// value.
-func eachKey(d *json.Decoder, fn func(key string) error) error {
-	if err := opens(d, '{', "an object in braces"); err != nil {
-		return err
-	}
-	for d.More() {
-		token, err := d.Token()
-		if err != nil {
-			return err
-		}
-		key, ok := token.(string)
-		if !ok {
-			return fmt.Errorf("found %v where a key is wanted", token)
-		}
-		if err := fn(key); err != nil {
-			return err
-		}
-	}
-	_, err := d.Token()
-	return err
-}
-
-// eachItem calls fn at every item of the array that comes next.
-func eachItem(d *json.Decoder, fn func(i int) error) error {
-	if err := opens(d, '[', "an array in square brackets"); err != nil {
-		return err
-	}
-	for i := 0; d.More(); i++ {
-		if err := fn(i); err != nil {
-			return err
-		}
-	}
-	_, err := d.Token()
-	return err
-}
-
-func opens(d *json.Decoder, want json.Delim, words string) error {
-	token, err := d.Token()
-	if err != nil {
-		if errors.Is(err, io.EOF) {
-			return errors.New("the text ends early")
-		}
-		return err
-	}
-	if token != want {
-		return fmt.Errorf("found %s where %s is wanted", shorten(fmt.Sprint(token)), words)
-	}
-	return nil
 }
 
 // readValue reads one value as a cell.

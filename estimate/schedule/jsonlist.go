@@ -22,7 +22,7 @@ func newJSONList(name string) *jsonList { return &jsonList{name: name, columns: 
 
 // survey takes in the array that comes next; a key that stands twice is reported.
 func (l *jsonList) survey(ctx context.Context, r *reader, d *json.Decoder) error {
-	return eachItem(d, func(i int) error {
+	return sheet.EachItem(d, func(i int) error {
 		if err := ctx.Err(); err != nil {
 			return err
 		}
@@ -33,7 +33,7 @@ func (l *jsonList) survey(ctx context.Context, r *reader, d *json.Decoder) error
 		row := i + 1
 		var cells []sheet.Cell
 		seen := map[string]bool{}
-		err := eachKey(d, func(key string) error {
+		err := sheet.EachKey(d, func(key string) error {
 			c, err := readValue(d)
 			if err != nil {
 				return err
