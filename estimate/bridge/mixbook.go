@@ -61,6 +61,10 @@ func allowances(out *ratebook.Book, base, a, b ratebook.Book, from func(Cause) b
 	n.Surface, n.LoadUse = figure(x.Surface, y.Surface, Allowance, from), figure(x.LoadUse, y.LoadUse, Allowance, from)
 	n.LiftDays, n.Crew = figure(x.LiftDays, y.LiftDays, Allowance, from), figure(x.Crew, y.Crew, Allowance, from)
 	n.WeekHours, n.HaulDistance = figure(x.WeekHours, y.WeekHours, Allowance, from), figure(x.HaulDistance, y.HaulDistance, Allowance, from)
+	if x.SurfaceByMass != nil && y.SurfaceByMass != nil {
+		f := figure(*x.SurfaceByMass, *y.SurfaceByMass, Allowance, from)
+		n.SurfaceByMass = &f
+	}
 	n.Joints = maps.Clone(y.Joints)
 	if n.Joints == nil {
 		n.Joints = map[string]ratebook.JointNorm{}

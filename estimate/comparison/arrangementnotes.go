@@ -23,7 +23,7 @@ func (s *ArrangementStudy) notes(c *arrangement.Candidate) []string {
 		out = append(out, s.notesOfLoads(c)...)
 	}
 	if len(c.Towers) > 0 {
-		out = append(out, "Each leg is a strut with its greatest force as one variable load of the same factored effect; bracing, head and base plates are a row by mass, for they are not sized: their surface is not known and not coated.")
+		out = append(out, "Each leg is a strut with its greatest force as one variable load of the same factored effect; bracing, head and base plates are a row by mass, for they are not sized: their surface is that which the rate book takes for such rows, none where it has no norm.")
 	}
 	if c.Ballast != nil && c.Ballast.Volume > 0 {
 		out = append(out, "The ballast is priced as concrete in place; the frame that holds it and its tie to the tail are not priced.")
@@ -46,7 +46,7 @@ func (s *ArrangementStudy) notesOfLattice(c *arrangement.Candidate) []string {
 	t := c.Truss
 	return []string{
 		"Each chord is one row that runs on over its panel points with the greatest force of both chords along its whole length and the loads between panel points, so that site splices, transport and lifts are counted as for a long member; the study checks a chord as a simple bar between panel points, which is less favourable.",
-		fmt.Sprintf("One diagonal is a strut with the greatest force; the other %d are a row by mass, for they are welded to the chords in the shop and not lifted one by one: they are priced as plain sections and their surface is not coated.", 2*t.Panels-1),
+		fmt.Sprintf("One diagonal is a strut with the greatest force; the other %d are a row by mass, for they are welded to the chords in the shop and not lifted one by one: they are priced as plain sections, and their surface is that which the rate book takes for rows by mass.", 2*t.Panels-1),
 		fmt.Sprintf("Plan bracing and gussets of %.0f kg are priced by mass as the study lets the lattice carry them; connections come on top by their class. The lattice stands in one plane: what holds its plan bracing sideways, such as a second plane, is neither sized nor priced.", planBracing(c, &s.Study)),
 		fmt.Sprintf("Panels of %.2f m depth are taken as fit for the road; deeper ones travel in bars and are welded or bolted on site, which costs more.", t.Depth),
 	}

@@ -15,10 +15,6 @@ import (
 	"spanwright/estimate/takeoff"
 )
 
-// readyMade is the connection class of what is bought with its connections,
-// coated and inspected.
-const readyMade = "none"
-
 // needed are the categories without which steel is not priced, and the items that
 // need them.
 var needed = []struct {
@@ -27,11 +23,11 @@ var needed = []struct {
 }{
 	{ratebook.Material, func(it takeoff.Item) bool { return it.Purchased.Sign() > 0 }},
 	{ratebook.Fabrication, func(it takeoff.Item) bool {
-		return it.Delivered.Sign() > 0 && it.Connection != readyMade && !bolted(it)
+		return it.Delivered.Sign() > 0 && it.Connection != takeoff.ReadyMade && !bolted(it)
 	}},
 	{ratebook.Coating, func(it takeoff.Item) bool { return needsCoat(it) }},
 	{ratebook.Inspection, func(it takeoff.Item) bool {
-		return it.Delivered.Sign() > 0 && it.Connection != readyMade && !bolted(it)
+		return it.Delivered.Sign() > 0 && it.Connection != takeoff.ReadyMade && !bolted(it)
 	}},
 	{ratebook.Erection, func(it takeoff.Item) bool { return it.Delivered.Sign() > 0 && !bolted(it) }},
 }
@@ -42,7 +38,7 @@ func bolted(it takeoff.Item) bool {
 }
 
 func needsCoat(it takeoff.Item) bool {
-	return it.Delivered.Sign() > 0 && it.Connection != readyMade && it.Treatment != takeoff.Joint && it.Coating != "" && !strings.EqualFold(it.Coating, takeoff.Uncoated)
+	return it.Delivered.Sign() > 0 && it.Connection != takeoff.ReadyMade && it.Treatment != takeoff.Joint && it.Coating != "" && !strings.EqualFold(it.Coating, takeoff.Uncoated)
 }
 
 // coverageFindings say which steel or work no rate of the book prices: what is

@@ -110,7 +110,10 @@ func (p *pricer) addMinimumCharge(c *charge, lines []Line, details []detail) ([]
 	if sum.Cmp(least) >= 0 {
 		return lines, details, nil
 	}
-	short := least.Sub(sum)
+	short, err := money.RoundedProduct(p.places, least.Sub(sum))
+	if err != nil {
+		return nil, nil, fmt.Errorf("minimum charge of %s: %w", p.entry(r), err)
+	}
 	text := fmt.Sprintf("minimum charge: %s %s, of which the lines make %s", least, p.currency, sum)
 	p.note("minimum-charge", c.category, p.entry(r), text)
 	d := draft{place: len(p.items), rate: c.lead, quantity: one, end: chargeShortfall, note: text}

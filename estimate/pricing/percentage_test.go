@@ -109,7 +109,7 @@ func TestAPercentageWithAMinimumCharge(t *testing.T) {
 	p := price(t, []takeoff.Item{item(t, "A", hours, "10"), item(t, "B", hours, "6")}, r)
 	want := []string{
 		"line/A/labour: 10 × 50.0000 = 500.00", "line/A/fee: 500.00 × 0.100000 = 50.00", "line/B/labour: 6 × 50.0000 = 300.00",
-		"line/B/fee: 300.00 × 0.100000 = 30.00", "line/whole structure/fee/minimum charge: 1 × 120.00 = 120.00",
+		"line/B/fee: 300.00 × 0.100000 = 30.00", "line/whole structure/fee/minimum charge: 1 × 120.0000 = 120.00",
 	}
 	if diff := cmp.Diff(want, amounts(p.Lines)); diff != "" {
 		t.Error(diff)

@@ -44,16 +44,18 @@ func ranksOf(x []float64) []int {
 }
 
 // Inputs of one stream have the same ranks in every trial, with a group, without and
-// in a matrix; another stream has others.
+// in a matrix; another stream has others, of the rank correlation asked (Spearman's
+// 1 − 6 Σ d²/n³ without ties; its standard error is below 1/√8192).
 func TestOneStreamIsOneDraw(t *testing.T) {
 	spreads := []spread.Spread{spread.NewLognormal(50, 90), spread.NewTriangular(1, 2, 5), spread.NewPERT(-3, 0, 9), spread.NewUniform(0, 1)}
 	for name, c := range map[string]struct {
 		group string
 		s     Settings
+		rho   float64
 	}{
-		"alone":  {"", Settings{Seed: 5}},
-		"group":  {"g", Settings{Seed: 5, Correlation: map[string]float64{"g": 0.5}}},
-		"matrix": {"", Settings{Seed: 5, Matrix: symmetric([]string{"line 003", "growth"}, nil, []float64{0.6})}},
+		"alone":  {"", Settings{Seed: 5}, 0},
+		"group":  {"g", Settings{Seed: 5, Correlation: map[string]float64{"g": 0.5}}, 0.5},
+		"matrix": {"", Settings{Seed: 5, Matrix: symmetric([]string{"line 003", "growth"}, nil, []float64{0.6})}, 0.6},
 	} {
 		r := prepare(t, streamed(sumModel(spreads, c.group), "growth", 0, 1, 2), c.s)
 		want := ranksOf(r.values[0])
@@ -62,6 +64,12 @@ func TestOneStreamIsOneDraw(t *testing.T) {
 				t.Errorf("%s: input %d has the ranks of input 0: %v", name, i, same)
 			}
 		}
+		var squares float64
+		for k, rank := range ranksOf(r.values[3]) {
+			squares += float64((rank - want[k]) * (rank - want[k]))
+		}
+		n := float64(len(want))
+		within(t, name+": rank correlation with the other stream", 1-6*squares/(n*n*n-n), 1/math.Sqrt(n), c.rho, 0)
 	}
 }
 
@@ -126,6 +134,26 @@ func TestAStreamBesideALine(t *testing.T) {
 	within(t, "narrowing", got.Narrowing, got.NarrowingSE, narrowing, 4e-3)
 	if len(r.Sensitivities) != 2 || len(r.Moments) != 4 {
 		t.Errorf("%d sensitivities and %d moment checks, want 2 and 4", len(r.Sensitivities), len(r.Moments))
+	}
+}
+
+// A group counts beliefs: two figures of one are not uncorrelated with each other, nor
+// do they correlate the model.
+func TestWarningsCountBeliefs(t *testing.T) {
+	for _, c := range []struct {
+		name     string
+		rho      float64
+		group    string // of the third line
+		warnings int
+	}{{"one belief, ρ = 0", 0, "fixed", 0}, {"beside a line of the group, ρ = 0", 0, "g", 1}, {"beside a line of none", 0.3, "", 1}, {"beside a line of the group", 0.3, "g", 0}} {
+		m := streamed(sumModel(threeLines, "g"), "growth", 0, 1)
+		if m.Inputs[2].Group = c.group; c.group == "fixed" {
+			m.Inputs[2] = pricing.Input{ID: "line 002", Spread: spread.NewFixed(3)}
+		}
+		r := simulate(t, m, Settings{Trials: 64, Correlation: map[string]float64{"g": c.rho}})
+		if len(r.Warnings) != c.warnings || c.warnings == 1 && !strings.Contains(r.Warnings[0].Message, " 2 spreads") {
+			t.Errorf("%s: warnings %v, want %d", c.name, r.Warnings, c.warnings)
+		}
 	}
 }
 

@@ -166,6 +166,22 @@ func TestImpossibleMassIsAnError(t *testing.T) {
 	}
 }
 
+// 6 splices · 5.5 h · 1.15 are 37.95 h, half away from zero 38.0; 24 h · 1.15 over 240 h are
+// 0.115 weeks. The products of the floats are 37.949999999999996 and 0.11499999999999999.
+func TestTiesThatFloatsMiss(t *testing.T) {
+	for _, c := range []struct {
+		driver   ratebook.Driver
+		measured float64
+		factor   float64
+		want     string
+	}{{ratebook.ShopHours, 6, 5.5, "38.0"}, {ratebook.Weeks, 6. / 240, 4, "0.12"}, {ratebook.SquareMetres, 2.21, 30, "76.25"}} {
+		q, err := newQuantity(c.driver, c.measured, []Allowance{fixed("f", c.factor, 0), fixed("g", 0.15, 1)}, "", nil)
+		if err != nil || q.Value.String() != c.want {
+			t.Errorf("%s: %s, %v; want %s", c.driver, q.Value, err, c.want)
+		}
+	}
+}
+
 // Every value is its measured quantity times the factors, rounded once; the
 // drivers stand in their order and none twice.
 func TestValuesAreMeasuredTimesFactors(t *testing.T) {
@@ -183,7 +199,7 @@ func TestValuesAreMeasuredTimesFactors(t *testing.T) {
 				for _, f := range q.Factors {
 					v *= f.Offset + f.Spread.Base()
 				}
-				want, err := money.FromFloat(v, q.Driver.Places())
+				want, err := money.FromFloat(v*(1+1e-13), q.Driver.Places()) // a tie that floats miss is one
 				if err != nil {
 					t.Fatal(err)
 				}

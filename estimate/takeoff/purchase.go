@@ -39,7 +39,8 @@ const (
 // grade: first fit, or least stock with a proven bound. It returns none where steel
 // is bought with the waste allowance. Rows by mass, plate, and sections welded from
 // plates have no plan. A piece that is delivered in parts is cut as these, a part that
-// is longer than the longest stock as equal pieces that the shop joins. The error names the section; cancelling the context is an error too.
+// is longer than the longest stock as equal pieces that the shop joins. The error
+// names the section; cancelling the context is an error too.
 func Purchase(ctx context.Context, pieces []Piece, s Settings) ([]SectionPlan, error) {
 	if s.Purchase != schedule.PurchaseFirstFit && s.Purchase != schedule.PurchaseLeastStock {
 		return nil, nil

@@ -3,14 +3,28 @@ package takeoff
 import (
 	"fmt"
 	"slices"
+	"strconv"
 
 	"spanwright/estimate/money"
 	"spanwright/estimate/ratebook"
 )
 
+// settled are the significant digits to which a product of floats is rounded before
+// it becomes a decimal: 6 joints · 5.5 h · 1.15 is 37.95 h and rounds to 38.0, though the
+// product of the floats lies below it; spreadsheets round so too.
+const settled = 14
+
+func settle(x float64) float64 {
+	y, err := strconv.ParseFloat(strconv.FormatFloat(x, 'e', settled-1, 64), 64)
+	if err != nil {
+		return x // NaN or beyond the range of floats: refused as a decimal
+	}
+	return y
+}
+
 // newQuantity returns measured · Π factors as a quantity of the driver.
 func newQuantity(d ratebook.Driver, measured float64, factors []Allowance, formula string, fixed []string) (Quantity, error) {
-	value, err := money.FromFloat(product(measured, factors), d.Places())
+	value, err := money.FromFloat(settle(product(measured, factors)), d.Places())
 	if err != nil {
 		return Quantity{}, fmt.Errorf("%s: %w", d, err)
 	}

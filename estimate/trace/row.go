@@ -114,7 +114,11 @@ func (t *Tracer) joined(it *document.Item, m *document.Member) kid {
 func (t *Tracer) surface(m *document.Member) kid {
 	id := rowID(m) + "#surface"
 	return kid{id, func() draft {
-		d := draft{Node: Node{Figure: id, What: "Surface of all pieces of row " + m.Mark + ".", Kind: Quantity, Formula: "pieces × length × painted perimeter of the section",
+		formula := "pieces × length × painted perimeter of the section"
+		if m.Section == "" {
+			formula = "mass × surface per tonne of rows by mass, or twice the area of rows by area"
+		}
+		d := draft{Node: Node{Figure: id, What: "Surface of all pieces of row " + m.Mark + ".", Kind: Quantity, Formula: formula,
 			Notes: []string{"the document holds the surface of the item alone"}}}
 		_, length := t.length(m)
 		d.kids = []kid{length, t.lineMass(m)}

@@ -298,7 +298,7 @@ func TestRefusals(t *testing.T) {
 func nan() float64 { z := 0.0; return z / z }
 
 func TestEmptyDocument(t *testing.T) {
-	d := document.Document{Caution: document.Caution, Job: document.Job{Currency: "JPY"}}
+	d := document.Document{EngineVersion: document.EngineVersion, Caution: document.Caution, Job: document.Job{Currency: "JPY"}}
 	book := cells(t, write(t, d))
 	if got := book[linesSheet]["I2"]; got != "0" {
 		t.Errorf("base of no lines is %q, want 0", got)
