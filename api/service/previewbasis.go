@@ -204,7 +204,7 @@ func changed(old, m pricing.Model) ([]ranges.Change, bool) {
 	var out []ranges.Change
 	for i, x := range old.Inputs {
 		y := m.Inputs[i]
-		if x.ID != y.ID || x.Group != y.Group {
+		if x.ID != y.ID || x.Group != y.Group || x.Stream != y.Stream {
 			return nil, false
 		}
 		if x.Spread != y.Spread {

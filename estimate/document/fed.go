@@ -92,6 +92,17 @@ func (d Document) movedLines(quantities map[[2]string]bool) map[string]bool {
 			moved[l.ID] = true
 		}
 	}
+	rates := map[string]bool{}
+	for _, l := range d.Lines {
+		if moved[l.ID] {
+			rates[l.RateID] = true
+		}
+	}
+	for _, l := range d.Lines { // what a rate's lines lack to its minimum
+		if l.Item == "" && len(l.Of) == 0 && rates[l.RateID] && l.ID != "line/"+l.Group+"/"+strings.TrimPrefix(l.RateID, "rate/") {
+			moved[l.ID] = true
+		}
+	}
 	for again := true; again; { // a percentage may stand before the lines that it is taken of
 		again = false
 		for _, l := range d.Lines {

@@ -7,6 +7,7 @@ import (
 	"testing"
 
 	"spanwright/estimate/job"
+	"spanwright/estimate/ratebook"
 )
 
 // wideHeader are the further columns of the corpus.
@@ -111,7 +112,13 @@ func TestCorpusCoversItsGround(t *testing.T) {
 			}
 		}
 	}
-	want := []string{"load uniform", "load point", "load train", "sideways", "dynamic", "floor", "tied", "set", "C1", "net", "depth"}
+	for i := range corpusSize {
+		j := corpusJob(t, i)
+		seen["book "+j.Book.Kind]++
+		seen["money "+j.Settings.Money]++
+		seen["purchase "+j.Settings.Purchase]++
+	}
+	want := []string{"book ratio", "book unit-rate", "money base date", "money outturn", "purchase waste", "purchase first fit", "purchase least stock", "load uniform", "load point", "load train", "sideways", "dynamic", "floor", "tied", "set", "C1", "net", "depth"}
 	for _, b := range designBases {
 		want = append(want, "basis "+b)
 	}
@@ -137,6 +144,18 @@ func corpusJob(tb testing.TB, i int) job.Job {
 		"Base date", "2026-06-01", "Confidence", []string{"0.8", "0.5", "0.85"}[i%3], "Ground snow (kN/m²)", "1.2"}
 	if basis == "allowable" {
 		pairs = append(pairs, "Factor", []string{"1.67", "3", "4"}[i%3])
+	}
+	if i >= 36 { // the last ones are priced by unit rates, in four currencies and two moneys
+		book = ratebook.UnitRate()
+		pairs[slices.Index(pairs, "Currency")+1] = []string{"EUR", "USD", "JPY", "KWD"}[i%4]
+		pairs = append(pairs, "Coating", []string{"C4 high", "hot-dip galvanised", "none", "C3 medium"}[i%4], "Execution class", []string{"EXC2", "EXC3", "AISC static"}[i%3],
+			"Haul distance (km)", fmt.Sprint(40+10*i), "Site conditions", []string{"tidal", "over water; height", "weather"}[i%3])
+		if i%2 == 1 {
+			pairs = append(pairs, "Money", "outturn", "Spend date", fmt.Sprintf("20%d-03-01", 28+i%4))
+		}
+		if i%3 == 0 {
+			pairs = append(pairs, "Stock lengths (m)", "12; 15.1", "Purchase", []string{"first fit", "least stock"}[i%2])
+		}
 	}
 	rows := randomRows(r, 3+i%10)
 	if i >= 12 { // the first ones keep to the columns of the first version

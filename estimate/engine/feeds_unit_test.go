@@ -190,6 +190,9 @@ func TestFeedsOfEscalation(t *testing.T) {
 			}
 		}
 		slices.Sort(want)
+		if growth := before.Fed(entryOf(t, before, "index growth/"+x.Name).Feeds, nil); !slices.Equal(growth, slices.Compact(slices.Clone(want))) {
+			t.Errorf("the growth of index %s feeds %v, its escalations %v", x.Name, growth, want)
+		}
 		if want = slices.Compact(want); len(want) == 0 || !slices.Equal(got, want) {
 			t.Errorf("index %s:\n changed but not in feeds: %v\n in feeds but unchanged: %v", x.Name, minus(got, want), minus(want, got))
 		}

@@ -10,6 +10,7 @@ import (
 	"spanwright/estimate/pricing"
 	"spanwright/estimate/ratebook"
 	"spanwright/estimate/schedule"
+	"spanwright/estimate/spread"
 )
 
 // rates gathers what the job prices with: its rates and multipliers, and the
@@ -20,6 +21,7 @@ func (r *run) rates() (pricing.Rates, error) {
 		Rates: b.PricedRates(), Reference: b.ReferencePrice, Book: b.Currency, Multipliers: r.job.Multipliers,
 		Currency: r.currency, Systemic: r.systemic, BaseDate: s.BaseDate, Facts: r.facts,
 		Exchange: map[string]pricing.Conversion{}, Escalation: map[string][]pricing.Conversion{},
+		Whole: ratebook.Place{Coating: s.Coating, Execution: s.ExecutionClass},
 	}
 	for _, c := range ratebook.Categories() {
 		if c != ratebook.Owner || s.OwnerCosts {
@@ -70,7 +72,11 @@ func (r *run) escalation(category string) ([]pricing.Conversion, error) {
 			r.unescalated = append(r.unescalated, category)
 			return nil
 		}
-		out = append(out, pricing.Conversion{Name: name, ID: e.ID, Value: e.Value, Spread: e.Spread, Group: e.Group})
+		c := pricing.Conversion{Name: name, ID: e.ID, Value: e.Value, Spread: e.Spread, Group: e.Group}
+		if e.Spread.Distribution != spread.Fixed {
+			c.Stream = growthID(e.Index) // one belief about growth is one draw, whatever the dates
+		}
+		out = append(out, c)
 		owner, confidence := e.Author, e.Confidence
 		if owner == "" {
 			owner, confidence = "rate book "+b.Name, string(assumption.High)
@@ -97,6 +103,22 @@ func (r *run) escalation(category string) ([]pricing.Conversion, error) {
 		return out, nil
 	}
 	return out, step(pricing.EscalationToSpend, s.BaseDate, spent)
+}
+
+// growthID is the register entry of the growth of an index, which every escalation
+// by it draws from.
+func growthID(index string) string { return "index growth/" + assumption.Segment(index) }
+
+// growthEntries are the register entries of the growths that escalations rest on.
+func (r *run) growthEntries() []assumption.Entry {
+	var out []assumption.Entry
+	for _, x := range r.job.Book.Indices {
+		if x.Growth != nil {
+			e := r.entryOf(growthID(x.Name), assumption.Rate, fmt.Sprintf("Growth of the index “%s” after its last value; every escalation by it is one draw", x.Name), "fraction per year", *x.Growth)
+			out = append(out, e)
+		}
+	}
+	return out
 }
 
 // spentOn is the date on which a category is spent: the job's spend date and the

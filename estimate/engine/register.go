@@ -70,6 +70,7 @@ func (r *run) addBook() error {
 	}
 	all = append(all, r.rateEntries()...)
 	all = append(all, r.conversions...)
+	all = append(all, r.growthEntries()...)
 	all = append(all, r.carbonEntries()...)
 	for _, e := range all {
 		if !used[e.ID] {
@@ -109,6 +110,9 @@ func (r *run) usedEntries() map[string]bool {
 	for _, m := range []pricing.Model{r.priced.Model, r.carbon.Model} {
 		for _, in := range m.Inputs {
 			used[in.ID] = true
+			if in.Stream != "" {
+				used[in.Stream] = true
+			}
 		}
 	}
 	return used
@@ -303,7 +307,7 @@ func (r *run) feedLines() error {
 		if slices.ContainsFunc(l.Parts, func(p pricing.Part) bool { return p.Name == "reference price" }) {
 			ids = append(ids[:len(ids):len(ids)], refPriceID)
 		}
-		for _, id := range ids {
+		for _, id := range r.withStreams(ids) {
 			if err := r.register.Feed(id, figures...); err != nil {
 				return err
 			}
@@ -327,6 +331,17 @@ func (r *run) feedLines() error {
 		}
 	}
 	return nil
+}
+
+// withStreams adds to ids the beliefs that some of them are drawn from.
+func (r *run) withStreams(ids []string) []string {
+	out := slices.Clone(ids)
+	for _, in := range r.priced.Model.Inputs {
+		if in.Stream != "" && slices.Contains(ids, in.ID) {
+			out = append(out, in.Stream)
+		}
+	}
+	return out
 }
 
 func sortedKeys[V any](m map[string]V) []string {
