@@ -242,6 +242,15 @@ func (x fakeTx) Estimate(_ context.Context, id uuid.UUID) (service.Estimate, err
 	return get(x.t.estimates, id, "estimate")
 }
 
+func (x fakeTx) NewestEstimate(_ context.Context, scheme uuid.UUID) (service.Estimate, error) {
+	for _, id := range slices.Backward(slices.SortedFunc(maps.Keys(x.t.estimates), func(a, b uuid.UUID) int { return cmp.Compare(a.String(), b.String()) })) {
+		if e := x.t.estimates[id]; e.Scheme == scheme {
+			return e, nil
+		}
+	}
+	return service.Estimate{}, missing("estimate")
+}
+
 func (x fakeTx) EstimateDocument(_ context.Context, id uuid.UUID) ([]byte, error) {
 	return get(x.t.documents, id, "estimate")
 }

@@ -93,11 +93,28 @@ func faultOf(r *request, d *huma.ErrorDetail, body any) service.Fault {
 		if known := r.fields(steps[:len(steps)-1]); len(known) > 0 {
 			f.Remedy = "one of " + strings.Join(known, ", ")
 		}
+	} else if value, field, ok := unfit(d.Message); ok {
+		f.Found, f.Problem, f.Remedy = value, "does not fit the field "+field, "a value of the size and kind that the documentation gives"
 	} else if len(steps) == 0 {
 		f.Found, f.Problem, f.Remedy = "the body", d.Message, "a body as the documentation shows it"
 	}
 	f.Pointer = pointer(steps)
 	return f
+}
+
+// unfit takes a decoder's message about a value that its field cannot hold apart:
+// the value, and the field's path with dots.
+func unfit(message string) (value, field string, ok bool) {
+	rest, ok := strings.CutPrefix(message, "json: cannot unmarshal ")
+	if !ok {
+		return "", "", false
+	}
+	value, where, _ := strings.Cut(rest, " into Go ")
+	where, _, _ = strings.Cut(where, " of type ")
+	if _, path, dotted := strings.Cut(strings.TrimPrefix(where, "struct field "), "."); dotted {
+		return shorten(value), path, true
+	}
+	return shorten(value), "that it stands in", true
 }
 
 // found is a value as it may be shown: scalars, shortened; never a whole object.

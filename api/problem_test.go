@@ -145,3 +145,20 @@ func TestHumaErrorsAreOurs(t *testing.T) {
 		t.Errorf("an error without detail gives %+v", q)
 	}
 }
+
+// A decoder's message names the value and the field, never a type of the program.
+func TestUnfit(t *testing.T) {
+	for message, want := range map[string][2]string{
+		"json: cannot unmarshal number 1e999 into Go value of type float64":                             {"number 1e999", "that it stands in"},
+		"json: cannot unmarshal number 1e30 into Go struct field CuttingPiece.pieces.count of type int": {"number 1e30", "pieces.count"},
+		"json: cannot unmarshal string into Go struct field Spread.spread.likely of type float64":       {"string", "spread.likely"},
+	} {
+		value, field, ok := unfit(message)
+		if !ok || value != want[0] || field != want[1] {
+			t.Errorf("%s: got %q, %q, %v", message, value, field, ok)
+		}
+	}
+	if _, _, ok := unfit("expected number"); ok {
+		t.Error("another message was taken apart")
+	}
+}

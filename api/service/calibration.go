@@ -13,6 +13,7 @@ import (
 
 	"spanwright/api/auth"
 	"spanwright/estimate/calibration"
+	"spanwright/estimate/ratebook"
 )
 
 // The states of a calibration.
@@ -65,7 +66,7 @@ type CalibrationEvidence struct {
 
 // NewCalibration asks for a fit of the outturns in force.
 type NewCalibration struct {
-	RateBook *uuid.UUID `json:"rate_book_id,omitempty" doc:"the book that is to learn, in its newest version; the organisation's book named ratio when absent"`
+	RateBook *uuid.UUID `json:"rate_book_id,omitempty" doc:"the book that is to learn, in its newest version; when absent the organisation's book named unit-rate, else the one named ratio"`
 }
 
 // CreateCalibration brings the outturns in force to the currency, base date and
@@ -90,7 +91,13 @@ func (s *Service) CreateCalibration(ctx context.Context, a Actor, n NewCalibrati
 			earlier = &c
 			return err
 		}
-		if book, err = bookOf(ctx, tx, n.RateBook); err != nil {
+		if n.RateBook == nil { // the starting book that has indices and norms to learn
+			book, err = tx.RateBookByName(ctx, ratebook.KindUnitRate)
+		}
+		if n.RateBook != nil || isKind(err, NotFound) {
+			book, err = bookOf(ctx, tx, n.RateBook)
+		}
+		if err != nil {
 			return err
 		}
 		outturns, err = tx.OutturnsInForce(ctx)

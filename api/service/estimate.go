@@ -92,7 +92,17 @@ func (s *Service) basis(ctx context.Context, tx Tx, scheme uuid.UUID, n NewEstim
 	if b.revision.Scheme != scheme {
 		return b, invalid("/schedule_revision_id", b.revision.ID.String(), "belongs to another scheme", "a revision of this scheme")
 	}
-	if err := s.rates(ctx, tx, &b, n.RateBook, n.BookName); err != nil {
+	book := n.RateBook
+	if book == nil && n.BookName == "" { // the scheme goes on with the book of its last estimate
+		last, err := tx.NewestEstimate(ctx, scheme)
+		switch {
+		case err == nil:
+			book = &last.RateBook
+		case !isKind(err, NotFound):
+			return b, err
+		}
+	}
+	if err := s.rates(ctx, tx, &b, book, n.BookName); err != nil {
 		return b, err
 	}
 	return b, nil
@@ -198,7 +208,7 @@ func fromEngine(err error, sch schedule.Schedule) error {
 	var rates *engine.RatesError
 	if errors.As(err, &rates) {
 		return &Error{Kind: Invalid, Message: rates.Error(), Faults: []Fault{{Found: "the rate book and the multipliers in force", Problem: rates.Err.Error(),
-			Remedy: "fewer digits in rates and multipliers, or multipliers that fit the rate book"}}, Err: err}
+			Remedy: "rates, indices, exchange rates and multipliers that fit together, as the problem says"}}, Err: err}
 	}
 	var f *engine.FaultsError
 	if !errors.As(err, &f) {

@@ -37,7 +37,7 @@ type NewProject struct {
 // NewEstimate asks for an estimate of a scheme.
 type NewEstimate struct {
 	Revision   *uuid.UUID `json:"schedule_revision_id,omitempty" doc:"the newest when absent"`
-	RateBook   *uuid.UUID `json:"rate_book_id,omitempty" doc:"the organisation's book named ratio when absent"`
+	RateBook   *uuid.UUID `json:"rate_book_id,omitempty" doc:"when absent, the book of the scheme's newest estimate, else the one named ratio"`
 	BookName   string     `json:"rate_book,omitempty" maxLength:"200" doc:"name of the rate book, such as unit-rate, in place of its id" example:"unit-rate"`
 	Seed       *uint64    `json:"seed,omitempty" default:"1"`
 	Replicates int        `json:"replicates,omitempty" default:"32"`

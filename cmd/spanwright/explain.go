@@ -46,6 +46,9 @@ func (p *program) trace(c command, args []string) error {
 		f.Usage()
 		return errUsage
 	}
+	if *depth < 0 {
+		return fmt.Errorf("depth: found %d; accepted: 0 for the whole tree, or a number of levels", *depth)
+	}
 	d, err := p.readDocument(rest[len(rest)-1])
 	if err != nil {
 		return err

@@ -35,10 +35,7 @@ func describe(s *Share, from, to Side, c money.Currency) {
 		verb, amount = "lowers", s.Amount.Neg()
 	case s.Amount.Sign() == 0:
 		s.Sentence = fmt.Sprintf("%s moves nothing", title(s.Cause))
-		if len(s.Moved) > 0 {
-			s.Sentence += ": " + strings.Join(s.Moved, "; ")
-		}
-		s.Sentence += "."
+		s.Sentence += shown(s.Moved) + "."
 		return
 	}
 	s.Sentence = fmt.Sprintf("%s %s the cost by %s %s", title(s.Cause), verb, amount, c.Code)
@@ -46,14 +43,19 @@ func describe(s *Share, from, to Side, c money.Currency) {
 		largest := slices.MaxFunc(s.Groups, func(a, b GroupShare) int { return abs(a.Amount).Cmp(abs(b.Amount)) })
 		s.Sentence += fmt.Sprintf(", most of it in %s (%s)", largest.Group, largest.Amount)
 	}
-	if len(s.Moved) > 0 {
-		shown := s.Moved
-		if len(shown) > most {
-			shown = append(slices.Clone(shown[:most]), fmt.Sprintf("and %d more", len(s.Moved)-most))
-		}
-		s.Sentence += ": " + strings.Join(shown, "; ")
+	s.Sentence += shown(s.Moved) + "."
+}
+
+// shown are the first differences of a sentence, and how many there are beside them.
+func shown(moved []string) string {
+	if len(moved) == 0 {
+		return ""
 	}
-	s.Sentence += "."
+	list := moved
+	if len(list) > most {
+		list = append(slices.Clone(list[:most]), fmt.Sprintf("and %d more", len(moved)-most))
+	}
+	return ": " + strings.Join(list, "; ")
 }
 
 func abs(d money.Decimal) money.Decimal {
@@ -96,7 +98,7 @@ func differences(c Cause, from, to Side) []string {
 	case Escalation:
 		say("money", a.Settings.Money, b.Settings.Money)
 		say("spend date", a.Settings.SpendDate, b.Settings.SpendDate)
-		say("months of spending", a.Book.SpendMonths, b.Book.SpendMonths)
+		out = append(out, changes("months of spending, ", months(a.Book.SpendMonths), months(b.Book.SpendMonths))...)
 		return append(out, indices(a.Book.Indices, b.Book.Indices)...)
 	case DesignBasis:
 		say("basis", a.Settings.DesignBasis, b.Settings.DesignBasis)
@@ -236,6 +238,15 @@ func prices(a, b job.Job) []string {
 		out = append(out, fmt.Sprintf("reference price %s → %s", a.Book.ReferencePrice, b.Book.ReferencePrice))
 	}
 	return append(out, changes("rate ", words(a.Book), words(b.Book))...)
+}
+
+// months are the months of spending by category, as words.
+func months(m map[string]int) map[string]string {
+	out := map[string]string{}
+	for c, n := range m {
+		out[c] = fmt.Sprint(n)
+	}
+	return out
 }
 
 // indices names the indices that differ.

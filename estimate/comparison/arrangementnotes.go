@@ -79,6 +79,9 @@ func (s *ArrangementStudy) doubts(sides []Side) []string {
 	if level := levelWith(sides); len(level) > 0 {
 		out = append(out, fmt.Sprintf("Level with the first at the depth of a study: %s lie within %.0f %% of its mean, whatever the probability says; decide by site, access and time (common practice, no source).", strings.Join(level, ", "), 100*levelWithin))
 	}
+	if len(s.Study.Member.Actions) == 0 {
+		out = append(out, "DOUBT: the study states no load: every way carries its own weight alone, and the ranking says nothing about what it is for. A blank load is never taken as zero in a schedule.")
+	}
 	if !s.windy() {
 		out = append(out, "DOUBT: nothing acts sideways in the study. Towers, their footings and slender members are light without wind, which favours ways with many towers: give the study a horizontal load and the wind on the towers.")
 	}

@@ -13,6 +13,8 @@ import (
 	"cmp"
 	"context"
 	"fmt"
+	"slices"
+	"strings"
 
 	"spanwright/estimate/document"
 	"spanwright/estimate/job"
@@ -25,10 +27,27 @@ type Side struct {
 	ID       string // as the caller knows it
 	Job      job.Job
 	Document document.Document
+
+	shown string // name in texts, where the scheme's is not enough
 }
 
-// name is the scheme, or where it has no name the caller's own.
-func (s Side) name() string { return cmp.Or(s.Document.Job.Scheme, s.ID) }
+// name is the scheme, or where it has no name or shares it the caller's own.
+func (s Side) name() string { return cmp.Or(s.shown, s.Document.Job.Scheme, s.ID) }
+
+// name tells schemes of one name apart.
+func name(sides []Side) []Side {
+	out := slices.Clone(sides)
+	times := map[string]int{}
+	for _, s := range sides {
+		times[s.Document.Job.Scheme]++
+	}
+	for i, s := range out {
+		if times[s.Document.Job.Scheme] > 1 {
+			out[i].shown = strings.TrimSpace(s.Document.Job.Scheme + " (" + s.ID + ")")
+		}
+	}
+	return out
+}
 
 // Probability is an estimated probability with its standard error.
 type Probability struct {
@@ -111,6 +130,7 @@ func Build(ctx context.Context, sides []Side, joint Joint) (Comparison, error) {
 	if len(sides) < Fewest || len(sides) > Most {
 		return Comparison{}, fmt.Errorf("comparison: found %d estimates; accepted: %d to %d", len(sides), Fewest, Most)
 	}
+	sides = name(sides)
 	jobs := make([]job.Job, len(sides))
 	for i, s := range sides {
 		if c, first := s.Job.Settings.Currency, sides[0].Job.Settings.Currency; c != first {

@@ -68,7 +68,7 @@ func TestAgainstItself(t *testing.T) {
 			t.Errorf("the cheapest with %v, want 0.5", x.Cheapest.Value)
 		}
 	}
-	if p.Sentence != "A and A cost the same in every trial." {
+	if p.Sentence != "A (A) and A (A) cost the same in every trial." {
 		t.Errorf("sentence %q", p.Sentence)
 	}
 }

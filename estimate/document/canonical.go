@@ -74,5 +74,8 @@ func Parse(data []byte) (Document, error) {
 	if err := dec.Decode(&d); err != nil {
 		return Document{}, fmt.Errorf("reading an estimate: %w", err)
 	}
+	if d.EngineVersion < 1 {
+		return Document{}, errors.New("reading an estimate: found no engine version; accepted: a document as an estimate gives it")
+	}
 	return d, nil
 }

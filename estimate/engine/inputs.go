@@ -88,16 +88,16 @@ func withResizing(entries []assumption.Entry) []assumption.Entry {
 
 // inputValue is the value of an input of the Job sheet, as a reader would write it.
 func inputValue(id string, s schedule.Settings) string {
-	number := func(x float64, unit string) string { return strconv.FormatFloat(x, 'g', 12, 64) + " " + unit }
+	number := func(x float64) string { return strconv.FormatFloat(x, 'g', 12, 64) }
 	switch id {
 	case "input/haul distance":
-		return number(s.HaulDistance/1000, "km")
+		return number(s.HaulDistance / 1000)
 	case "input/tax":
-		return number(s.TaxRate*100, "%")
+		return number(s.TaxRate * 100)
 	case "input/kerf":
-		return number(s.Kerf*1000, "mm")
+		return number(s.Kerf * 1000)
 	case "input/stock lengths":
-		return lengths(s.StockLengths)
+		return strings.TrimSuffix(lengths(s.StockLengths), " m")
 	case "input/spend date":
 		return s.SpendDate
 	case "input/management reserve":

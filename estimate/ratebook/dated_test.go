@@ -69,7 +69,7 @@ func TestEscalationRefuses(t *testing.T) {
 	}
 	b.Indices[1].Growth = nil // labour
 	for _, c := range []struct{ category, from, to, want string }{
-		{Material, "2024-05-31", "2026-06-01", "2024-05-31"},
+		{Material, "2017-12-31", "2026-06-01", "2017-12-31"},
 		{Erection, "2026-06-01", "2026-09-02", "2026-09-02"},
 		{Erection, "2027-01-01", "2026-06-01", "2027-01-01"},
 		{Material, "2026-06-01", "1.7.2027", "1.7.2027"},

@@ -102,11 +102,15 @@ func (c *checker) group(field, g string) {
 
 func (c *checker) spread(field string, s spread.Spread, low, high float64, places int) {
 	if err := s.Validate(); err != nil {
-		c.faults = append(c.faults, Fault{Field: field, Found: fmt.Sprintf("%.40s %g / %g / %g", s.Distribution, s.Low, s.Likely, s.High), Accepted: err.Error()})
+		c.faults = append(c.faults, Fault{Field: field, Found: fmt.Sprintf("%.40s %s / %s / %s", s.Distribution, stated(s.Low), stated(s.Likely), stated(s.High)), Accepted: err.Error()})
 		return
 	}
 	base, unit := s.Base(), math.Pow10(places)
-	c.want(math.Abs(base*unit-math.Round(base*unit)) <= 1e-7*math.Max(1, math.Abs(base*unit)), field, number(base),
+	found := number(base)
+	if s.Likely == 0 && s.Distribution != spread.Fixed {
+		found = "no likely value, and " + found + " as the middle of low and high"
+	}
+	c.want(math.Abs(base*unit-math.Round(base*unit)) <= 1e-7*math.Max(1, math.Abs(base*unit)), field, found,
 		fmt.Sprintf("a likely value of at most %d decimals (for a lognormal: state its median as likely)", places))
 	lo, hi := limits(s)
 	c.want(lo >= low && hi <= high, field, number(lo)+" to "+number(hi), "values from "+number(low)+" to "+number(high))
@@ -122,4 +126,12 @@ func limits(s spread.Spread) (float64, float64) {
 		return s.Low, s.High
 	}
 	return s.Quantile(0), s.Quantile(1)
+}
+
+// stated writes a number of a spread; one that is not there is NaN.
+func stated(x float64) string {
+	if math.IsNaN(x) {
+		return "nothing"
+	}
+	return fmt.Sprintf("%g", x)
 }

@@ -101,8 +101,11 @@ func (e *Error) Error() string {
 	return fmt.Sprintf("spread: %s: found %s; accepted: %s", e.Field, e.Found, e.Accepted)
 }
 
-// fault builds an Error about a number.
+// fault builds an Error about a number; one that is not there is NaN.
 func fault(field string, found float64, accepted string) error {
+	if math.IsNaN(found) {
+		return &Error{Field: field, Found: "nothing", Accepted: accepted}
+	}
 	return &Error{Field: field, Found: fmt.Sprintf("%.12g", found), Accepted: accepted}
 }
 

@@ -183,7 +183,7 @@ func TestJSON(t *testing.T) {
 		}
 	}
 	text, _ := json.Marshal(NewTriangular(0, 1, 2))
-	if want := `{"distribution":"triangular","likely":1,"high":2}`; string(text) != want {
+	if want := `{"distribution":"triangular","low":0,"likely":1,"high":2}`; string(text) != want {
 		t.Errorf("got %s, want %s", text, want)
 	}
 	if msg := NewTriangular(2, 1, 3).Validate().Error(); !strings.Contains(msg, "likely: found 1; accepted: from low, 2, to high, 3") {

@@ -226,9 +226,14 @@ func (t *Tracer) ratePart(l *document.Line, p document.Part) kid {
 		if p.Name == "price" || p.Name == "ratio" || p.Name == "fraction" {
 			return t.known(id, p.Value.String())
 		}
-		return kid{id, func() draft { // a break or a minimum of the same rate
+		own := l.ID + "#" + p.Name
+		return kid{own, func() draft { // a break or a minimum of the same rate
 			k := t.known(id, p.Value.String()).make()
-			k.What = p.Name + ": " + k.What
+			k.Figure, k.What, k.Spread = own, "The "+p.Name+" of: "+k.What, nil
+			k.Value = p.Value.String()
+			if k.Unit = ""; p.Name != "price break" {
+				k.Unit = t.doc.Job.Currency
+			}
 			return k
 		}}
 	}
