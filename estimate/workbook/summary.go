@@ -114,7 +114,14 @@ func (b *book) summaryMoney() {
 	for _, w := range r.Warnings {
 		b.explain("warning", w)
 	}
-	b.explain("to change", "coloured cells on "+allowancesSheet+", "+takeoffSheet+", "+ratesSheet+", "+conversionsSheet+", "+multipliersSheet+" and "+factorsSheet+"; each has a name, most are named there")
+	sheets := []string{allowancesSheet, takeoffSheet, ratesSheet, multipliersSheet}
+	if len(b.conversion) > 0 {
+		sheets = append(sheets, conversionsSheet)
+	}
+	if b.doc.Carbon != nil {
+		sheets = append(sheets, factorsSheet)
+	}
+	b.explain("to change", "coloured cells on "+strings.Join(sheets, ", ")+"; each has a name, most are named there")
 	b.explain("as priced", "sections, measured quantities, cutting plan, price breaks, minimum orders and charges: they are not chosen again here")
 }
 
