@@ -28,7 +28,7 @@ func TestPriceRefuses(t *testing.T) {
 		}, []string{"rate/labour", "USD", "into EUR", "accepted", "GBP"}},
 		"a book in a currency without a rate": {func(r *Rates, _ *takeoff.Item) { r.Book = "NOK" }, []string{"rate/labour", "rate/steel", "NOK"}},
 		"a negative price":                    {func(r *Rates, _ *takeoff.Item) { r.Rates[0].Spread = spread.NewTriangular(-10, -5, 10) }, []string{"rate/labour", "likely price -5"}},
-		"a price of NaN":                      {func(r *Rates, _ *takeoff.Item) { r.Rates[0].Spread = spread.NewFixed(math.NaN()) }, []string{"rate/labour", "NaN"}},
+		"a price of NaN":                      {func(r *Rates, _ *takeoff.Item) { r.Rates[0].Spread = spread.NewFixed(math.NaN()) }, []string{"rate/labour", "nothing"}},
 		"a price of five decimals":            {func(r *Rates, _ *takeoff.Item) { r.Rates[0].Spread = spread.NewFixed(1.00001) }, []string{"rate/labour", "decimals"}},
 		"a multiplier of five decimals": {func(r *Rates, _ *takeoff.Item) {
 			r.Multipliers = []ratebook.Multiplier{project("exact", 1.00001, ratebook.Material)}
