@@ -139,3 +139,16 @@ func luminance(t *testing.T, hex string) float64 {
 	}
 	return sum
 }
+
+// A statement is named by what it is about; its reason stands in the register.
+func TestBrief(t *testing.T) {
+	for statement, want := range map[string]string{
+		"Multiplier “tides”: work stops outside the window": "Multiplier “tides”",
+		"Crane days for one lift; growth adds lifts":        "Crane days for one lift",
+		"Rate “site labour” of erection":                    "Rate “site labour” of erection",
+	} {
+		if got := brief(statement); got != want {
+			t.Errorf("%s: got %q, want %q", statement, got, want)
+		}
+	}
+}

@@ -1,6 +1,8 @@
 package dashboard
 
 import (
+	"strings"
+
 	"spanwright/estimate/chart"
 	"spanwright/estimate/document"
 )
@@ -29,10 +31,18 @@ func sensitivities(d document.Document) []sensitivityRow {
 	money := func(n document.Number) string { return chart.Money(float64(n), d.Job.Currency) }
 	var out []sensitivityRow
 	for _, s := range d.Range.Sensitivities[:min(firmest, len(d.Range.Sensitivities))] {
-		out = append(out, sensitivityRow{Statement: statements[s.Assumption], ID: s.Assumption, Share: places(100*float64(s.Share), 0) + space + "%",
+		out = append(out, sensitivityRow{Statement: brief(statements[s.Assumption]), ID: s.Assumption, Share: places(100*float64(s.Share), 0) + space + "%",
 			Swing: money(s.Swing), Narrowing: money(s.Narrowing), Error: money(s.NarrowingSE), Noise: !(s.Narrowing > 2*s.NarrowingSE)})
 	}
 	return out
+}
+
+// brief is what a statement is about: the register below has it whole.
+func brief(statement string) string {
+	for _, end := range []string{": ", "; "} {
+		statement, _, _ = strings.Cut(statement, end)
+	}
+	return statement
 }
 
 // risks are the discrete risks with what they add to the range.
