@@ -169,18 +169,8 @@ func (n NewArrangementComparison) inForce(book ratebook.Book, a Actor) ([]ratebo
 	var out []ratebook.Multiplier
 	var faults []Fault
 	for i, x := range n.Multipliers {
-		at := "/multipliers/" + strconv.Itoa(i)
-		m := ratebook.Multiplier{Name: x.Name, Scope: x.Scope, Subject: x.Subject, Categories: x.Categories, Spread: x.Spread, Group: x.Group, Reason: x.Reason, Author: a.Name}
-		if m.Reason == "" {
-			m.Reason = "comparison of arrangements"
-		}
-		var bad *Error
-		if errors.As(fromRates(m.Validate(), at), &bad) {
-			faults = append(faults, bad.Faults...)
-		}
-		if _, ok := book.Correlation[m.Group]; m.Group != "" && !ok {
-			faults = append(faults, Fault{Pointer: at + "/group", Found: m.Group, Problem: "the rate book has no such correlation group", Remedy: "a group of the rate book, or none"})
-		}
+		m, found := x.read("/multipliers/"+strconv.Itoa(i), book, a, "comparison of arrangements")
+		faults = append(faults, found...)
 		out = append(out, m)
 	}
 	if len(faults) > 0 {

@@ -1,6 +1,7 @@
 package service
 
 import (
+	"cmp"
 	"context"
 	"errors"
 	"fmt"
@@ -162,23 +163,13 @@ func (s *Service) computing() (func(), error) {
 func (b *previewBasis) with(n NewPreview, a Actor) (job.Job, []bool, error) {
 	out := b.job
 	out.Multipliers = slices.Clone(b.job.Multipliers)
-	known := strings.Join(slices.Sorted(maps.Keys(b.job.Book.Correlation)), ", ")
 	var faults []Fault
 	replaced := make([]bool, len(n.Multipliers))
 	seen := map[string]int{}
 	for i, x := range n.Multipliers {
 		at := "/multipliers/" + strconv.Itoa(i)
-		m := ratebook.Multiplier{Name: x.Name, Scope: x.Scope, Subject: x.Subject, Categories: x.Categories, Spread: x.Spread, Group: x.Group, Reason: x.Reason, Author: a.Name}
-		if m.Reason == "" {
-			m.Reason = "preview"
-		}
-		var bad *Error
-		if errors.As(fromRates(m.Validate(), at), &bad) {
-			faults = append(faults, bad.Faults...)
-		}
-		if _, ok := b.job.Book.Correlation[m.Group]; m.Group != "" && !ok {
-			faults = append(faults, Fault{Pointer: at + "/group", Found: m.Group, Problem: "the rate book has no such correlation group", Remedy: known + " or none"})
-		}
+		m, found := x.read(at, b.job.Book, a, "preview")
+		faults = append(faults, found...)
 		key := pricing.MultiplierID(m)
 		if j, twice := seen[key]; twice {
 			faults = append(faults, Fault{Pointer: at, Found: key, Problem: fmt.Sprintf("already given at /multipliers/%d", j), Remedy: "each name, scope and subject once"})
@@ -195,6 +186,23 @@ func (b *previewBasis) with(n NewPreview, a Actor) (job.Job, []bool, error) {
 		return out, nil, &Error{Kind: Invalid, Message: "the multipliers have faults; nothing was computed", Faults: faults}
 	}
 	return out, replaced, nil
+}
+
+// read is a multiplier of a request, with its faults under the rate book; reason is
+// taken where it gives none.
+func (x PreviewMultiplier) read(at string, book ratebook.Book, a Actor, reason string) (ratebook.Multiplier, []Fault) {
+	m := ratebook.Multiplier{Name: x.Name, Scope: x.Scope, Subject: x.Subject, Categories: x.Categories, Spread: x.Spread, Group: x.Group,
+		Reason: cmp.Or(x.Reason, reason), Author: a.Name}
+	var faults []Fault
+	var bad *Error
+	if errors.As(fromRates(m.Validate(), at), &bad) {
+		faults = bad.Faults
+	}
+	if _, ok := book.Correlation[m.Group]; m.Group != "" && !ok {
+		known := strings.Join(slices.Sorted(maps.Keys(book.Correlation)), ", ")
+		faults = append(faults, Fault{Pointer: at + "/group", Found: m.Group, Problem: "the rate book has no such correlation group", Remedy: known + " or none"})
+	}
+	return m, faults
 }
 
 // answer sets the two sides beside each other.

@@ -20,25 +20,17 @@ const most = 6
 
 // describe writes what moved and the sentence of a share.
 func describe(s *Share, from, to Side, c money.Currency) {
-	if s.Amount.Sign() == 0 && s.Cause != Engine && s.Cause != Sampling {
-		s.Moved = differences(s.Cause, from, to)
-		if len(s.Moved) == 0 {
-			s.Sentence = fmt.Sprintf("%s: nothing differs.", title(s.Cause))
-			return
-		}
-	}
 	s.Moved = differences(s.Cause, from, to)
-	verb := "raises"
-	amount := s.Amount
 	switch {
+	case s.Amount.Sign() > 0:
+		s.Sentence = fmt.Sprintf("%s raises the cost by %s %s", title(s.Cause), s.Amount, c.Code)
 	case s.Amount.Sign() < 0:
-		verb, amount = "lowers", s.Amount.Neg()
-	case s.Amount.Sign() == 0:
-		s.Sentence = fmt.Sprintf("%s moves nothing", title(s.Cause))
-		s.Sentence += shown(s.Moved) + "."
-		return
+		s.Sentence = fmt.Sprintf("%s lowers the cost by %s %s", title(s.Cause), s.Amount.Neg(), c.Code)
+	case len(s.Moved) == 0:
+		s.Sentence = title(s.Cause) + ": nothing differs"
+	default:
+		s.Sentence = title(s.Cause) + " moves nothing"
 	}
-	s.Sentence = fmt.Sprintf("%s %s the cost by %s %s", title(s.Cause), verb, amount, c.Code)
 	if len(s.Groups) > 0 {
 		largest := slices.MaxFunc(s.Groups, func(a, b GroupShare) int { return abs(a.Amount).Cmp(abs(b.Amount)) })
 		s.Sentence += fmt.Sprintf(", most of it in %s (%s)", largest.Group, largest.Amount)
@@ -84,7 +76,7 @@ func differences(c Cause, from, to Side) []string {
 		say("execution class", a.Settings.ExecutionClass, b.Settings.ExecutionClass)
 		say("purchase", a.Settings.Purchase, b.Settings.Purchase)
 		say("stock lengths", a.Settings.StockLengths, b.Settings.StockLengths)
-		say("haul distance", a.Settings.HaulDistance, b.Settings.HaulDistance)
+		say("haul distance, km,", a.Settings.HaulDistance/1000, b.Settings.HaulDistance/1000)
 		say("owner's costs", a.Settings.OwnerCosts, b.Settings.OwnerCosts)
 	case Section:
 		return sections(a, b)
@@ -112,11 +104,7 @@ func differences(c Cause, from, to Side) []string {
 	case RiskPolicy:
 		say("confidence", a.Settings.Confidence, b.Settings.Confidence)
 		say("estimate class", a.Settings.EstimateClass, b.Settings.EstimateClass)
-		out = append(out, risks(a.Risks, b.Risks)...)
-		out = append(out, widened(from.Document, to.Document)...)
-		for _, g := range slices.Sorted(maps.Keys(correlations(nil, a.Book.Correlation, b.Book.Correlation))) {
-			say("correlation of "+g, a.Book.Correlation[g], b.Book.Correlation[g])
-		}
+		return append(out, beliefs(from, to)...)
 	case Engine:
 		say("engine version", from.Document.EngineVersion, to.Document.EngineVersion)
 		say("catalogue", short(from.Document.Job.CatalogueSHA256), short(to.Document.Job.CatalogueSHA256))
@@ -124,6 +112,18 @@ func differences(c Cause, from, to Side) []string {
 	case Sampling:
 		say("seed", a.Sampling.Seed, b.Sampling.Seed)
 		say("trials", a.Sampling.Replicates*a.Sampling.Trials, b.Sampling.Replicates*b.Sampling.Trials)
+	}
+	return out
+}
+
+// beliefs names the risks, spreads and correlations that differ.
+func beliefs(from, to Side) []string {
+	a, b := from.Job, to.Job
+	out := append(risks(a.Risks, b.Risks), widened(from.Document, to.Document)...)
+	for _, g := range slices.Sorted(maps.Keys(correlations(nil, a.Book.Correlation, b.Book.Correlation))) {
+		if x, y := a.Book.Correlation[g], b.Book.Correlation[g]; x != y {
+			out = append(out, fmt.Sprintf("correlation of %s %v → %v", g, x, y))
+		}
 	}
 	return out
 }

@@ -77,16 +77,9 @@ const (
 
 // Arrangements compares ways to hold a length. The error is Faults, or that of ctx.
 func Arrangements(ctx context.Context, r ArrangementsRequest) (ArrangementsAnswer, error) {
-	s, f := r.study()
-	if len(f) > 0 {
-		return ArrangementsAnswer{}, f
-	}
-	found, err := arrangement.Candidates(ctx, s)
-	switch {
-	case ctx.Err() != nil:
-		return ArrangementsAnswer{}, ctx.Err()
-	case err != nil:
-		return ArrangementsAnswer{}, fromSizing(err)
+	s, found, err := StudyArrangements(ctx, r)
+	if err != nil {
+		return ArrangementsAnswer{}, err
 	}
 	out := ArrangementsAnswer{Caution: document.Caution, Grade: s.Setup.Grade.Name, DesignBasis: s.Setup.Basis.Name(), Candidates: []Arrangement{}}
 	for i := range found {

@@ -34,8 +34,8 @@ type Side struct {
 // name is the scheme, or where it has no name or shares it the caller's own.
 func (s Side) name() string { return cmp.Or(s.shown, s.Document.Job.Scheme, s.ID) }
 
-// name tells schemes of one name apart.
-func name(sides []Side) []Side {
+// toldApart tells schemes of one name apart.
+func toldApart(sides []Side) []Side {
 	out := slices.Clone(sides)
 	times := map[string]int{}
 	for _, s := range sides {
@@ -130,7 +130,7 @@ func Build(ctx context.Context, sides []Side, joint Joint) (Comparison, error) {
 	if len(sides) < Fewest || len(sides) > Most {
 		return Comparison{}, fmt.Errorf("comparison: found %d estimates; accepted: %d to %d", len(sides), Fewest, Most)
 	}
-	sides = name(sides)
+	sides = toldApart(sides)
 	jobs := make([]job.Job, len(sides))
 	for i, s := range sides {
 		if c, first := s.Job.Settings.Currency, sides[0].Job.Settings.Currency; c != first {

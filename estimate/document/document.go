@@ -201,8 +201,8 @@ type Factor struct {
 }
 
 // Line is one priced quantity: unit price = the parts × the multipliers, rounded
-// to two places beyond the minor unit; amount = quantity × unit price, rounded to
-// the minor unit; both half away from zero.
+// to two places beyond the minor unit, to six for a fraction of other lines; amount =
+// quantity × unit price, rounded to the minor unit; both half away from zero.
 type Line struct {
 	ID          string        `json:"id"`
 	Item        string        `json:"item,omitempty" doc:"empty for the whole structure"`

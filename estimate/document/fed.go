@@ -67,9 +67,12 @@ func (d Document) fedBy(input string, m *Member, set map[string]bool) {
 			}
 		}
 	}
-	for id := range d.movedLines(moved) {
-		l := d.line(id)
-		for _, f := range []string{id, "category/" + l.Category, "group/" + assumption.Segment(l.Group) + "/amount", "base", "range", "contingency"} {
+	lines := d.movedLines(moved)
+	for _, l := range d.Lines {
+		if !lines[l.ID] {
+			continue
+		}
+		for _, f := range []string{l.ID, "category/" + l.Category, "group/" + assumption.Segment(l.Group) + "/amount", "base", "range", "contingency"} {
 			set[f] = true
 		}
 	}
@@ -112,15 +115,6 @@ func (d Document) movedLines(quantities map[[2]string]bool) map[string]bool {
 		}
 	}
 	return moved
-}
-
-func (d Document) line(id string) Line {
-	for _, l := range d.Lines {
-		if l.ID == id {
-			return l
-		}
-	}
-	return Line{}
 }
 
 func ofMember(item string, m *Member) bool {

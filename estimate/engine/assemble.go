@@ -99,8 +99,9 @@ func (r *run) categories() []document.Category {
 
 func (r *run) itemList() []document.Item {
 	out := make([]document.Item, len(r.items))
+	byArea := r.byArea()
 	for i, it := range r.items {
-		area := r.byArea(it)
+		area := len(it.Marks) > 0 && byArea[it.Marks[0]] // rows by area are items of their own
 		out[i] = document.Item{
 			ID: it.ID, Group: it.Group, Family: it.Family, Treatment: it.Treatment, Connection: it.Connection, Marks: it.Marks,
 			Coating: it.Coating, Execution: it.Execution,

@@ -35,12 +35,11 @@ func dependsOn(it takeoff.Item, q takeoff.Quantity, byArea bool) []string {
 	return out
 }
 
-// byArea tells whether the rows of an item weigh by the square metre.
-func (r *run) byArea(it takeoff.Item) bool {
+// byArea are the marks of rows that weigh by the square metre.
+func (r *run) byArea() map[string]bool {
+	out := map[string]bool{}
 	for _, p := range r.pieces {
-		if slices.Contains(it.Marks, p.Member.Mark) {
-			return p.Member.AreaMass > 0
-		}
+		out[p.Member.Mark] = p.Member.AreaMass > 0
 	}
-	return false
+	return out
 }

@@ -3,7 +3,6 @@ package engine
 import (
 	"fmt"
 	"slices"
-	"strings"
 	"time"
 
 	"spanwright/estimate/assumption"
@@ -11,6 +10,7 @@ import (
 	"spanwright/estimate/ratebook"
 	"spanwright/estimate/schedule"
 	"spanwright/estimate/spread"
+	"spanwright/estimate/takeoff"
 )
 
 // rates gathers what the job prices with: its rates and multipliers, and the
@@ -152,7 +152,7 @@ func (r *run) askedFacts() pricing.Facts {
 		f.Delivered = f.Delivered.Add(it.Delivered)
 	}
 	for _, b := range r.breaches {
-		if strings.HasPrefix(b.Envelope, "permit") {
+		if b.Envelope == takeoff.OnRoad {
 			f.Permits++
 		}
 	}
